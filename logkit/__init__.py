@@ -1,0 +1,1 @@
+"""logkit: from a typed table of beds to a checked, drawn and hydraulically read sedimentary log."""
