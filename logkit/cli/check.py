@@ -1,0 +1,61 @@
+"""`logkit check`: every finding of a log, all at once."""
+
+from __future__ import annotations
+
+import dataclasses
+from collections import Counter
+from typing import Any
+
+import click
+
+from logkit.cli.console import print_json, print_table, say
+from logkit.cli.options import logs_argument, quiet_option, reading_options, run_logs
+from logkit.errors import LogErrors
+from logkit.model import LEVELS, Finding
+
+HEADINGS = ("level", "file", "row", "column", "cell", "finding", "what to do")
+
+
+@click.command("check")
+@logs_argument
+@click.option("--strict", is_flag=True, help="Questions fail as well as errors.")
+@click.option("--json", "as_json", is_flag=True, help="Findings as JSON.")
+@reading_options
+@quiet_option
+def command(sources: tuple[str, ...], strict: bool, as_json: bool, quiet: bool, **options: Any) -> int:
+    """List everything the reader has to say about a log: errors, questions, notes.
+
+    \b
+    Example:
+      logkit check examples/river/tarrow_bend.csv
+    """
+    outcome = run_logs(sources, quiet=quiet, keep_going=True, on_errors="keep", **options)
+    findings = sorted(outcome.findings, key=lambda f: (f.file, LEVELS.index(f.level), f.row or 0))
+    unread = [(source, e) for source, e in outcome.failures if not isinstance(e, LogErrors)]
+    if as_json:
+        print_json(
+            {
+                "findings": [dataclasses.asdict(f) for f in findings],
+                "unread": [{"source": s, "error": str(e)} for s, e in unread],
+            }
+        )
+    elif findings:
+        print_table(HEADINGS, (_row(f) for f in findings))
+    for source, problem in unread:
+        say(f"logkit: {source}: {problem}")
+    counts = Counter(f.level for f in findings)
+    beds = sum(len(log.real_beds) for log in outcome.logs)
+    words = ", ".join(f"{counts[level]} {level}{'' if counts[level] == 1 else 's'}" for level in LEVELS)
+    say(f"{len(outcome.logs)} log{'' if len(outcome.logs) == 1 else 's'}, {beds} beds: {words}.", quiet)
+    failed = counts["error"] or unread or (strict and counts["question"])
+    return 1 if failed else 0
+
+
+def _row(finding: Finding) -> tuple[Any, ...]:
+    place = f"{finding.file} [{finding.sheet}]" if finding.sheet else finding.file
+    message = finding.message
+    if finding.choices:
+        message += "; could be: " + " | ".join(finding.choices)
+    if finding.nearest:
+        message += f"; nearest known: {finding.nearest}"
+    return finding.level, place, finding.row, finding.column, finding.cell, message, finding.remedy

@@ -1,0 +1,56 @@
+"""`logkit why`: the ledger of one bed, in words and as a table."""
+
+from __future__ import annotations
+
+from typing import Any
+
+import click
+
+from logkit.cli.console import print_frame, print_json, say
+from logkit.cli.options import flow_options, log_argument, quiet_option, reading_options, run_logs
+from logkit.cli.words import CAUTION
+from logkit.errors import LogkitError
+
+
+@click.command("why")
+@log_argument
+@click.option("--bed", "bed", required=True, metavar="NAME", help="Name of the bed as written.")
+@click.option("--phase", type=int, default=None, help="Only this phase, counted from 1 at the base.")
+@click.option("--json", "as_json", is_flag=True, help="The ledger as JSON.")
+@reading_options
+@flow_options
+@quiet_option
+def command(source: str, bed: str, phase: int | None, as_json: bool, quiet: bool, **options: Any) -> None:
+    """Explain the numbers of one bed: every criterion, the bound it sets alone, how much it narrows the answer,
+    its source and validity, and which criteria disagree.
+
+    \b
+    Example:
+      logkit why examples/river/tarrow_bend.csv --bed 14
+    """
+    outcome = run_logs([source], ["flow"], quiet=quiet, **options)
+    runs = [run for run in outcome.runs if any(b.name == bed for b in run.log.beds)]
+    if not runs:
+        outcome.logs[0].bed(bed)  # raises, naming the nearest bed
+    if len(runs) > 1:
+        names = ", ".join(run.log.name for run in runs)
+        raise LogkitError(f"Bed {bed!r} is in several sections: {names}.", "Choose one with --section.")
+    history = runs[0].history
+    if history is None:
+        raise LogkitError("There is no flow history for this log.")
+    ledger = history.ledger(bed, phase)
+    if as_json:
+        print_json(
+            {
+                "words": list(history.explain(bed)),
+                "ledger": ledger.to_dict(orient="records"),
+                "caution": CAUTION,
+            }
+        )
+        return
+    for line in history.explain(bed):
+        click.echo(line)
+    if len(ledger):
+        click.echo()
+        print_frame(ledger)
+    say("\n" + CAUTION, quiet)
