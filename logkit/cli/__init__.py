@@ -97,7 +97,8 @@ def main(arguments: list[str] | None = None) -> NoReturn:
         sys.exit(1)
     except OSError as problem:
         _say(
-            f"{problem.strerror or problem}: {problem.filename or 'output'}. Free some space or choose another place."
+            f"{problem.strerror or problem}: {problem.filename or 'output'}. "
+            "Free some space or choose another place."
         )
         sys.exit(1)
     sys.exit(status if isinstance(status, int) else 0)

@@ -8,7 +8,7 @@ from typing import Any
 
 import click
 
-from logkit.cli.console import print_json, print_table, say
+from logkit.cli.console import counted, print_json, print_table, say
 from logkit.cli.options import logs_argument, quiet_option, reading_options, run_logs
 from logkit.errors import LogErrors
 from logkit.model import LEVELS, Finding
@@ -45,8 +45,8 @@ def command(sources: tuple[str, ...], strict: bool, as_json: bool, quiet: bool, 
         say(f"logkit: {source}: {problem}")
     counts = Counter(f.level for f in findings)
     beds = sum(len(log.real_beds) for log in outcome.logs)
-    words = ", ".join(f"{counts[level]} {level}{'' if counts[level] == 1 else 's'}" for level in LEVELS)
-    say(f"{len(outcome.logs)} log{'' if len(outcome.logs) == 1 else 's'}, {beds} beds: {words}.", quiet)
+    words = ", ".join(counted(counts[level], level) for level in LEVELS)
+    say(f"{counted(len(outcome.logs), 'log')}, {counted(beds, 'bed')}: {words}.", quiet)
     failed = counts["error"] or unread or (strict and counts["question"])
     return 1 if failed else 0
 

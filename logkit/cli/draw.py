@@ -7,7 +7,7 @@ from typing import Any
 
 import click
 
-from logkit.cli.console import say
+from logkit.cli.console import counted, say
 from logkit.cli.options import (
     check_ending,
     flow_options,
@@ -57,7 +57,8 @@ def command(
     quiet: bool,
     **options: Any,
 ) -> None:
-    """Draw the column: grain-size profile, texture, structures, contacts, currents, flow ribbon, packages, notes.
+    """Draw the column: grain-size profile, texture, structures, contacts, currents, flow ribbon, packages,
+    notes.
 
     \b
     Examples:
@@ -86,14 +87,7 @@ def command(
             part = "".join(c if c.isalnum() else "_" for c in run.log.name)
             target = str(Path(output).with_name(f"{Path(output).stem}-{part}.{ending}"))
         drawing.save(target)
-        sheets = len(drawing.sheets)
-        say(
-            f"Wrote {target}: {len(run.log.real_beds)} beds at 1:{drawing.scale:g}, {sheets} sheet{'' if sheets == 1 else 's'}.",
-            quiet,
-        )
-        questions = run.log.count("question")
-        if questions:
-            say(
-                f"{questions} question{'' if questions == 1 else 's'} about {run.log.name}: logkit check {source}",
-                quiet,
-            )
+        beds, sheets = counted(len(run.log.real_beds), "bed"), counted(len(drawing.sheets), "sheet")
+        say(f"Wrote {target}: {beds} at 1:{drawing.scale:g}, {sheets}.", quiet)
+        if questions := run.log.count("question"):
+            say(f"{counted(questions, 'question')} about {run.log.name}: logkit check {source}", quiet)

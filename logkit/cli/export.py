@@ -38,7 +38,8 @@ from logkit.errors import ArgumentError
 def command(
     sources: tuple[str, ...], output: str, step: float | None, datum: str | None, quiet: bool, **options: Any
 ) -> int:
-    """Write the hand-over set: intervals, tops, points, LAS 2.0, depth shifts, JSON, Parquet, code table, limits.
+    """Write the hand-over set: intervals, tops, points, LAS 2.0, depth shifts, JSON, Parquet, code table,
+    limits.
 
     \b
     Example:

@@ -17,7 +17,7 @@ from logkit.cli.options import (
     run_logs,
 )
 from logkit.cli.output import write_frame
-from logkit.cli.words import CAUTION
+from logkit.model import CAUTION
 
 
 @click.command("flow")

@@ -8,8 +8,8 @@ import click
 
 from logkit.cli.console import print_frame, print_json, say
 from logkit.cli.options import flow_options, log_argument, quiet_option, reading_options, run_logs
-from logkit.cli.words import CAUTION
 from logkit.errors import LogkitError
+from logkit.model import CAUTION
 
 
 @click.command("why")
@@ -21,8 +21,8 @@ from logkit.errors import LogkitError
 @flow_options
 @quiet_option
 def command(source: str, bed: str, phase: int | None, as_json: bool, quiet: bool, **options: Any) -> None:
-    """Explain the numbers of one bed: every criterion, the bound it sets alone, how much it narrows the answer,
-    its source and validity, and which criteria disagree.
+    """Explain the numbers of one bed: every criterion, the bound it sets alone, how much it narrows the
+    answer, its source and validity, and which criteria disagree.
 
     \b
     Example:

@@ -13,15 +13,39 @@ from logkit.model.bed import (
     SizeReading,
     Structure,
 )
+from logkit.model.caution import CAUTION, CAUTION_SHORT
 from logkit.model.finding import LEVELS, Finding, Level
 from logkit.model.flow import Bound, Clash, Phase, PhaseEstimate, Quantiles, Tendency
 from logkit.model.log import LOG_TOOLS, SETTINGS, Header, Log
 from logkit.model.trend import CurrentSummary, Grading, GradingWord, Package
 
 __all__ = [
-    "LEVELS", "LOG_TOOLS", "SETTINGS",
-    "Bed", "Bioturbation", "Bound", "Clash", "Colour", "Contact", "CurrentReading", "CurrentSummary",
-    "Finding", "GrainState", "Grading", "GradingWord", "Header", "LargestClasts", "Level", "Log",
-    "Package", "Phase", "PhaseEstimate", "Quantiles", "SetThickness", "SizeInterval", "SizeReading",
-    "Structure", "Tendency",
+    "LEVELS",
+    "LOG_TOOLS",
+    "SETTINGS",
+    "Bed",
+    "Bioturbation",
+    "Bound",
+    "Clash",
+    "Colour",
+    "Contact",
+    "CurrentReading",
+    "CurrentSummary",
+    "Finding",
+    "Grading",
+    "GradingWord",
+    "GrainState",
+    "Header",
+    "LargestClasts",
+    "Level",
+    "Log",
+    "Package",
+    "Phase",
+    "PhaseEstimate",
+    "Quantiles",
+    "SetThickness",
+    "SizeInterval",
+    "SizeReading",
+    "Structure",
+    "Tendency",
 ]  # fmt: skip
