@@ -20,6 +20,8 @@ from logkit.model.log import LOG_TOOLS, SETTINGS, Header, Log
 from logkit.model.trend import CurrentSummary, Grading, GradingWord, Package
 
 __all__ = [
+    "CAUTION",
+    "CAUTION_SHORT",
     "LEVELS",
     "LOG_TOOLS",
     "SETTINGS",

@@ -11,5 +11,5 @@ CAUTION = (
 
 CAUTION_SHORT = (
     "Flow and depth are ranges inferred from grain size and structure, not measured. Blank means no "
-    "estimate, not still water. Not for design or safety without a qualified person's check of the source log."
+    "estimate, not still water. Not for design or safety without a qualified person's check of the log."
 )
