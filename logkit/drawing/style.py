@@ -1,0 +1,575 @@
+"""Styles: what a drawing looks like, read from TOML files that inherit from each other.
+
+The sections of a style file are the classes below, its keys their fields: a key that is no field is an error
+that names the nearest one. What the values do is decided where they are used, not here.
+"""
+
+from __future__ import annotations
+
+import dataclasses
+import re
+import types
+import typing
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+from functools import cache
+from pathlib import Path
+from typing import Any
+
+from logkit.drawing.data_file import DataText, read_data
+from logkit.errors import ArgumentError, LogkitError, UnknownNameError
+from logkit.resources import shipped
+
+BASE_STYLE = "report"
+"""The style all others inherit from in the end."""
+
+LEAST_TYPE_PT = 6.0
+"""No text on a drawing is set smaller than this, points."""
+
+LEAST_LINE_MM = 0.05
+"""No line of a style is thinner than this, mm."""
+
+PAPER_MM: dict[str, tuple[float, float]] = {
+    "A0": (841.0, 1189.0),
+    "A1": (594.0, 841.0),
+    "A2": (420.0, 594.0),
+    "A3": (297.0, 420.0),
+    "A4": (210.0, 297.0),
+    "A5": (148.0, 210.0),
+    "Letter": (215.9, 279.4),
+    "Legal": (215.9, 355.6),
+    "Tabloid": (279.4, 431.8),
+}
+"""Upright width and height of named paper sizes, mm. "roll" is as long as the drawing needs."""
+
+_COLOUR = re.compile(r"#[0-9a-f]{6}", re.IGNORECASE)
+
+
+class HexColour(str):
+    """An sRGB colour as "#rrggbb"."""
+
+    __slots__ = ()
+
+
+@dataclass(frozen=True, slots=True)
+class PageStyle:
+    """Paper and the fixed heights on it; mm from the top edge."""
+
+    size: str | tuple[float, ...]
+    landscape: bool
+    margin: float
+    scale: float
+    title_base: float
+    rule: float
+    summary: float
+    heads: float
+    section_top: float
+    section_bottom: float
+    lower_axes: float
+    footer: float
+    caution: float
+    legend: bool
+
+
+@dataclass(frozen=True, slots=True)
+class TrackStyle:
+    """One track: free space before it and its width, mm, and its head ("" for none)."""
+
+    gap: float
+    width: float
+    title: str
+
+
+@dataclass(frozen=True, slots=True)
+class FontStyle:
+    """Font family and type sizes in points."""
+
+    family: str
+    title: float
+    subtitle: float
+    head: float
+    label: float
+    metre: float
+    note: float
+    caution: float
+
+
+@dataclass(frozen=True, slots=True)
+class LineStyle:
+    """Line weights, mm."""
+
+    spine: float
+    erosive: float
+    profile: float
+    contact: float
+    set: float
+    crest: float
+    clast: float
+    stroke: float
+    lamina: float
+    hairline: float
+    thread: float
+    link: float
+    drape: float
+    rule: float
+    glyph: float
+    outline: float
+
+
+@dataclass(frozen=True, slots=True)
+class ColourStyle:
+    """Inks and other colours that do not follow grain size."""
+
+    paper: HexColour
+    ink: HexColour
+    ink2: HexColour
+    structure: HexColour
+    grid: HexColour
+    drape: HexColour
+    chip: HexColour
+    clast: HexColour
+    trend: HexColour
+    rose: HexColour
+    conflict: HexColour
+    on_conflict: HexColour
+    break_: HexColour
+
+
+@dataclass(frozen=True, slots=True)
+class FamilyStyle:
+    """Fill of a texture family: OKLCH chroma and hue, lightness offset (darker), and its mark in words."""
+
+    chroma: float
+    hue: float
+    offset: float
+    mark: str
+
+
+@dataclass(frozen=True, slots=True)
+class PaletteStyle:
+    """How a family and a grain size become fill and stipple colours; see `palette.fill`."""
+
+    lightest: float
+    step: float
+    offsets: float
+    chroma: float
+    stipple: float
+    stipple_dark: float
+    stipple_chroma: float
+    stipple_contrast: float
+    families: Mapping[str, FamilyStyle] = field(default_factory=dict)
+
+
+@dataclass(frozen=True, slots=True)
+class TextureStyle:
+    """Sizes and limits of the texture marks, mm; see `textures.bed_texture`."""
+
+    dots: bool
+    diameter: float
+    diameter_rate: float
+    spacing: float
+    spacing_rate: float
+    clear: float
+    triangles: float
+    least_bed: float
+    least_segment: float
+    least_glyph: float
+    most_dots: int
+    most_clasts: int
+    scallop: tuple[float, ...]
+    least_relief: float
+
+
+@dataclass(frozen=True, slots=True)
+class StateStyle:
+    """A bed state on the ribbon: its letter, its label, OKLCH of the outer tint."""
+
+    letter: str
+    label: str
+    lightness: float
+    chroma: float
+    hue: float
+
+
+@dataclass(frozen=True, slots=True)
+class RibbonStyle:
+    """The flow ribbon: line, free edges, axis limits, tints of the bed states."""
+
+    outline: float
+    outline_inner: bool
+    edge: float
+    letter_gap: float
+    velocity: tuple[float, ...]
+    flow_depth: tuple[float, ...]
+    fit_axis: bool
+    inner_darker: float
+    inner_chroma: float
+    sail_fill: bool
+    states: Mapping[str, StateStyle] = field(default_factory=dict)
+
+
+@dataclass(frozen=True, slots=True)
+class NoteStyle:
+    """Notes in the margin: gap between them, mm; line height as a factor; lines before a note is cut."""
+
+    gap: float
+    line_height: float
+    most_lines: int
+
+
+@dataclass(frozen=True, slots=True)
+class Style:
+    """A complete style.
+
+    Attributes
+    ----------
+    name : name or file it was loaded from
+    label : in words
+    source : whose design it is
+    order : tracks from left to right; `tracks` holds their sizes
+    """
+
+    name: str
+    label: str
+    source: str
+    page: PageStyle
+    order: tuple[str, ...]
+    tracks: Mapping[str, TrackStyle]
+    fonts: FontStyle
+    lines: LineStyle
+    colours: ColourStyle
+    palette: PaletteStyle
+    texture: TextureStyle
+    ribbon: RibbonStyle
+    notes: NoteStyle
+
+    def __hash__(self) -> int:
+        return hash((self.name, self.label))
+
+    def page_size_mm(self) -> tuple[float, float | None]:
+        """Width and height of the page, mm; the height of a roll is None."""
+        size = self.page.size
+        if not isinstance(size, str):
+            return size[0], size[1]
+        if size == "roll":
+            return PAPER_MM["A4"][0], None
+        width, height = PAPER_MM[size]
+        return (height, width) if self.page.landscape else (width, height)
+
+
+_SECTIONS: dict[str, Any] = {
+    "page": PageStyle,
+    "fonts": FontStyle,
+    "lines": LineStyle,
+    "colours": ColourStyle,
+    "palette": PaletteStyle,
+    "texture": TextureStyle,
+    "ribbon": RibbonStyle,
+    "notes": NoteStyle,
+}
+_TOP = ("label", "source", "inherits", "tracks", *_SECTIONS)
+
+
+def style_folder() -> Path:
+    """Folder of the styles that ship with logkit."""
+    return shipped("styles")
+
+
+def list_styles() -> dict[str, str]:
+    """Names of the shipped styles with their labels, the base style first."""
+    names = sorted(path.stem for path in style_folder().glob("*.toml"))
+    names.sort(key=lambda name: name != BASE_STYLE)
+    return {name: load_style(name).label for name in names}
+
+
+def load_style(name_or_path: str | Path | Style, overrides: Mapping[str, Any] | None = None) -> Style:
+    """A style by name or from a file.
+
+    Parameters
+    ----------
+    name_or_path : shipped name ("report", "field-mono"), path of a TOML file, or a style
+    overrides : sections and keys that replace those of the style, as in a file: {"page": {"scale": 20}}
+
+    Raises
+    ------
+    UnknownNameError : no shipped style has that name
+    DataFileError : the file has an unknown key, a wrong type or a value out of range; names file and line
+    """
+    if isinstance(name_or_path, Style):
+        if not overrides:
+            return name_or_path
+        tables, origin, name = _as_tables(name_or_path), {}, name_or_path.name
+    else:
+        if not overrides:
+            path = Path(name_or_path)
+            return _by_name(str(name_or_path)) if path.suffix != ".toml" else _build_file(path)
+        tables, origin, name = _merged(_find(name_or_path), ())
+    text = _overrides_text(overrides)
+    _merge(tables, text.tables, text, origin, ())
+    return _build(tables, origin, name)
+
+
+def dump(style: Style) -> str:
+    """The style as a TOML file with every key; loading it gives an equal style."""
+    lines: list[str] = []
+    for key, value in _as_tables(style).items():
+        if isinstance(value, dict):
+            _dump_table(lines, key, value)
+        else:
+            lines.append(f"{key} = {_toml(value)}")
+    return "\n".join(lines).strip() + "\n"
+
+
+@cache
+def _by_name(name: str) -> Style:
+    return _build_file(_find(name))
+
+
+def _find(name_or_path: str | Path) -> Path:
+    path = Path(name_or_path)
+    if path.suffix == ".toml":
+        return path
+    shipped_path = style_folder() / f"{name_or_path}.toml"
+    if not shipped_path.is_file() or path.name != str(name_or_path):
+        known = [entry.stem for entry in style_folder().glob("*.toml")]
+        raise UnknownNameError("style", str(name_or_path), known)
+    return shipped_path
+
+
+def _build_file(path: Path) -> Style:
+    tables, origin, name = _merged(path, ())
+    return _build(tables, origin, name)
+
+
+Origin = dict[tuple[str, ...], DataText]
+"""Which file a key came from, for messages."""
+
+
+def _merged(path: Path, seen: tuple[Path, ...]) -> tuple[dict[str, Any], Origin, str]:
+    """The tables of a style file over those it inherits from."""
+    data = read_data(path)
+    parent = data.tables.get("inherits")
+    resolved = path.resolve()
+    if resolved in seen:
+        raise data.fail(("inherits",), "the style inherits from itself in a circle.", "Name another style.")
+    is_base = resolved == (style_folder() / f"{BASE_STYLE}.toml").resolve()
+    if parent is not None and not isinstance(parent, str):
+        raise data.fail(("inherits",), "inherits must be the name or path of a style.")
+    tables: dict[str, Any] = {}
+    origin: Origin = {}
+    if not is_base:
+        beside = path.parent / str(parent)
+        above = beside if parent and parent.endswith(".toml") else Path(parent or BASE_STYLE)
+        try:
+            tables, origin, _ = _merged(_find(above), (*seen, resolved))
+        except UnknownNameError as problem:
+            raise data.fail(("inherits",), problem.what, problem.remedy) from None
+    own = {key: value for key, value in data.tables.items() if key != "inherits"}
+    _merge(tables, own, data, origin, ())
+    return tables, origin, path.stem
+
+
+def _merge(
+    into: dict[str, Any], new: Mapping[str, Any], data: DataText, origin: Origin, path: tuple[str, ...]
+) -> None:
+    for key, value in new.items():
+        here = (*path, key)
+        if isinstance(value, Mapping):
+            if not isinstance(into.get(key, {}), dict):
+                raise data.fail(here, f"{'.'.join(here)} must be a value, not a table.")
+            into[key] = dict(into.get(key, {}))
+            _merge(into[key], value, data, origin, here)
+        else:
+            into[key] = value
+        origin[here] = data
+
+
+def _build(tables: dict[str, Any], origin: Origin, name: str) -> Style:
+    """Check merged tables and make the style."""
+    check = _Check(origin, name)
+    check.keys(tables, _TOP, ())
+    sections = {key: check.record(cls, tables.get(key, {}), (key,)) for key, cls in _SECTIONS.items()}
+    tracks = check.table(tables.get("tracks", {}), ("tracks",))
+    order = check.value(tuple[str, ...], tracks.get("order", ()), ("tracks", "order"))
+    named = {
+        key: check.record(TrackStyle, value, ("tracks", key))
+        for key, value in tracks.items()
+        if key != "order"
+    }
+    for track in order:
+        if track not in named:
+            raise check.at(("tracks", "order")).unknown(("tracks", "order", track), named)
+    style = Style(
+        name=name,
+        label=check.value(str, tables.get("label", name), ("label",)),
+        source=check.value(str, tables.get("source", ""), ("source",)),
+        order=order,
+        tracks=types.MappingProxyType(named),
+        **sections,
+    )
+    _check_ranges(style, check)
+    return style
+
+
+class _Check:
+    """Turns parsed TOML into records; a problem names the file and line the value came from."""
+
+    def __init__(self, origin: Origin, name: str) -> None:
+        self._origin = origin
+        self._name = name
+
+    def at(self, path: tuple[str, ...]) -> DataText:
+        """The file a key came from."""
+        for depth in range(len(path), 0, -1):
+            if path[:depth] in self._origin:
+                return self._origin[path[:depth]]
+        return DataText(self._name, "")
+
+    def keys(self, table: Mapping[str, Any], known: tuple[str, ...], path: tuple[str, ...]) -> None:
+        for key in table:
+            if key not in known:
+                raise self.at((*path, key)).unknown((*path, key), known)
+
+    def table(self, value: Any, path: tuple[str, ...]) -> dict[str, Any]:
+        if not isinstance(value, dict):
+            raise self.at(path).fail(path, f"{'.'.join(path)} must be a table, not {value!r}.")
+        return value
+
+    def record(self, cls: Any, value: Any, path: tuple[str, ...]) -> Any:
+        table = self.table(value, path)
+        hints = _hints(cls)
+        self.keys(table, tuple(_key(name) for name in hints), path)
+        made = {}
+        for name, hint in hints.items():
+            here = (*path, _key(name))
+            if _key(name) not in table:
+                raise self.at(path).fail(path, f"{'.'.join(here)} is missing.", "Give it a value.")
+            made[name] = self.value(hint, table[_key(name)], here)
+        return cls(**made)
+
+    def value(self, hint: Any, value: Any, path: tuple[str, ...]) -> Any:
+        name, wrong = ".".join(path), f"not {value!r}"
+        if typing.get_origin(hint) is types.UnionType:
+            hint = str if isinstance(value, str) else tuple[float, ...]
+        if typing.get_origin(hint) is not None and issubclass(typing.get_origin(hint), Mapping):
+            kind = typing.get_args(hint)[1]
+            table = self.table(value, path)
+            return types.MappingProxyType({k: self.record(kind, v, (*path, k)) for k, v in table.items()})
+        if typing.get_origin(hint) is tuple:
+            kind = typing.get_args(hint)[0]
+            if not isinstance(value, list | tuple):
+                raise self.at(path).fail(path, f"{name} must be a list, {wrong}.")
+            return tuple(self.value(kind, item, path) for item in value)
+        if hint is HexColour:
+            if not isinstance(value, str) or not _COLOUR.fullmatch(value):
+                raise self.at(path).fail(path, f'{name} must be a colour like "#1d2430", {wrong}.')
+            return HexColour(value.lower())
+        if hint is float and isinstance(value, int | float) and not isinstance(value, bool):
+            if not abs(value) < 1e9:
+                raise self.at(path).fail(path, f"{name} must be a finite number, {wrong}.")
+            return float(value)
+        if hint is not float and isinstance(value, hint) and isinstance(value, bool) == (hint is bool):
+            return value
+        words = {float: "a number", int: "a whole number", bool: "true or false", str: "text in quotes"}[hint]
+        raise self.at(path).fail(path, f"{name} must be {words}, {wrong}.")
+
+
+def _check_ranges(style: Style, check: _Check) -> None:
+    """Limits that hold in every style: legible type, visible lines, real paper, pairs in order."""
+    for name in _hints(FontStyle):
+        size = getattr(style.fonts, name)
+        if isinstance(size, float) and size < LEAST_TYPE_PT:
+            path = ("fonts", name)
+            raise check.at(path).fail(
+                path, f"fonts.{name} is {size:g} pt; at least {LEAST_TYPE_PT:g} is legible."
+            )
+    for name in _hints(LineStyle):
+        if getattr(style.lines, name) < LEAST_LINE_MM:
+            path = ("lines", name)
+            raise check.at(path).fail(path, f"lines.{name} must be at least {LEAST_LINE_MM} mm.")
+    size = style.page.size
+    if isinstance(size, str) and size not in PAPER_MM and size != "roll":
+        problem = check.at(("page", "size")).unknown(("page", size), [*PAPER_MM, "roll"])
+        raise check.at(("page", "size")).fail(
+            ("page", "size"), f"there is no page size {size!r}.", problem.remedy
+        )
+    if not isinstance(size, str) and (len(size) != 2 or min(size) < 40):
+        path = ("page", "size")
+        raise check.at(path).fail(path, "page.size must be two lengths of at least 40 mm.")
+    pairs = {
+        ("ribbon", "velocity"): style.ribbon.velocity,
+        ("ribbon", "flow_depth"): style.ribbon.flow_depth,
+        ("texture", "scallop"): style.texture.scallop,
+    }
+    for path, pair in pairs.items():
+        if len(pair) != 2 or not 0 < pair[0] < pair[1]:
+            raise check.at(path).fail(
+                path, f"{'.'.join(path)} must be two numbers above zero, the smaller first."
+            )
+    if style.page.scale <= 0:
+        raise check.at(("page", "scale")).fail(("page", "scale"), "page.scale must be above zero.")
+    for name, track in style.tracks.items():
+        if track.width <= 0 or track.gap < 0:
+            path = ("tracks", name)
+            raise check.at(path).fail(
+                path, f"tracks.{name} needs a width above zero and a gap of zero or more."
+            )
+
+
+@cache
+def _hints(cls: Any) -> dict[str, Any]:
+    return typing.get_type_hints(cls)
+
+
+def _key(name: str) -> str:
+    """Key in the file of a field; a Python keyword carries an underscore in the class only."""
+    return name.rstrip("_")
+
+
+def _as_tables(style: Style) -> dict[str, Any]:
+    tables: dict[str, Any] = {"label": style.label, "source": style.source}
+    tables["page"] = _plain(style.page)
+    tables["tracks"] = {"order": list(style.order)} | {k: _plain(v) for k, v in style.tracks.items()}
+    return tables | {key: _plain(getattr(style, key)) for key in _SECTIONS if key != "page"}
+
+
+def _plain(value: Any) -> Any:
+    if dataclasses.is_dataclass(value):
+        return {_key(f.name): _plain(getattr(value, f.name)) for f in dataclasses.fields(value)}
+    if isinstance(value, Mapping):
+        return {key: _plain(item) for key, item in value.items()}
+    if isinstance(value, tuple):
+        return [_plain(item) for item in value]
+    return value
+
+
+def _dump_table(lines: list[str], path: str, table: dict[str, Any]) -> None:
+    values = {k: v for k, v in table.items() if not isinstance(v, dict)}
+    if values:
+        lines += ["", f"[{path}]"] + [f"{key} = {_toml(value)}" for key, value in values.items()]
+    for key, value in table.items():
+        if isinstance(value, dict):
+            _dump_table(lines, f"{path}.{key}", value)
+
+
+def _toml(value: Any) -> str:
+    if isinstance(value, bool):
+        return "true" if value else "false"
+    if isinstance(value, str):
+        escaped = value.replace("\\", "\\\\").replace('"', '\\"')
+        return '"' + "".join(c if c.isprintable() else f"\\u{ord(c):04x}" for c in escaped) + '"'
+    if isinstance(value, list):
+        return "[" + ", ".join(_toml(item) for item in value) + "]"
+    return repr(value)
+
+
+def _overrides_text(overrides: Mapping[str, Any]) -> DataText:
+    """Overrides given in memory, checked like a file."""
+    for key in overrides:
+        if not isinstance(key, str):
+            raise ArgumentError("overrides", key, "a table of sections by name")
+    text = DataText("overrides", "")
+    text.tables = dict(overrides)
+    if "inherits" in text.tables:
+        raise LogkitError("Overrides cannot inherit.", "Pass the style's name instead.")
+    return text
