@@ -39,7 +39,9 @@ class DataText:
 
     def line_of(self, path: Sequence[str]) -> int | None:
         """Line of the deepest part of a key path that is written in the file, counted from 1."""
-        best, depth, section = None, 0, []  # type: ignore[var-annotated]
+        best: int | None = None
+        depth = 0
+        section: list[str] = []
         for number, line in enumerate(self._lines, 1):
             header = _HEADER.match(line)
             if header:

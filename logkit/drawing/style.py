@@ -298,7 +298,8 @@ def load_style(name_or_path: str | Path | Style, overrides: Mapping[str, Any] | 
     if isinstance(name_or_path, Style):
         if not overrides:
             return name_or_path
-        tables, origin, name = _as_tables(name_or_path), {}, name_or_path.name
+        tables, name = _as_tables(name_or_path), name_or_path.name
+        origin: Origin = {}
     else:
         if not overrides:
             path = Path(name_or_path)
