@@ -10,7 +10,7 @@ import pytest
 PACKAGE = Path(__file__).resolve().parents[1] / "logkit"
 
 LAYERS = [
-    {"errors", "units", "references", "registry", "resources", "files"},
+    {"errors", "units", "references", "registry", "resources", "files", "words"},
     {"model"},
     {"vocabulary", "grains"},
     {"hydraulics", "tables", "trends"},

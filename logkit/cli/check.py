@@ -8,10 +8,11 @@ from typing import Any
 
 import click
 
-from logkit.cli.console import counted, print_json, print_table, say
+from logkit.cli.console import print_json, print_table, say
 from logkit.cli.options import logs_argument, quiet_option, reading_options, run_logs
 from logkit.errors import LogErrors
 from logkit.model import LEVELS, Finding
+from logkit.words import counted
 
 HEADINGS = ("level", "file", "row", "column", "cell", "finding", "what to do")
 

@@ -60,11 +60,6 @@ def say(message: str, quiet: bool = False) -> None:
         click.echo(message, err=True)
 
 
-def counted(number: int, noun: str) -> str:
-    """A number with its noun: `1 bed`, `2 beds`."""
-    return f"{number} {noun}{'' if number == 1 else 's'}"
-
-
 def progress(items: Sequence[T], label: str, quiet: bool = False) -> Iterator[T]:
     """Pass the items on; a bar on stderr when it is a terminal and the work lasts over a second."""
     if quiet or not sys.stderr.isatty() or len(items) < 2:

@@ -7,7 +7,7 @@ from typing import Any
 
 import click
 
-from logkit.cli.console import counted, say
+from logkit.cli.console import say
 from logkit.cli.options import (
     check_ending,
     flow_options,
@@ -18,6 +18,7 @@ from logkit.cli.options import (
     reading_options,
     run_logs,
 )
+from logkit.words import counted
 
 
 @click.command("draw")

@@ -1,0 +1,153 @@
+"""Charts drawn with matplotlib: the bed-state plane, the velocity against grain-size chart, roses.
+
+Each gives (SVG text, width mm, height mm), or None when no phase can be shown. Same input, same bytes.
+"""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Iterator
+from contextlib import contextmanager
+from io import StringIO
+from typing import Any
+
+import numpy as np
+
+from logkit.hydraulics import evaluate
+from logkit.model import CurrentSummary, PhaseEstimate
+from logkit.report.wells import Well
+
+MM = 1 / 25.4
+INK, SOFT, OUTER, EDGE = "#1d2430", "#575e69", "#b2dbea", "#0b5a78"
+R_QUARTZ = 1.65
+Picture = tuple[str, float, float]
+
+
+@contextmanager
+def _figure(width_mm: float, height_mm: float, **kwargs: Any) -> Iterator[tuple[Any, Any]]:
+    """A figure and its axes in logkit's type, closed afterwards; never touches a display."""
+    import matplotlib
+    from matplotlib.backends.backend_svg import FigureCanvasSVG
+    from matplotlib.figure import Figure
+
+    settings = {
+        "font.family": "DejaVu Sans", "font.size": 7, "svg.fonttype": "none", "svg.hashsalt": "logkit",
+        "axes.linewidth": 0.6, "axes.edgecolor": INK, "xtick.color": INK, "ytick.color": INK,
+        "axes.labelcolor": INK, "text.color": INK,
+    }  # fmt: skip
+    with matplotlib.rc_context(settings):
+        figure = Figure(figsize=(width_mm * MM, height_mm * MM), layout="constrained")
+        FigureCanvasSVG(figure)
+        yield figure, figure.subplots(**kwargs)
+
+
+def _svg(figure: Any, width_mm: float, height_mm: float) -> Picture:
+    buffer = StringIO()
+    figure.savefig(buffer, format="svg", metadata={"Date": None, "Creator": "logkit"})
+    text = buffer.getvalue()
+    text = re.sub(r"<!DOCTYPE[^>]*>\s*", "", text)
+    return text, width_mm, height_mm
+
+
+def _ranged(well: Well) -> list[PhaseEstimate]:
+    return [
+        e
+        for e in well.history.estimates
+        if e.bound == "range" and e.velocity is not None and e.phase.size is not None
+    ]
+
+
+def bed_state_plane(well: Well) -> Picture | None:
+    """Grain Shields number against grain size, with the edges of bed states and the phases."""
+    phases = [e for e in _ranged(well) if e.shear_velocity is not None]
+    if not phases:
+        return None
+    width, height = 150.0, 95.0
+    d_mm = np.geomspace(0.06, 4.0, 200)
+    temperature = well.log.header.water_temperature_c
+    water = {
+        "temp_c": 10.0 if temperature is None else temperature,
+        "salinity": well.log.header.salinity or 0.0,
+    }
+    dstar = np.asarray(evaluate("grain.dstar", d_mm=d_mm, submerged_gravity=R_QUARTZ, **_viscosity(water)))
+    motion = np.asarray(evaluate("threshold.soulsby_whitehouse", dstar=dstar))
+    with _figure(width, height) as (figure, axes):
+        _edge(axes, d_mm, motion, 0.20, "motion")
+        _edge(axes, d_mm[dstar < 12], 4 * motion[dstar < 12], 0.20, "ripples to dunes")
+        _edge(axes, d_mm, np.full_like(d_mm, 0.70), 0.15, "to upper plane bed")
+        for e in phases:
+            size, u = e.phase.size, e.shear_velocity
+            if size is None or u is None:
+                continue
+            middle = size.middle_mm / 1000
+            theta = [v**2 / (R_QUARTZ * 9.81 * middle) for v in (u.p10, u.p50, u.p90)]
+            axes.plot([size.middle_mm] * 2, [theta[0], theta[2]], color=EDGE, lw=0.5, alpha=0.7)
+            axes.plot([size.low_mm, size.high_mm], [theta[1]] * 2, color=EDGE, lw=0.5, alpha=0.7)
+            axes.plot([size.middle_mm], [theta[1]], ".", color=INK, ms=3)
+        axes.set(xscale="log", yscale="log", xlim=(0.06, 4), ylim=(0.01, 10))
+        axes.set(xlabel="grain size, mm", ylabel="grain Shields number")
+        _plain_ticks(axes, (0.0625, 0.125, 0.25, 0.5, 1, 2, 4))
+        return _svg(figure, width, height)
+
+
+def velocity_size_chart(well: Well) -> Picture | None:
+    """Mean velocity against grain size, with the classical erosion and deposition lines and the phases."""
+    phases = _ranged(well)
+    if not phases:
+        return None
+    width, height = 150.0, 95.0
+    d_mm = np.geomspace(0.002, 100.0, 300)
+    erosion = evaluate("threshold.hjulstrom_erosion", d_mm=d_mm, nu_m2_s=1.31e-6, submerged_gravity=R_QUARTZ)
+    deposition = evaluate("rest.hjulstrom_deposition", d_mm=d_mm)
+    with _figure(width, height) as (figure, axes):
+        _edge(axes, d_mm, np.asarray(erosion), 0.24, "erosion")
+        _edge(axes, d_mm[d_mm > 0.01], np.asarray(deposition)[d_mm > 0.01], 0.24, "deposition")
+        axes.axvspan(0.002, 0.02, color="#f0eadf", lw=0, zorder=0)
+        axes.text(0.0063, 0.0013, "cohesive", ha="center", color=SOFT, fontsize=6)
+        for e in phases:
+            size, v = e.phase.size, e.velocity
+            if size is None or v is None:
+                continue
+            axes.fill_between([size.low_mm, size.high_mm], v.p10, v.p90, color=OUTER, alpha=0.35, lw=0)
+            axes.plot([size.low_mm, size.high_mm], [v.p50] * 2, color=EDGE, lw=0.8)
+        axes.set(xscale="log", yscale="log", xlim=(0.002, 100), ylim=(0.001, 10))
+        axes.set(xlabel="grain size, mm", ylabel="mean velocity, m/s")
+        _plain_ticks(axes, (0.002, 0.0156, 0.0625, 0.25, 1, 4, 16, 64))
+        return _svg(figure, width, height)
+
+
+def roses(summaries: list[CurrentSummary]) -> Picture | None:
+    """One rose a summary, radius with the square root of frequency."""
+    from logkit.trends.plots import rose
+
+    shown = [s for s in summaries if s.n > 0][:6]
+    if not shown:
+        return None
+    width, height = 52.0 * min(len(shown), 3), 58.0 * (1 + (len(shown) - 1) // 3)
+    shape = {"nrows": 1 + (len(shown) - 1) // 3, "ncols": min(len(shown), 3), "squeeze": False}
+    with _figure(width, height, subplot_kw={"projection": "polar"}, **shape) as (figure, grid):
+        for axes, summary in zip(grid.flat, shown, strict=False):
+            rose(axes, summary)
+        for axes in list(grid.flat)[len(shown) :]:
+            axes.set_visible(False)
+        return _svg(figure, width, height)
+
+
+def _viscosity(water: dict[str, float]) -> dict[str, float]:
+    return {"nu_m2_s": float(evaluate("water.kinematic_viscosity", **water))}
+
+
+def _edge(axes: Any, x: Any, y: Any, sigma_log10: float, label: str) -> None:
+    """A line with its scatter as a band, named at its left end."""
+    axes.fill_between(x, y * 10**-sigma_log10, y * 10**sigma_log10, color="#e7ebef", lw=0, zorder=1)
+    axes.plot(x, y, color=SOFT, lw=0.9, zorder=2)
+    axes.annotate(label, (x[2], y[2]), xytext=(2, 2), textcoords="offset points", fontsize=6, color=SOFT)
+
+
+def _plain_ticks(axes: Any, sizes: tuple[float, ...]) -> None:
+    from matplotlib.ticker import FuncFormatter, NullLocator
+
+    axes.set_xticks(sizes, [f"{s:g}" for s in sizes])
+    axes.xaxis.set_minor_locator(NullLocator())
+    axes.yaxis.set_major_formatter(FuncFormatter(lambda value, _: f"{value:g}"))
+    axes.grid(True, which="major", color="#d5d8db", lw=0.3, zorder=0)

@@ -1,0 +1,142 @@
+"""Records of the beds for the html page: what a card shows, and the tags the filter knows."""
+
+from __future__ import annotations
+
+import re
+from collections import defaultdict
+from collections.abc import Iterator
+from dataclasses import replace
+from typing import Any
+
+from logkit.model import Bed, PhaseEstimate, Quantiles
+from logkit.report import parts_log
+from logkit.report.document import Figure
+from logkit.report.parts_flow import ledger_rows, size_words
+from logkit.report.parts_log import contact, label, rock, sizes
+from logkit.report.settings import ReportSettings
+from logkit.report.wells import Well
+from logkit.report.wording import Units
+from logkit.words import digits
+
+
+def bed_records(well: Well, units: Units) -> Iterator[dict[str, Any]]:
+    """One record a bed, upward: title, facts, phases with ranges and ledger, original wording, tags."""
+    ledgers: dict[tuple[str, int], list[dict[str, str]]] = defaultdict(list)
+    for key, _, phase, cells in ledger_rows(well):
+        ledgers[key, phase].append(cells)
+    notes = defaultdict(list)
+    for finding in well.log.findings:
+        if finding.bed:
+            notes[finding.bed].append(f"{finding.level}: {finding.message}")
+    for index, bed in enumerate(well.log.beds):
+        key = well.keys[index]
+        found = well.estimates.get(index, ())
+        yield {
+            "key": key,
+            "title": f"{well.name}, {'gap' if bed.is_gap else 'bed'} {bed.name}",
+            "facts": [[name, text] for name, text in _facts(well, bed, units) if text],
+            "phases": [_phase(e, ledgers[key, e.phase.index], units) for e in found],
+            "written": [list(pair) for pair in bed.written],
+            "findings": notes.get(bed.name, []),
+            "tags": _tags(well, bed, found),
+        }
+
+
+LONG_LOG = 250
+"""Beds above which the page's column goes without texture dots, to keep the file small."""
+
+
+def page_columns(well: Well, settings: ReportSettings) -> list[Figure]:
+    """The column of a log for the page: bed groups named by their keys; without dots for a long log."""
+    dots = len(well.log.beds) <= LONG_LOG
+    return [
+        replace(figure, svg=_keyed(figure.svg)) for figure in parts_log.columns(well, settings, dots=dots)
+    ]
+
+
+def _keyed(svg: str) -> str:
+    """Bed groups named by their element id, which is unique, instead of the bed's name, which may not be."""
+
+    def rename(match: re.Match[str]) -> str:
+        tag = match[0]
+        found = re.search(r'\bid="(b-[^"]+)"', tag)
+        return re.sub(r'data-bed="[^"]*"', f'data-bed="{found[1]}"', tag) if found else tag
+
+    return re.sub(r"<g\b[^>]*\bdata-bed=[^>]*>", rename, svg)
+
+
+def _facts(well: Well, bed: Bed, units: Units) -> list[tuple[str, str]]:
+    grading = well.grading(bed)
+    verdict = ""
+    if grading is not None:
+        verdict = grading.verdict + (
+            f", probability {grading.probability:.2f}" if grading.probability else ""
+        )
+        verdict += f" ({grading.basis})" if grading.basis else ""
+    where = f"{units.height(bed.base_m)} to {units.height_words(bed.top_m)}"
+    if bed.depth_base is not None and bed.depth_top is not None:
+        where = f"{bed.depth_top:g} to {bed.depth_base:g} {well.log.header.unit} as written"
+    return [
+        ("position", where),
+        ("thickness", units.height_words(bed.thickness_m) + (" at least" if bed.minimum_thickness else "")),
+        ("rock", rock(bed)),
+        ("grain size", sizes(bed)),
+        ("structures", ", ".join(label("structures", s.term) for s in bed.structures)),
+        ("base contact", contact(bed, units)),
+        ("grading", verdict),
+        ("notes", bed.notes),
+    ]
+
+
+def _phase(estimate: PhaseEstimate, ledger: list[dict[str, str]], units: Units) -> dict[str, Any]:
+    values = []
+    for name, quantiles, unit, factor in (
+        ("velocity", estimate.velocity, units.speed, True),
+        ("flow depth", estimate.flow_depth, units.length, True),
+        ("grain shear velocity", estimate.shear_velocity, units.speed, True),
+        ("total shear velocity", estimate.total_shear_velocity, units.speed, True),
+        ("Froude number", estimate.froude, "1", False),
+    ):
+        if quantiles is not None:
+            values.append([name, *_three(quantiles, units if factor else None), unit])
+    words = [f"Grain size {size_words(estimate)}"] if size_words(estimate) else []
+    if estimate.status != "estimated":
+        words.append(f"No estimate: {estimate.reason}.")
+    elif estimate.bound in ("above", "below") and estimate.limit_velocity_m_s is not None:
+        limit = digits(units.number(estimate.limit_velocity_m_s))
+        words.append(f"Velocity {estimate.bound} {limit} {units.speed}.")
+    if estimate.bed_state:
+        words.append(f"Bed state: {estimate.bed_state.replace('_', ' ')}.")
+    if estimate.transport_mode:
+        words.append(f"Transport: {estimate.transport_mode.replace('_', ' ')}.")
+    if estimate.tendency != "not determinable" and estimate.tendency_probability is not None:
+        words.append(
+            f"Against the phase below: {estimate.tendency}, probability {estimate.tendency_probability:.2f}."
+        )
+    words.extend(estimate.notes)
+    clash = estimate.clash
+    columns = list(ledger[0]) if ledger else []
+    return {
+        "title": f"Phase {estimate.phase.index}: {label('structures', estimate.phase.structure) or 'no structure noted'}",
+        "values": values,
+        "words": words,
+        "conflict": f"Conflict: {clash.first_reading} against {clash.second_reading}." if clash else "",
+        "ledger_columns": columns,
+        "ledger": [[row[c] for c in columns] for row in ledger],
+    }
+
+
+def _three(quantiles: Quantiles, units: Units | None) -> list[str]:
+    values = (quantiles.p10, quantiles.p50, quantiles.p90)
+    return [digits(units.number(v) if units else v) for v in values]
+
+
+def _tags(well: Well, bed: Bed, found: tuple[PhaseEstimate, ...]) -> dict[str, list[str]]:
+    grading = well.grading(bed)
+    tendencies = {e.tendency for e in found} - {"not determinable"}
+    return {
+        "structure": sorted({label("structures", s.term) for s in bed.structures}),
+        "grading": [grading.verdict] if grading and not bed.is_gap else [],
+        "tendency": sorted(tendencies),
+        "bed state": sorted({e.bed_state.replace("_", " ") for e in found if e.bed_state}),
+    }

@@ -1,0 +1,138 @@
+"""The parts of a report about trends: grading, packages, order of beds, palaeocurrents."""
+
+from __future__ import annotations
+
+from collections import Counter
+from collections.abc import Iterator
+
+from logkit.report.document import Block, Column, Figure, Heading, Paragraph, Table
+from logkit.report.wells import Well
+from logkit.report.wording import Units
+from logkit.words import counted, joined
+
+
+def grading(well: Well, units: Units) -> Iterator[Block]:
+    """How many beds are graded how, and the packages with their tests."""
+    yield Heading(well.name)
+    words = Counter(g.verdict for g in well.trends.gradings)
+    if words:
+        yield Paragraph(
+            "Grading: " + joined([f"{word} {n}" for word, n in words.most_common()]) + ". "
+            "Each verdict carries the width of the size classes and has its probability in the bed table; "
+            "ungraded means not distinguished from ungraded."
+        )
+    packages = well.trends.packages
+    if packages:
+        yield Table(
+            f"packages-{well.keys[0]}",
+            f"Packages of {well.name}, upward. Tau is Kendall's tau of the quantity against height; p adjusted "
+            "after Benjamini & Hochberg over all tests of the log. Source: trends of the bed table.",
+            (
+                Column("from bed"),
+                Column("to bed"),
+                Column("base", units.length, "right"),
+                Column("top", units.length, "right"),
+                Column("beds", align="right"),
+                Column("trend", width=1.6),
+                Column("of", width=1.4),
+                Column("tau", align="right"),
+                Column("p", align="right"),
+                Column("p adjusted", align="right"),
+                Column("verdict", width=2.2),
+            ),
+            tuple(
+                (
+                    p.first_bed,
+                    p.last_bed,
+                    units.height(p.base_m),
+                    units.height(p.top_m),
+                    str(p.beds),
+                    p.trend,
+                    p.quantity,
+                    f"{p.tau:+.2f}",
+                    f"{p.p:.3f}",
+                    f"{p.p_adjusted:.3f}",
+                    "significant" if p.significant else "not distinguished from random",
+                )
+                for p in packages
+            ),
+        )
+    else:
+        yield Paragraph("No package was found: the series of beds is not distinguished from random order.")
+    for title, frame in well.trends.tables().items():
+        if title in ("thickness", "transitions") and len(frame):
+            yield Table(
+                f"{title}-{well.keys[0]}",
+                TABLE_CAPTIONS[title].format(well.name),
+                tuple(
+                    Column(str(c).replace("_", " "), align="left" if frame[c].dtype == object else "right")
+                    for c in frame.columns
+                ),
+                tuple(tuple(_cell(v) for v in row) for row in frame.itertuples(index=False, name=None)),
+            )
+
+
+TABLE_CAPTIONS = {
+    "thickness": "Bed thickness of {}: statistics by class. Gaps and layers of written patterns are left out. "
+    "Source: bed table.",
+    "transitions": "Upward transitions of {}: counts against quasi-independence (embedded chain). Gaps and "
+    "faults break the chain. Source: bed table.",
+}
+
+
+def currents(well: Well) -> Iterator[Block]:
+    """Summaries of directions as roses and as a table."""
+    from logkit.report.charts import roses
+
+    summaries = [s for s in well.trends.currents if s.n]
+    if not summaries:
+        return
+    yield Heading(well.name)
+    picture = roses(summaries)
+    if picture is not None:
+        yield Figure(
+            f"roses-{well.keys[0]}",
+            f"Palaeocurrents of {well.name} after correction, 20° sectors, radius with the square root of "
+            "frequency so that area is share. Source: table of directions.",
+            "; ".join(f"{s.indicator.replace('_', ' ')} n {s.n}" for s in summaries),
+            *picture,
+        )
+    yield Table(
+        f"directions-{well.keys[0]}",
+        f"Directions of {well.name} by kind of indicator; spread is the circular standard deviation. Lines "
+        "without a sense are doubled before averaging. Source: corrected readings of the bed table.",
+        (
+            Column("indicator", width=1.6),
+            Column("sense"),
+            Column("n", align="right", width=0.5),
+            Column("mean", "°", "right"),
+            Column("resultant", "0–1", "right"),
+            Column("spread", "°", "right"),
+            Column("Rayleigh p", align="right"),
+            Column("say with it", width=4),
+        ),
+        tuple(
+            (
+                s.indicator.replace("_", " "),
+                s.sense,
+                str(s.n),
+                "undefined" if s.mean_deg is None else f"{s.mean_deg:03.0f}",
+                f"{s.resultant:.2f}",
+                "" if s.spread_deg is None else f"{s.spread_deg:.0f}",
+                "" if s.rayleigh_p is None else f"{s.rayleigh_p:.3f}",
+                "; ".join(s.notes),
+            )
+            for s in summaries
+        ),
+    )
+
+
+def current_count(wells: list[Well]) -> str:
+    """How many readings there are, in words."""
+    return counted(sum(s.n for well in wells for s in well.trends.currents), "reading")
+
+
+def _cell(value: object) -> str:
+    if value is None or value != value:
+        return ""
+    return f"{value:.3g}" if isinstance(value, float) else str(value)

@@ -1,0 +1,83 @@
+"""Numbers and ranges in words: units of the report, no more digits than a number deserves."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+from logkit.model import PhaseEstimate, Quantiles, SizeInterval
+from logkit.words import NO_BREAK, digits
+
+FEET = 0.3048
+
+
+@dataclass(frozen=True, slots=True)
+class Units:
+    """Language of units: metres and m/s, or feet and ft/s. Grain sizes stay in mm, angles in degrees."""
+
+    feet: bool = False
+
+    @property
+    def length(self) -> str:
+        """Unit of heights, thicknesses and depths."""
+        return "ft" if self.feet else "m"
+
+    @property
+    def speed(self) -> str:
+        """Unit of velocities."""
+        return "ft/s" if self.feet else "m/s"
+
+    def number(self, metres: float) -> float:
+        """A length or velocity in the report's unit."""
+        return metres / FEET if self.feet else metres
+
+    def height(self, metres: float) -> str:
+        """A height or thickness to the centimetre (or a twentieth of a foot), without unit."""
+        return f"{self.number(metres):.2f}"
+
+    def height_words(self, metres: float) -> str:
+        """A height or thickness with its unit."""
+        return f"{self.height(metres)}{NO_BREAK}{self.length}"
+
+    def span(self, quantiles: Quantiles | None) -> str:
+        """`P10–P90` of a length or velocity without unit, "" when there is none."""
+        if quantiles is None:
+            return ""
+        return f"{digits(self.number(quantiles.p10))}–{digits(self.number(quantiles.p90))}"
+
+    def middle(self, quantiles: Quantiles | None) -> str:
+        """Median of a length or velocity without unit."""
+        return "" if quantiles is None else digits(self.number(quantiles.p50))
+
+
+def velocity_cell(estimate: PhaseEstimate, units: Units) -> str:
+    """Velocity as shown in a table: the range, a bound, or the reason why there is none."""
+    if estimate.status != "estimated":
+        return estimate.reason or "no estimate"
+    if estimate.bound in ("above", "below") and estimate.limit_velocity_m_s is not None:
+        return f"{estimate.bound} {digits(units.number(estimate.limit_velocity_m_s))}"
+    return units.span(estimate.velocity)
+
+
+def depth_cell(estimate: PhaseEstimate, units: Units) -> str:
+    """Flow depth as shown in a table."""
+    if estimate.flow_depth is not None:
+        return units.span(estimate.flow_depth)
+    if estimate.limit_flow_depth_m is not None:
+        return f"above {digits(units.number(estimate.limit_flow_depth_m))}"
+    return ""
+
+
+def size_cell(size: SizeInterval | None) -> str:
+    """A size interval in mm, with the class as written in front when it has one."""
+    if size is None:
+        return ""
+    span = (
+        digits(size.low_mm)
+        if size.low_mm == size.high_mm
+        else f"{digits(size.low_mm)}–{digits(size.high_mm)}"
+    )
+    return (
+        f"{size.label} ({span}{NO_BREAK}mm)"
+        if size.label and "mm" not in size.label
+        else f"{span}{NO_BREAK}mm"
+    )
