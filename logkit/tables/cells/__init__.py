@@ -1,0 +1,1 @@
+"""Readers of single cells: text in, a `Reading` out. They know neither files nor rows, and never raise."""

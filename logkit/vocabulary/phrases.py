@@ -1,0 +1,92 @@
+"""Finding terms in running shorthand: the longest known phrase from the left, over several vocabularies at once.
+
+What a found term means for a bed belongs to the cell readers.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from functools import cache
+
+from logkit.errors import nearest
+from logkit.vocabulary.ambiguity import Ambiguity, ambiguities
+from logkit.vocabulary.loading import load_toml
+from logkit.vocabulary.terms import Term, vocabulary
+from logkit.vocabulary.words import normal, tokens, word
+
+
+@dataclass(frozen=True, slots=True)
+class Piece:
+    """A stretch of a text.
+
+    Attributes
+    ----------
+    written : the words as written, joined by one space
+    vocabulary, term : what it stands for; "" and None for words that are not known
+    ambiguity : its readings when it means more than one thing
+    filler : True for a word that changes nothing ("with", "some")
+    """
+
+    written: str
+    vocabulary: str = ""
+    term: Term | None = None
+    ambiguity: Ambiguity | None = None
+    filler: bool = False
+
+
+class Lexicon:
+    """The phrases of several vocabularies in one look-up; where two know a phrase, the first one named has it."""
+
+    def __init__(self, names: tuple[str, ...]) -> None:
+        self.names = names
+        self._index: dict[str, tuple[str, Term]] = {}
+        for name in names:
+            terms = vocabulary(name)
+            for phrase, id in terms.phrases.items():
+                self._index.setdefault(phrase, (name, terms[id]))
+        self._ambiguous = ambiguities()
+        self._longest = max((phrase.count(" ") + 1 for phrase in self._index), default=1)
+
+    def scan(self, text: str) -> tuple[Piece, ...]:
+        """The text in pieces, from left to right."""
+        parts = tokens(text)
+        pieces: list[Piece] = []
+        at = 0
+        while at < len(parts):
+            for length in range(min(self._longest, len(parts) - at), 0, -1):
+                piece = self._known(parts[at : at + length])
+                if piece:
+                    break
+            else:
+                length = 1
+                written, form = parts[at]
+                piece = Piece(written, filler=all(w in fillers() for w in form))
+            pieces.append(piece)
+            at += length
+        return tuple(pieces)
+
+    def nearest(self, text: str) -> str | None:
+        """Label of the term most like the text, None when nothing is near."""
+        match = nearest(normal(text), self._index)
+        return self._index[match][1].label if match else None
+
+    def _known(self, parts: tuple[tuple[str, tuple[str, ...]], ...]) -> Piece | None:
+        written = " ".join(part for part, _ in parts)
+        doubtful = self._ambiguous.get(written.casefold())
+        key = " ".join(w for _, form in parts for w in form)
+        name, term = self._index.get(key, ("", None))
+        if doubtful and not any(clear in self.names[:1] for clear in doubtful.clear_in):
+            return Piece(written, name, term, doubtful)
+        return Piece(written, name, term) if term else None
+
+
+@cache
+def lexicon(*names: str) -> Lexicon:
+    """The lexicon of these vocabularies; the first is the one a reader is about."""
+    return Lexicon(names)
+
+
+@cache
+def fillers() -> frozenset[str]:
+    """Compared words that change nothing."""
+    return frozenset(w for written in load_toml("words.toml").data["fillers"]["words"] for w in word(written))

@@ -1,0 +1,67 @@
+"""How words are compared: one form for the many ways of writing the same word. No terms belong here.
+
+`tr. X-beds`, `trough cross-bedded` and `trough xb` come out alike. The single words that are brought together
+are data (`data/words.toml`); phrases and their terms are in the vocabularies.
+"""
+
+from __future__ import annotations
+
+import re
+from functools import cache, lru_cache
+
+from logkit.vocabulary.loading import load_toml
+
+_PARTS = re.compile(r"//|[^\W_]+(?:'[^\W_]+)?|[&?%+]", re.UNICODE)
+
+
+@cache
+def word_forms() -> dict[str, tuple[str, ...]]:
+    """Variant of a word -> the words it stands for, from the data file."""
+    forms: dict[str, tuple[str, ...]] = {}
+    for target, variants in load_toml("words.toml").data["forms"].items():
+        for variant in variants:
+            forms[variant] = tuple(target.split())
+    return forms
+
+
+@lru_cache(maxsize=16384)
+def word(text: str) -> tuple[str, ...]:
+    """The compared form of one written word; a variant may stand for several words.
+
+    Examples
+    --------
+    >>> word("Xbeds"), word("ripples")
+    (('cross', 'bedding'), ('ripple',))
+    """
+    folded = text.casefold()
+    forms = word_forms()
+    if folded in forms:
+        return forms[folded]
+    single = _singular(folded)
+    return forms.get(single, (single,))
+
+
+def _singular(text: str) -> str:
+    if len(text) > 3 and text.endswith("s") and not text.endswith("ss"):
+        return text[:-1]
+    return text
+
+
+@lru_cache(maxsize=16384)
+def tokens(text: str) -> tuple[tuple[str, tuple[str, ...]], ...]:
+    """Written words of a text, each with its compared form.
+
+    Returns
+    -------
+    Pairs (word as written, compared words), in order.
+    """
+    return tuple((part, word(part)) for part in _PARTS.findall(text))
+
+
+@lru_cache(maxsize=16384)
+def normal(text: str) -> str:
+    """The compared form of a phrase: words joined by one space, `and` and marks left out."""
+    return " ".join(w for _, form in tokens(text) for w in form if w not in _LEFT_OUT)
+
+
+_LEFT_OUT = frozenset("?%+")
