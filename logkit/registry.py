@@ -85,24 +85,29 @@ class Registry(Generic[T]):
                 import_module(module)
 
 
-FAMILIES: dict[str, str] = {
-    "grain": "logkit.grains",
-    "water": "logkit.hydraulics.water",
-    "settling": "logkit.hydraulics.settling",
-    "threshold": "logkit.hydraulics.threshold",
-    "suspension": "logkit.hydraulics.suspension",
-    "resistance": "logkit.hydraulics.resistance",
-    "bedforms": "logkit.hydraulics.bedforms",
-    "depth": "logkit.hydraulics.depth",
-    "slope": "logkit.hydraulics.slope",
-    "waves": "logkit.hydraulics.waves",
-    "wind": "logkit.hydraulics.wind",
-    "turbidity": "logkit.hydraulics.turbidity",
-    "rest": "logkit.hydraulics.rest",
-    "stat": "logkit.trends.formulas",
-    "geometry": "logkit.trends.geometry",
+FAMILIES: dict[str, tuple[str, ...]] = {
+    "grain": ("logkit.grains",),
+    "water": ("logkit.hydraulics.water",),
+    "settling": ("logkit.hydraulics.settling",),
+    "threshold": (
+        "logkit.hydraulics.threshold",
+        "logkit.hydraulics.mixtures",
+        "logkit.hydraulics.competence",
+        "logkit.hydraulics.forces",
+    ),
+    "suspension": ("logkit.hydraulics.suspension",),
+    "resistance": ("logkit.hydraulics.resistance", "logkit.hydraulics.manning"),
+    "bedforms": ("logkit.hydraulics.bedforms", "logkit.hydraulics.bedstates"),
+    "depth": ("logkit.hydraulics.depth",),
+    "slope": ("logkit.hydraulics.slope",),
+    "waves": ("logkit.hydraulics.waves", "logkit.hydraulics.wave_ripples"),
+    "wind": ("logkit.hydraulics.wind",),
+    "turbidity": ("logkit.hydraulics.turbidity",),
+    "rest": ("logkit.hydraulics.rest",),
+    "stat": ("logkit.trends.formulas",),
+    "geometry": ("logkit.trends.geometry",),
 }
-"""First part of a formula id -> the module that registers the formulas of that family."""
+"""First part of a formula id -> the modules that register the formulas of that family."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -207,7 +212,8 @@ class FormulaRegistry(Registry[Formula]):
         """Import the module that registers a family, once."""
         if family in FAMILIES and family not in self._families:
             self._families.add(family)
-            import_module(FAMILIES[family])
+            for module in FAMILIES[family]:
+                import_module(module)
 
     def __getitem__(self, name: str) -> Formula:
         self.load_family(name.split(".", 1)[0])
@@ -255,7 +261,7 @@ def formula(
     equation : formula in plain text
     source, locator : reference key ("ours" for an own construction) and equation, table or page
     status : "published", "secondary", "memory" or "ours"
-    inputs : meaning of each argument by its name in the signature
+    inputs : meaning of each argument by its name in the signature; other entries are passed over
     limits : tested ranges; leaving one gives a note
     positive, not_negative : arguments that must be > 0 or >= 0
     homogeneous : False for an empirical formula whose coefficients carry dimensions
@@ -264,7 +270,8 @@ def formula(
     """
 
     def decorate(function: F) -> F:
-        quantities = tuple(_input_quantity(name, meaning) for name, meaning in inputs.items())
+        names = [n for n in inspect.signature(function).parameters if n in inputs]
+        quantities = tuple(_input_quantity(name, inputs[name]) for name in names)
         guarded = _guard(function, positive, not_negative)
         record = Formula(
             id=id,
@@ -329,7 +336,8 @@ def assess(id: str, **inputs: Any) -> Assessed:
         missing: Any = functools.reduce(np.logical_or, [np.isnan(n) for n in numbers], np.False_)
     except ValueError:  # lists of unlike length (percentile tables, azimuths): no common mask
         missing = False
-    notes, outside = [], np.False_
+    notes: list[str] = []
+    outside: Any = np.False_
     for limit in record.limits:
         try:
             measured = np.asarray(limit.measure(**arguments), dtype=float)
