@@ -88,9 +88,10 @@ class Registry(Generic[T]):
 FAMILIES: dict[str, tuple[str, ...]] = {
     "grain": ("logkit.grains",),
     "water": ("logkit.hydraulics.water",),
-    "settling": ("logkit.hydraulics.settling",),
+    "settling": ("logkit.hydraulics.settling", "logkit.hydraulics.spheres"),
     "threshold": (
         "logkit.hydraulics.threshold",
+        "logkit.hydraulics.critical_velocity",
         "logkit.hydraulics.mixtures",
         "logkit.hydraulics.competence",
         "logkit.hydraulics.forces",

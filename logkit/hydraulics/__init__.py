@@ -9,6 +9,7 @@ Examples
 
 from __future__ import annotations
 
+from logkit.hydraulics.sources import describe, sources_table
 from logkit.registry import FORMULAS, Assessed, ValidityNote, assess, evaluate
 
-__all__ = ["FORMULAS", "Assessed", "ValidityNote", "assess", "evaluate"]
+__all__ = ["FORMULAS", "Assessed", "ValidityNote", "assess", "describe", "evaluate", "sources_table"]

@@ -7,7 +7,8 @@ from __future__ import annotations
 
 import numpy as np
 
-from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, dimensionless_diameter
+from logkit.grains.numbers import dimensionless_diameter
+from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values
 from logkit.hydraulics.resistance import _DEPTH_OVER_D90, grain_chezy
 from logkit.hydraulics.threshold import van_rijn_shields
 from logkit.registry import GRAVITY_M_S2, Limit, formula
@@ -342,7 +343,6 @@ def ten_degree_velocity_factor(mu_pa_s: Values) -> Values:
     positive=("d50_m", "submerged_gravity", "nu_m2_s"),
     resolve=Fluid(("submerged_gravity", "nu_m2_s")),
     pitfalls="Ripple size depends neither on depth nor on velocity: it gives no depth.",
-    dimension=(1, 0, 0),
 )
 def ripple_height(
     d50_m: Values, submerged_gravity: Values, nu_m2_s: Values, g_m_s2: Values = GRAVITY_M_S2
@@ -381,7 +381,6 @@ def ripple_height(
     positive=("d50_m", "submerged_gravity", "nu_m2_s"),
     resolve=Fluid(("submerged_gravity", "nu_m2_s")),
     pitfalls="Ripple size depends neither on depth nor on velocity: it gives no depth.",
-    dimension=(1, 0, 0),
 )
 def ripple_length(
     d50_m: Values, submerged_gravity: Values, nu_m2_s: Values, g_m_s2: Values = GRAVITY_M_S2

@@ -11,8 +11,9 @@ from typing import Any
 
 import numpy as np
 
+from logkit.grains.numbers import dimensionless_diameter
 from logkit.hydraulics.bedforms import UPPER_PLANE_THETA, froude, skin_shields
-from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, dimensionless_diameter
+from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values
 from logkit.hydraulics.resistance import _DEPTH_OVER_D90
 from logkit.hydraulics.threshold import MEASURED_SIGMA_LOG10, soulsby_whitehouse
 from logkit.registry import GRAVITY_M_S2, Limit, formula

@@ -13,6 +13,7 @@ from typing import Any, TypeAlias
 import numpy as np
 
 from logkit.errors import ArgumentError
+from logkit.grains.numbers import dimensionless_diameter, particle_reynolds_number
 from logkit.registry import GRAVITY_M_S2
 from logkit.units import split_suffix
 
@@ -126,9 +127,9 @@ class Fluid:
             if name in makers:
                 result[name] = value(name)
             elif diameter is not None:
+                number = dimensionless_diameter if name == "dstar" else particle_reynolds_number
                 gravity = result.get("g_m_s2", GRAVITY_M_S2)
-                made = dimensionless_diameter(diameter, value("submerged_gravity"), value("nu_m2_s"), gravity)
-                result[name] = made if name == "dstar" else made**1.5
+                result[name] = number(diameter, value("submerged_gravity"), value("nu_m2_s"), gravity)
         return result
 
     def _take_size(self, result: dict[str, Any]) -> Any:
@@ -144,13 +145,6 @@ class Fluid:
                     raise ArgumentError(name, diameter, "above zero")
                 return diameter
         return None
-
-
-def dimensionless_diameter(
-    d_m: Values, submerged_gravity: Values, nu_m2_s: Values, g_m_s2: Values = GRAVITY_M_S2
-) -> Values:
-    """D* = D (R g/nu^2)^(1/3), the size coordinate of most formulas here."""
-    return d_m * np.cbrt(submerged_gravity * g_m_s2 / np.square(nu_m2_s))
 
 
 def above_one(ratio: Values) -> Values:

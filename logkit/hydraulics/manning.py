@@ -97,7 +97,6 @@ def cf_range(setting: str, bound: str) -> float:
     ),
     positive=("flow_depth_m", "slope", "d50_m", "submerged_gravity"),
     resolve=Fluid(("submerged_gravity",)),
-    dimension=(-1 / 3, 1, 0),
 )  # fmt: skip
 def engelund_hansen_manning_n(
     flow_depth_m: Values,
@@ -142,7 +141,6 @@ def engelund_hansen_manning_n(
     positive=("velocity_m_s", "flow_depth_m", "d50_m", "d90_m", "submerged_gravity", "nu_m2_s"),
     resolve=Fluid(("submerged_gravity", "nu_m2_s")),
     pitfalls="Worked examples with T above 25 circulate with negative dune heights.",
-    dimension=(-1 / 3, 1, 0),
 )
 def van_rijn_manning_n(
     velocity_m_s: Values,

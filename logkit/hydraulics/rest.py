@@ -7,8 +7,9 @@ from __future__ import annotations
 
 import numpy as np
 
+from logkit.grains.numbers import dimensionless_diameter
 from logkit.hydraulics.bedforms import velocity_from_skin_shields
-from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, dimensionless_diameter
+from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values
 from logkit.hydraulics.resistance import _DEPTH_OVER_D90, grain_chezy
 from logkit.hydraulics.settling import ferguson_church
 from logkit.hydraulics.threshold import soulsby_whitehouse

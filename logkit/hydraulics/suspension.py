@@ -7,7 +7,8 @@ from __future__ import annotations
 
 import numpy as np
 
-from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, chosen, dimensionless_diameter
+from logkit.grains.numbers import dimensionless_diameter
+from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, chosen
 from logkit.hydraulics.resistance import KAPPA
 from logkit.hydraulics.settling import ferguson_church
 from logkit.hydraulics.threshold import critical_shear_velocity

@@ -149,7 +149,6 @@ def densimetric_froude(
     inputs=_MEANINGS,
     positive=("velocity_m_s", "slope", "submerged_gravity", "nu_m2_s", "efficiency"),
     resolve=Fluid(("submerged_gravity", "nu_m2_s")),
-    dimension=(1, 0, 0),
 )
 def autosuspension_size(
     velocity_m_s: Values,

@@ -192,11 +192,7 @@ def _friction_reynolds(
     scatter="within 10 % of Shao & Lu for 0.125-1 mm",
     status="secondary",
     inputs=_MEANINGS,
-    limits=(
-        Limit(
-            "Re", 0.03, None, lambda **a: iversen_white(**a) * a["d_m"] / a.get("nu_air_m2_s", AIR_NU_M2_S)
-        ),
-    ),
+    limits=(Limit("Re", 0.03, None, lambda **sizes: _friction_reynolds(**sizes)),),
     positive=(*_SIZES, "nu_air_m2_s"),
     homogeneous=False,
     pitfalls="Implicit. The original cohesion constant 0.006 is in cgs units.",
