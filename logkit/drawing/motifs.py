@@ -1,0 +1,381 @@
+"""Motifs: the glyph of every term and how a structure fills a bed, read from motifs.toml.
+
+A motif names its steps (see `marks`), a way of filling with lines (see `strata`) and how objects are placed
+(see `objects`). This module reads and checks the file, cuts the lines to the bed and paints them.
+"""
+
+from __future__ import annotations
+
+import dataclasses
+import itertools
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass
+from functools import cache
+from pathlib import Path as FilePath
+from types import MappingProxyType
+from typing import Any
+
+import numpy as np
+
+from logkit.drawing.data_file import DataText, Reader, field_types, read_data
+from logkit.drawing.ground import Array, LineSegment
+from logkit.drawing.marks import Mark, draw_mark, mark_outline, parse_step
+from logkit.drawing.noise import seed_of
+from logkit.drawing.objects import PLACINGS, Objects, Placed
+from logkit.drawing.shapes import Paint, Path, Point, Segment, Shape
+from logkit.drawing.strata import WAYS, Box, Way
+from logkit.drawing.style import Style
+from logkit.errors import ArgumentError
+from logkit.vocabulary import vocabulary
+
+GENERIC = "unknown_term"
+"""The motif of a term that has none."""
+
+_KEYS = ("label", "group", "glyph", "fill", "mark", "objects", "like", "source")
+_CELL_MM = 0.02  # lines are simplified by no more than this
+_LEAST_STROKE_MM = 0.35  # shorter rests of cut lines are left out
+
+
+@dataclass(frozen=True, slots=True)
+class Motif:
+    """How one term is drawn.
+
+    Attributes
+    ----------
+    term : vocabulary id
+    label, group : in words and for the symbol sheet
+    glyph : steps of the small symbol
+    fill : way of filling a bed with lines, None for none
+    mark, objects : what stands in the bed and where, `objects` None for nothing
+    """
+
+    term: str
+    label: str
+    group: str
+    glyph: Mark
+    fill: Way | None = None
+    mark: Mark = ()
+    objects: Objects | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class StructureLines:
+    """Shapes of a structure in a bed, and the segments that grains keep clear of (x0, y0, x1, y1)."""
+
+    lines: tuple[Shape, ...]
+    clear: tuple[LineSegment, ...]
+
+
+@cache
+def all_motifs() -> Mapping[str, Motif]:
+    """The motifs that ship with logkit, by term."""
+    return load_motifs(FilePath(__file__).parent / "motifs.toml")
+
+
+def load_motifs(path: str | FilePath) -> Mapping[str, Motif]:
+    """Read and check a motif file.
+
+    Raises
+    ------
+    DataFileError : an unknown key, a step that cannot be read, a missing glyph; names file and line
+    """
+    data = read_data(FilePath(path))
+    return MappingProxyType({term: _motif(term, data) for term in data.tables})
+
+
+def motif(term: str) -> Motif:
+    """The motif of a term; a term without one gets the generic mark under its own name."""
+    found = all_motifs().get(term)
+    if found is not None:
+        return found
+    return dataclasses.replace(all_motifs()[GENERIC], term=term, label=term.replace("_", " "))
+
+
+def has_motif(term: str) -> bool:
+    """True when the term has a motif of its own."""
+    return term in all_motifs()
+
+
+def glyph(
+    term: str, centre: Point, width: float, height: float, style: Style, ink: str | None = None
+) -> tuple[Shape, ...]:
+    """The small symbol of a structure, fossil, contact or other term.
+
+    Parameters
+    ----------
+    term : vocabulary id; any other text gives the generic mark
+    centre, width, height : where and how large, mm
+    style : whose inks and line weights are used
+    ink : colour instead of the style's ink
+    """
+
+    def place(x: float, y: float) -> Point:
+        return centre[0] + x * width / 2, centre[1] - y * height / 2
+
+    unit = min(width, height) / 2
+    return draw_mark(motif(term).glyph, place, unit, style, ink or style.colours.ink, style.lines.glyph)
+
+
+def structure_lines(
+    term: str,
+    box: Box,
+    set_mm: float | None,
+    seed: int,
+    style: Style,
+    outline: Sequence[Point] | None = None,
+) -> StructureLines:
+    """A structure drawn in its bed.
+
+    Parameters
+    ----------
+    term : vocabulary id; a term without a motif gives a few generic marks
+    box : x0, y of the top, x1, y of the base on the page, mm
+    set_mm : thickness of one set on the page, None when not recorded
+    seed : the same seed gives the same drawing
+    style : whose inks and weights are used
+    outline : polygon to cut to, the box by default
+
+    Raises
+    ------
+    ArgumentError : the box has no area or is not finite
+    """
+    if not np.isfinite(box).all() or box[2] <= box[0] or box[3] <= box[1]:
+        raise ArgumentError("box", box, "x0, y of the top, x1, y of the base with some area")
+    drawn = motif(term)
+    random = np.random.default_rng(seed ^ seed_of(term))
+    polygon = np.asarray(
+        outline
+        if outline is not None
+        else [(box[0], box[1]), (box[2], box[1]), (box[2], box[3]), (box[0], box[3])],
+        dtype=float,
+    )
+    strokes: dict[str, list[Array]] = {}
+    if drawn.fill is not None:
+        size = None if set_mm is None or not set_mm > 0 else set_mm
+        for stratum in drawn.fill.lines(box, size, random):
+            strokes.setdefault(stratum.role, []).extend(cut(stratum.points, polygon))
+    shapes = [_painted(role, lines, style) for role, lines in sorted(strokes.items()) if lines]
+    clear = [segment for lines in strokes.values() for line in lines for segment in _segments(line)]
+    if drawn.objects is not None:
+        for placed in drawn.objects.places(box, random):
+            made, edges = _object(drawn.mark or drawn.glyph, placed, polygon, style)
+            shapes += made
+            clear += edges
+    return StructureLines(tuple(shapes), tuple(clear))
+
+
+def cut(line: Array, polygon: Array) -> list[Array]:
+    """The parts of a polyline inside a polygon, simplified; very short rests are left out."""
+    crossings = _crossings(line, polygon)
+    inside = _inside(line, polygon)
+    if not crossings:
+        return [_simplified(line)] if inside[0] and len(line) > 1 else []
+    parts: list[list[Array]] = []
+    current: list[Array] = [line[0]] if inside[0] else []
+    state = bool(inside[0])
+    for i in range(len(line) - 1):
+        for along in crossings.get(i, ()):
+            at = line[i] + along * (line[i + 1] - line[i])
+            current.append(at)
+            if state:
+                parts.append(current)
+                current = []
+            state = not state
+        if state:
+            current.append(line[i + 1])
+    if state and len(current) > 1:
+        parts.append(current)
+    arrays = [np.array(part) for part in parts if len(part) > 1]
+    return [_simplified(part) for part in arrays if _length(part) >= _LEAST_STROKE_MM]
+
+
+def _crossings(line: Array, polygon: Array) -> dict[int, list[float]]:
+    """Where the pieces of a line cross the polygon: piece -> shares along it, ascending."""
+    low, high = polygon.min(axis=0), polygon.max(axis=0)
+    if (line >= low + 1e-9).all() and (line <= high - 1e-9).all() and len(polygon) == 4 and _is_box(polygon):
+        return {}
+    p, d = line[:-1, None, :], np.diff(line, axis=0)[:, None, :]
+    q = polygon[None, :, :]
+    e = np.roll(polygon, -1, axis=0)[None, :, :] - q
+    cross = d[..., 0] * e[..., 1] - d[..., 1] * e[..., 0]
+    gap = q - p
+    with np.errstate(divide="ignore", invalid="ignore"):
+        t = (gap[..., 0] * e[..., 1] - gap[..., 1] * e[..., 0]) / cross
+        u = (gap[..., 0] * d[..., 1] - gap[..., 1] * d[..., 0]) / cross
+    hit = (cross != 0) & (t >= 0) & (t < 1) & (u >= 0) & (u < 1)
+    found: dict[int, list[float]] = {}
+    for i, j in zip(*np.nonzero(hit), strict=True):
+        found.setdefault(int(i), []).append(float(t[i, j]))
+    return {i: sorted(shares) for i, shares in found.items()}
+
+
+def _is_box(polygon: Array) -> bool:
+    return len(np.unique(polygon[:, 0])) == 2 and len(np.unique(polygon[:, 1])) == 2
+
+
+def _inside(points: Array, polygon: Array) -> np.ndarray:
+    x, y = points[:, 0, None], points[:, 1, None]
+    ax, ay = polygon[:, 0], polygon[:, 1]
+    bx, by = np.roll(ax, -1), np.roll(ay, -1)
+    with np.errstate(divide="ignore", invalid="ignore"):
+        at = ax + (y - ay) * (bx - ax) / (by - ay)
+    crosses = ((ay > y) != (by > y)) & (x < at)
+    return np.asarray(crosses.sum(axis=1) % 2 == 1)
+
+
+def _simplified(line: Array) -> Array:
+    """The polyline without points that lie within a hair of the line between their neighbours kept."""
+    if len(line) < 3:
+        return line
+    keep = np.zeros(len(line), dtype=bool)
+    keep[[0, -1]] = True
+    stack = [(0, len(line) - 1)]
+    while stack:
+        first, last = stack.pop()
+        if last - first < 2:
+            continue
+        chord = line[last] - line[first]
+        rest = line[first + 1 : last] - line[first]
+        size = float(np.hypot(chord[0], chord[1]))
+        away = np.abs(rest[:, 0] * chord[1] - rest[:, 1] * chord[0]) / size if size else np.hypot(*rest.T)
+        worst = int(away.argmax())
+        if away[worst] > _CELL_MM:
+            middle = first + 1 + worst
+            keep[middle] = True
+            stack += [(first, middle), (middle, last)]
+    return line[keep]
+
+
+def _length(line: Array) -> float:
+    return float(np.hypot(*np.diff(line, axis=0).T).sum())
+
+
+def _segments(line: Array) -> list[LineSegment]:
+    points = line.tolist()
+    return [(*a, *b) for a, b in itertools.pairwise(points)]
+
+
+def _painted(role: str, lines: list[Array], style: Style) -> Shape:
+    widths = style.lines
+    weight = {"set": widths.set, "crest": widths.crest, "drape": widths.drape, "mud": widths.crest}
+    colour = {"set": style.colours.ink, "drape": style.colours.drape}
+    steps: list[Segment] = []
+    for line in lines:
+        steps += [("M" if i == 0 else "L", (x, y)) for i, (x, y) in enumerate(line.tolist())]
+    ink = colour.get(role, style.colours.structure)
+    fill = style.colours.chip if role == "mud" else None
+    width = weight.get(role, widths.lamina)
+    return Path(tuple(steps), Paint(fill=fill, stroke=ink, width=width, cap="round", join="round"))
+
+
+def _object(
+    mark: Mark, placed: Placed, polygon: Array, style: Style
+) -> tuple[tuple[Shape, ...], list[LineSegment]]:
+    """One object, or nothing where it would leave the bed."""
+    cos, sin = float(np.cos(placed.turn)), float(np.sin(placed.turn))
+
+    def place(x: float, y: float) -> Point:
+        across, up = x * placed.half_width, -y * placed.half_height
+        return placed.x + across * cos - up * sin, placed.y + across * sin + up * cos
+
+    unit = min(placed.half_width, placed.half_height)
+    edges = mark_outline(mark, place, unit)
+    if not _inside(np.array([point for line in edges for point in line]), polygon).all():
+        return (), []
+    shapes = draw_mark(mark, place, unit, style, style.colours.structure, style.lines.crest)
+    return shapes, [(*a, *b) for line in edges for a, b in itertools.pairwise(line)]
+
+
+def _motif(term: str, data: DataText, chain: tuple[str, ...] = ()) -> Motif:
+    table = data.tables[term]
+    reader = Reader({(term,): data}, data.name)
+    reader.keys(reader.table(table, (term,)), _KEYS, (term,))
+    base = _like(term, table, data, chain)
+    words = {
+        key: reader.value(str, table[key], (term, key))
+        for key in ("label", "group", "source")
+        if key in table
+    }
+    made = Motif(
+        term=term,
+        label=words.get("label") or _label(term),
+        group=words.get("group") or (base.group if base else ""),
+        glyph=_steps(term, "glyph", table, data) or (base.glyph if base else ()),
+        fill=_way(term, table, reader) if "fill" in table else (base.fill if base else None),
+        mark=_steps(term, "mark", table, data) or (base.mark if base else ()),
+        objects=_objects(term, table, reader, data)
+        if "objects" in table
+        else (base.objects if base else None),
+    )
+    if not made.glyph:
+        raise data.fail((term,), f"{term} has no glyph.", "Give it steps, or like = another term.")
+    if not made.group:
+        raise data.fail((term,), f"{term} has no group.", "Give it the heading it stands under.")
+    return made
+
+
+def _like(term: str, table: dict[str, Any], data: DataText, chain: tuple[str, ...]) -> Motif | None:
+    other = table.get("like")
+    if other is None:
+        return None
+    if other in (*chain, term):
+        raise data.fail((term, "like"), f"{term} is like itself in a circle.", "Name another term.")
+    if other not in data.tables:
+        problem = data.unknown((term, str(other)), data.tables)
+        raise data.fail((term, "like"), f"there is no motif called {other!r}.", problem.remedy)
+    return _motif(other, data, (*chain, term))
+
+
+def _label(term: str) -> str:
+    for name in ("structures", "fossils", "contacts"):
+        if term in vocabulary(name):
+            return vocabulary(name)[term].label
+    return term.replace("_", " ")
+
+
+def _steps(term: str, key: str, table: dict[str, Any], data: DataText) -> Mark:
+    texts = Reader({(term,): data}, data.name).value(tuple[str, ...], table.get(key, []), (term, key))
+    try:
+        return tuple(parse_step(text) for text in texts)
+    except ValueError as problem:
+        raise data.fail((term, key), f"{problem}.") from None
+
+
+def _way(term: str, table: dict[str, Any], reader: Reader) -> Way:
+    fill = dict(reader.table(table["fill"], (term, "fill")))
+    name = fill.pop("way", None)
+    if name not in WAYS:
+        raise reader.at((term, "fill")).unknown((term, "fill", str(name)), WAYS)
+    way: Way = reader.record(WAYS[name], fill, (term, "fill"))
+    for field in field_types(WAYS[name]):
+        value = getattr(way, field)
+        if field in _ABOVE_ZERO and not value > 0:
+            raise reader.at((term, "fill")).fail((term, "fill"), f"{field} of {term} must be above zero.")
+    return way
+
+
+_ABOVE_ZERO = (
+    "set",
+    "spacing",
+    "row",
+    "wavelength",
+    "angle",
+    "least",
+    "width",
+    "height",
+    "depth",
+    "stoss",
+    "kept",
+)
+
+
+def _objects(term: str, table: dict[str, Any], reader: Reader, data: DataText) -> Objects:
+    placing: Objects = reader.record(Objects, table["objects"], (term, "objects"))
+    if placing.where not in PLACINGS:
+        words = ", ".join(PLACINGS)
+        raise data.fail(
+            (term, "objects"), f"where of {term} is {placing.where!r}; it must be one of {words}."
+        )
+    if min(placing.width, placing.height, placing.spacing) <= 0:
+        raise data.fail((term, "objects"), f"width, height and spacing of {term} must be above zero.")
+    return placing

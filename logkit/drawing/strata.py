@@ -1,0 +1,381 @@
+"""Lines of stratification inside a box: sets of troughs and foresets, laminae, ripples, domes, folds.
+
+Each way of filling is a frozen record of its parameters (the keys of `fill` in motifs.toml) with a method that
+gives polylines, oldest first. Flow runs from left to right. Cutting to the bed and painting is in `motifs`.
+"""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Iterator
+from dataclasses import dataclass
+from typing import Protocol
+
+import numpy as np
+
+from logkit.drawing.ground import Array
+
+Box = tuple[float, float, float, float]
+"""x0, y of the top, x1, y of the base, mm on the page."""
+
+
+@dataclass(frozen=True, slots=True)
+class Stratum:
+    """One line: points (n, 2) in mm on the page and its role, which decides weight and colour."""
+
+    points: Array
+    role: str
+
+
+class Way(Protocol):
+    """A way of filling a bed with lines."""
+
+    def lines(self, box: Box, set_mm: float | None, random: np.random.Generator) -> list[Stratum]:
+        """Lines in the box."""
+
+
+def levels(box: Box, step: float, random: np.random.Generator, uneven: float = 0.0) -> list[float]:
+    """Base heights of sets or rows from the base up, about `step` apart, the top one at least half full."""
+    top, base = box[1], box[3]
+    count = max(1, round((base - top) / step))
+    size = (base - top) / count
+    shifts = uneven * size * (random.random(count) - 0.5)
+    shifts[0] = 0.0
+    return [base - i * size + float(shifts[i]) for i in range(count)]
+
+
+@dataclass(frozen=True, slots=True)
+class Troughs:
+    """Sets of troughs; each younger trough erases older lines.
+
+    width : half-width over set thickness; depth : trough depth over set thickness; skew : of the inner arcs
+    """
+
+    width: float = 1.7
+    depth: float = 1.18
+    skew: float = 0.22
+    set: float = 6.0
+
+    def lines(self, box: Box, set_mm: float | None, random: np.random.Generator) -> list[Stratum]:
+        height = min(set_mm or self.set, box[3] - box[1])
+        height = max(height, 1.6)
+        rows = levels(box, height, random, 0.15)
+        height = (box[3] - box[1]) / len(rows)
+        half, depth = max(2.6, self.width * height), self.depth * height
+        troughs: list[tuple[float, float, float, float]] = []
+        for number, base in enumerate(rows):
+            x = box[0] - half * (0.3 + random.random()) - (number % 2) * 0.5 * half
+            while x - half < box[2]:
+                own = half * (0.85 + 0.35 * random.random())
+                lift = 0.12 * height * random.random()
+                troughs.append((x, base - lift, own, depth))
+                x += own * (1.0 + 0.22 * random.random())
+        return [line for i in range(len(troughs)) for line in self._trough(troughs, i)]
+
+    def _trough(self, troughs: list[tuple[float, float, float, float]], number: int) -> Iterator[Stratum]:
+        cx, bottom, half, depth = troughs[number]
+        younger = np.array(troughs[number + 1 :]).reshape(-1, 4)
+        step = max(1.55, 0.29 * depth)
+        for arc in range(int(0.96 * depth / step) + 1):
+            u = np.linspace(-1, 1, max(13, int(half * 2 / 0.45)))
+            x = cx + half * u + (arc * step * self.skew)
+            y = bottom - arc * step - (depth) * u**2 * (1.0 - 0.06 * arc)
+            own = y >= bottom - depth
+            inside_own = np.abs(x - cx) <= half
+            floor = bottom - depth * ((x - cx) / half) ** 2
+            visible = own & inside_own & (y <= floor + 1e-6)
+            near = younger[np.abs(younger[:, 0] - cx) < half + younger[:, 2]]
+            if len(near):
+                v = (x[:, None] - near[:, 0]) / near[:, 2]
+                above_floor = y[:, None] < near[:, 1] - near[:, 3] * v**2
+                hidden = (np.abs(v) < 1) & above_floor & (y[:, None] > near[:, 1] - near[:, 3] - 0.01)
+                visible &= ~hidden.any(axis=1)
+            role = "set" if arc == 0 else "lamina"
+            for part in runs(np.column_stack([x, y]), visible):
+                if arc == 0 or len(part) > 4:
+                    yield Stratum(part, role)
+
+
+@dataclass(frozen=True, slots=True)
+class Foresets:
+    """Sets of inclined layers.
+
+    angle : dip at the middle of a foreset, degrees; form : "tangential", "sigmoid", "straight" or
+    "overturned"; both_ways : every second set dips the other way; bundles : spacing waxes and wanes;
+    drape : every n-th foreset is a heavy drape, 0 never; whole : one set fills the bed
+    """
+
+    angle: float = 24.0
+    form: str = "tangential"
+    spacing: float = 0.17
+    least: float = 1.9
+    both_ways: bool = False
+    bundles: bool = False
+    drape: int = 0
+    whole: bool = False
+    set: float = 7.0
+
+    def lines(self, box: Box, set_mm: float | None, random: np.random.Generator) -> list[Stratum]:
+        full = box[3] - box[1]
+        height = full if self.whole else max(min(set_mm or self.set, full), 1.4)
+        rows = levels(box, height, random, 0.12)
+        tops = [*rows[1:], box[1]]
+        made: list[Stratum] = []
+        for number, (base, top) in enumerate(zip(rows, tops, strict=True)):
+            made += self._set(box, base, top, number, random)
+            if number:
+                x = np.linspace(box[0], box[2], 7)
+                tilt = 0.25 * (random.random() - 0.5)
+                made.append(Stratum(np.column_stack([x, base + tilt * np.linspace(-1, 1, 7)]), "set"))
+        return made
+
+    def _set(
+        self, box: Box, base: float, top: float, number: int, random: np.random.Generator
+    ) -> Iterator[Stratum]:
+        height = base - top
+        run = height / math.tan(math.radians(self.angle))
+        step = max(self.least, self.spacing * height) * max(1.0, 24.0 / self.angle * 0.55)
+        backward = self.both_ways and number % 2 == 1
+        x, count = box[0] - run - step * random.random(), 0
+        while x < box[2] + run:
+            t = np.linspace(0, 1, 13)
+            fx, fy = self._form(t)
+            px = x + run * fx
+            if backward:
+                px = box[0] + box[2] - px
+            heavy = self.drape and count % self.drape == 0
+            shy = 0.06 * height * random.random()
+            yield Stratum(
+                np.column_stack([px, top + shy + (height - shy) * fy]), "drape" if heavy else "lamina"
+            )
+            beat = 1 + 0.65 * math.sin(count * 0.62) if self.bundles else 1.0
+            x += step * beat * (0.82 + 0.36 * random.random())
+            count += 1
+
+    def _form(self, t: Array) -> tuple[Array, Array]:
+        if self.form == "sigmoid":
+            return t, t * t * (3 - 2 * t)
+        if self.form == "overturned":
+            hook = np.where(t < 0.3, 0.42 * np.sin(np.pi * t / 0.6) * 1.2, 0.50 - 0.0 * t)
+            return np.where(t < 0.3, hook, 0.50 - 1.1 * (t - 0.3)), t
+        if self.form == "straight":
+            return t, t
+        return t, 1 - (1 - t) ** 1.9
+
+
+@dataclass(frozen=True, slots=True)
+class Laminae:
+    """Near-level lines.
+
+    spacing, jitter : mm and share of it; length : range of their lengths as written, mm (0 runs through);
+    wave, wavelength : undulation, mm; tooth : height of teeth (stylolites), mm; pairs : lines come in twos;
+    heavy : every n-th line is a drape, 0 never; crinkle : small irregularity, mm
+    """
+
+    spacing: float = 1.5
+    jitter: float = 0.25
+    shortest: float = 11.0
+    longest: float = 26.0
+    wave: float = 0.0
+    wavelength: float = 14.0
+    tooth: float = 0.0
+    pairs: float = 0.0
+    heavy: int = 0
+    crinkle: float = 0.0
+    gap: float = 2.5
+    role: str = "lamina"
+
+    def lines(self, box: Box, set_mm: float | None, random: np.random.Generator) -> list[Stratum]:
+        made = []
+        for count, level in enumerate(levels(box, self.spacing, random, self.jitter)):
+            y = level - 0.5 * self.spacing
+            if not box[1] + 0.25 < y < box[3] - 0.25:
+                y = 0.5 * (box[1] + box[3]) if box[3] - box[1] < self.spacing else y
+            heavy = bool(self.heavy) and count % self.heavy == 0
+            phase = 2 * math.pi * random.random()
+            for left, right in self._spans(box, random):
+                for shift in (0.0, self.pairs) if self.pairs else (0.0,):
+                    made.append(self._line(left, right, y + shift, phase, heavy, random))
+        return made
+
+    def _spans(self, box: Box, random: np.random.Generator) -> Iterator[tuple[float, float]]:
+        if self.longest <= 0:
+            yield box[0], box[2]
+            return
+        x = box[0] - self.longest * random.random() * 0.6
+        while x < box[2]:
+            length = self.shortest + (self.longest - self.shortest) * random.random()
+            yield max(x, box[0]), min(x + length, box[2])
+            x += length + self.gap * (0.4 + random.random())
+
+    def _line(
+        self, left: float, right: float, y: float, phase: float, heavy: bool, random: np.random.Generator
+    ) -> Stratum:
+        role = "drape" if heavy else self.role
+        bent = self.wave or self.crinkle or self.tooth
+        if not bent:
+            return Stratum(np.array([[left, y], [right, y]]), role)
+        step = 0.7 if self.tooth or self.crinkle else 1.2
+        x = np.linspace(left, right, max(3, int((right - left) / step)))
+        level = y + self.wave * np.sin(2 * math.pi * x / self.wavelength + phase)
+        level = level + self.crinkle * (random.random(x.size) - 0.5)
+        if self.tooth:
+            level = level - self.tooth * np.where(np.arange(x.size) % 2, 0.3 + 0.7 * random.random(x.size), 0)
+        return Stratum(np.column_stack([x, level]), role)
+
+
+@dataclass(frozen=True, slots=True)
+class Ripples:
+    """Rows of ripple profiles with lee laminae.
+
+    stoss : share of the wavelength on the upstream side; row, wavelength, height : mm; climb : shift of each
+    row downstream, mm, with rising set boundaries; kept : share of the ripples drawn; mud : fill the troughs
+    """
+
+    stoss: float = 0.66
+    row: float = 1.75
+    wavelength: float = 4.2
+    height: float = 0.95
+    climb: float = 0.0
+    kept: float = 0.78
+    rounded: bool = False
+    chevrons: bool = False
+    mud: bool = False
+
+    def lines(self, box: Box, set_mm: float | None, random: np.random.Generator) -> list[Stratum]:
+        made: list[Stratum] = []
+        rows = levels(box, self.row * (1.25 if self.mud else 1.0), random, 0.16)
+        start = box[0] - self.wavelength * (1 + random.random())
+        joints: dict[int, list[tuple[float, float]]] = {}
+        for number, base in enumerate(rows):
+            height = min(self.height, 0.62 * (box[3] - box[1]))
+            x = start + (number * self.climb if self.climb else self.wavelength * random.random())
+            if self.climb:
+                x -= math.floor((x - box[0]) / self.wavelength + 2) * self.wavelength
+            count = round((x - start - number * self.climb) / self.wavelength) if self.climb else 0
+            while x < box[2]:
+                length = self.wavelength * (1.0 if self.climb else 0.78 + 0.5 * random.random())
+                tall = height * (0.7 + 0.45 * random.random())
+                joints.setdefault(count, []).append((x, base - 0.12))
+                if random.random() < self.kept:
+                    made += self._ripple(x, base - 0.12, length, tall, random)
+                x += length
+                count += 1
+        if self.climb:
+            made += [Stratum(np.array(points), "set") for points in joints.values() if len(points) > 1]
+        return made
+
+    def _ripple(
+        self, x: float, base: float, length: float, height: float, random: np.random.Generator
+    ) -> Iterator[Stratum]:
+        crest = self.stoss * length
+        t = np.linspace(0, 1, 6)
+        up = np.sin(0.5 * math.pi * t) ** 1.25 if not self.chevrons else t**1.7
+        down = np.cos(0.5 * math.pi * t) ** (0.8 if self.rounded else 1.6)
+        if self.chevrons and not self.rounded:
+            down = (1 - t) ** 1.7
+        xs = np.concatenate([x + crest * t, x + crest + (length - crest) * t[1:]])
+        ys = base - height * np.concatenate([up, down[1:]])
+        yield Stratum(np.column_stack([xs, ys]), "mud" if self.mud else "crest")
+        if self.chevrons:
+            inner = np.array([[x + 0.72 * crest, base], [x + crest, base - 0.55 * height]])
+            outer = np.array([[x + crest, base - 0.55 * height], [x + crest + 0.28 * (length - crest), base]])
+            yield Stratum(np.concatenate([inner, outer[1:]]), "lamina")
+            return
+        for share in (0.55, 0.8)[: 1 + (random.random() < 0.6)]:
+            top = base - height * share**1.25 * 0.82
+            foot = x + crest * share + 0.75 * (length - crest)
+            curve = np.array(
+                [
+                    [x + crest * share, top],
+                    [x + crest * share + 0.35 * (length - crest), base - 0.3 * height * share],
+                    [foot, base - 0.02],
+                ]
+            )
+            yield Stratum(curve, "lamina")
+
+
+@dataclass(frozen=True, slots=True)
+class Domes:
+    """Sets of laminae that drape a wavy surface and are cut by the next one.
+
+    wavelength, height : mm; down : only the hollows are kept (swales); inner : lines a set
+    """
+
+    wavelength: float = 15.0
+    height: float = 1.5
+    set: float = 5.0
+    spacing: float = 1.25
+    down: bool = False
+
+    def lines(self, box: Box, set_mm: float | None, random: np.random.Generator) -> list[Stratum]:
+        rows = levels(box, max(min(set_mm or self.set, box[3] - box[1]), 2.0), random, 0.2)
+        height = min(self.height, 0.3 * (box[3] - box[1]))
+        x = np.linspace(box[0], box[2], max(20, int((box[2] - box[0]) / 0.8)))
+        floors = []
+        for level in rows:
+            length = self.wavelength * (0.8 + 0.4 * random.random())
+            wave = np.sin(2 * math.pi * (x / length + random.random()))
+            wave = np.abs(wave) * 1.6 - 0.8 if self.down else wave
+            floors.append(
+                level - height * (1.0 if self.down else 0.8) + height * wave * (-1.0 if self.down else 1.0)
+            )
+        made = []
+        for number, floor in enumerate(floors):
+            ceiling = floors[number + 1] if number + 1 < len(floors) else np.full(x.size, box[1])
+            thick = (box[3] - box[1]) / len(floors)
+            for lamina in range(max(1, int(1.8 * thick / self.spacing))):
+                fade = 1 - 0.75 * min(1.0, lamina * self.spacing / (1.6 * thick))
+                mean = float(floor.mean())
+                y = mean - lamina * self.spacing + (floor - mean) * fade
+                keep = (y > ceiling + 0.15) & (y <= floor + 1e-9)
+                role = "set" if lamina == 0 else "lamina"
+                made += [Stratum(part, role) for part in runs(np.column_stack([x, y]), keep) if len(part) > 3]
+        return made
+
+
+@dataclass(frozen=True, slots=True)
+class Folds:
+    """Contorted laminae.
+
+    wavelength, height : mm; overhang : how far crests lean over, share of the wavelength; spacing : mm
+    """
+
+    wavelength: float = 7.0
+    height: float = 1.6
+    overhang: float = 0.28
+    spacing: float = 1.3
+    role: str = "lamina"
+
+    def lines(self, box: Box, set_mm: float | None, random: np.random.Generator) -> list[Stratum]:
+        made = []
+        s = np.arange(box[0] - self.wavelength, box[2] + self.wavelength, 0.35)
+        phase, drift = 2 * math.pi * random.random(2)
+        for level in levels(box, self.spacing, random, 0.1):
+            share = (box[3] - level) / max(box[3] - box[1], 1e-9)
+            calm = math.sin(math.pi * min(max(0.12 + 0.8 * share, 0), 1)) ** 0.7
+            angle = 2 * math.pi * s / self.wavelength + phase + 0.8 * np.sin(s / 5.3 + drift)
+            size = min(self.height, 0.35 * (box[3] - box[1])) * calm * (0.75 + 0.35 * np.sin(s / 8.1 + drift))
+            x = s + self.overhang * self.wavelength * calm * np.sin(angle + 0.9)
+            y = level - 0.5 * self.spacing + size * np.cos(angle)
+            made.append(Stratum(np.column_stack([x, y]), self.role))
+        return made
+
+
+def runs(points: Array, keep: np.ndarray) -> Iterator[Array]:
+    """The unbroken stretches of a polyline where `keep` is True, at least two points long."""
+    edges = np.flatnonzero(np.diff(np.concatenate([[False], keep, [False]]).astype(np.int8)))
+    for first, last in zip(edges[::2], edges[1::2], strict=True):
+        if last - first > 1:
+            yield points[first:last]
+
+
+WAYS: dict[str, type[Way]] = {
+    "troughs": Troughs,
+    "foresets": Foresets,
+    "laminae": Laminae,
+    "ripples": Ripples,
+    "domes": Domes,
+    "folds": Folds,
+}
+"""Name in motifs.toml -> way of filling with lines."""
