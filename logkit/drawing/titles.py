@@ -1,0 +1,231 @@
+"""Words around the column: title block, summary line, caution, sheet numbers, scale bar."""
+
+from __future__ import annotations
+
+from logkit.drawing.metrics import MM_PER_POINT, clean, shorten, width_mm, wrap
+from logkit.drawing.scene import Scene, Tally, View
+from logkit.drawing.shapes import Group, Paint, Path, Shape, Text, polyline
+from logkit.drawing.tracks.position import position_unit, shown_position
+from logkit.drawing.tracks.ribbon import is_conflict
+from logkit.vocabulary.terms import vocabulary
+
+CAUTION = (
+    "Flow and depth are ranges for the moment a bed formed, inferred from grain size and structure by published "
+    "relations, not measured; no basis for design, safety or reserves without a qualified check of the source log. "
+    "Blank means no estimate, not still water."
+)
+CAUTION_PLAIN = "Drawn from a typed log; check the source before any use that matters."
+SYMBOLIC = "Ripples and clasts are drawn at symbolic size."
+
+
+def title_block(scene: Scene, width: float, scale_words: str) -> list[Shape]:
+    """Title and subtitle at the left, scale and authorship at the right, a rule below."""
+    style, header = scene.style, scene.log.header
+    page, fonts, colours = style.page, style.fonts, style.colours
+    left, right = page.margin, width - page.margin
+    lines = [scale_words]
+    made = ", ".join(part for part in (header.date, header.logged_by) if part)
+    if made:
+        lines.append(f"Logged {clean(made)}")
+    extra = dict(header.extra)
+    if extra.get("note"):
+        lines.append(clean(extra["note"]))
+    room = 0.42 * (right - left)
+    shapes: list[Shape] = []
+    widest = 0.0
+    for number, line in enumerate(lines[:3]):
+        size = fonts.subtitle if number == 0 else fonts.label
+        text = shorten(line, room, size)
+        widest = max(widest, width_mm(text, size))
+        y = page.rule - 7.4 + number * 3.0
+        shapes.append(
+            Text((right, y), text, size, colours.ink if number == 0 else colours.ink2, anchor="end")
+        )
+    free = right - left - widest - 4
+    title = shorten(
+        header.title or scene.log.name,
+        right - left - (widest + 4 if free < 40 else widest + 4),
+        fonts.title,
+        True,
+    )
+    shapes.append(Text((left, page.rule - 7.0), title, fonts.title, colours.ink, bold=True))
+    shapes.append(
+        Text(
+            (left, page.rule - 2.2),
+            shorten(subtitle(scene), free, fonts.subtitle),
+            fonts.subtitle,
+            colours.ink,
+        )
+    )
+    rule = polyline(((left, page.rule), (right, page.rule)))
+    return [Group(tuple(shapes)), Path(rule, Paint(stroke=colours.ink, width=style.lines.rule))]
+
+
+def subtitle(scene: Scene) -> str:
+    """Place, setting and extent of the section."""
+    header, log = scene.log.header, scene.log
+    settings = vocabulary_label("settings", header.setting)
+    unit, metres = position_unit(scene)
+    parts = [
+        clean(part) for part in (header.location, settings if header.setting != "unknown" else "") if part
+    ]
+    words = ", ".join(parts)
+    if log.beds:
+        ends = sorted((shown_position(scene, log.base_m), shown_position(scene, log.top_m)))
+        what = "cored" if scene.downward else "section"
+        reference = f" below {header.depth_reference}" if scene.downward and header.depth_reference else ""
+        extent = (
+            f"{what} {ends[0]:.1f} to {ends[1]:.1f}\u00a0{unit}{reference}"
+            if scene.downward
+            else f"{what} {log.thickness_m / metres:.1f}\u00a0{unit}"
+        )
+        words = f"{words}; {extent}" if words else extent[0].upper() + extent[1:]
+    return words
+
+
+def vocabulary_label(name: str, term: str) -> str:
+    """Label of a term, or the term itself."""
+    known = vocabulary(name)
+    return known[term].label if term in known else term.replace("_", " ")
+
+
+def summary(scene: Scene) -> str:
+    """The line that counts ranges, bounds, conflicts and non-estimates: honesty first."""
+    log = scene.log
+    beds = log.real_beds
+    number = len(beds)
+    unit, metres = position_unit(scene)
+    seen = sum(bed.thickness_m for bed in beds) / metres
+    words = [f"{number} bed" if number == 1 else f"{number} beds"]
+    verb = "Recovered" if scene.downward else "Exposed"
+    words.append(
+        f"{verb} {seen:.1f} of {log.thickness_m / metres:.1f}\u00a0{unit}" if log.beds else "No beds"
+    )
+    if scene.estimates:
+        kinds = {"range": 0, "bound": 0, "conflict": 0, "none": 0}
+        for index, estimates in scene.estimates.items():
+            if log.beds[index].is_gap:
+                continue
+            if any(is_conflict(e) for e in estimates):
+                kinds["conflict"] += 1
+            elif any(e.status == "estimated" and e.bound == "range" for e in estimates):
+                kinds["range"] += 1
+            elif any(e.status == "estimated" for e in estimates):
+                kinds["bound"] += 1
+        kinds["none"] = number - kinds["range"] - kinds["bound"] - kinds["conflict"]
+        words.append(
+            f"Flow range from {kinds['range']}, one-sided bound from {kinds['bound']}, "
+            f"conflict in {kinds['conflict']}, no estimate from {kinds['none']}"
+        )
+    mean = next((c for c in scene.currents if c.mean_deg is not None), None)
+    if mean is not None:
+        words.append(f"Palaeocurrent mean {round(mean.mean_deg) % 360:03d}°")
+    return ". ".join(words) + "."
+
+
+def summary_block(scene: Scene, width: float) -> list[Shape]:
+    """The summary line, broken into two where the page is narrow."""
+    style = scene.style
+    size = style.fonts.subtitle
+    lines = wrap(summary(scene), width - 2 * style.page.margin, size)
+    pitch = 1.25 * size * MM_PER_POINT
+    room = max(1, int((style.page.heads - style.page.summary) / pitch))
+    if len(lines) > room:
+        size = style.fonts.label
+        lines = wrap(summary(scene), width - 2 * style.page.margin, size)
+        pitch = 1.2 * size * MM_PER_POINT
+    return [
+        Text((style.page.margin, style.page.summary + number * pitch), line, size, style.colours.ink2)
+        for number, line in enumerate(lines)
+    ]
+
+
+def scale_words(scene: Scene, fitted: bool) -> str:
+    """The scale as a ratio and as lengths."""
+    on_paper = 1000.0 / scene.scale
+    ratio = f"1:{scene.scale:.4g}"
+    lengths = (
+        f"1\u00a0m = {on_paper:.3g}\u00a0mm" if on_paper >= 1 else f"10\u00a0m = {10 * on_paper:.3g}\u00a0mm"
+    )
+    return f"{ratio} ({lengths}{', fitted' if fitted else ''})"
+
+
+def scale_bar(scene: Scene, x: float, y: float, room: float) -> list[Shape]:
+    """A bar of a round length: it keeps its meaning when the drawing is resized."""
+    style = scene.style
+    unit, metres = position_unit(scene)
+    rate = 1000.0 / scene.scale * metres
+    length = 0.01
+    for step in (0.01, 0.02, 0.05, 0.1, 0.2, 0.5, 1, 2, 5, 10, 20, 50, 100, 200, 500):
+        if step * rate <= room:
+            length = step
+    end = x + length * rate
+    middle = (x + end) / 2
+    ink = style.colours.ink
+    left = polyline(((x, y - 0.5), (middle, y - 0.5), (middle, y + 0.5), (x, y + 0.5)), closed=True)
+    whole = polyline(((x, y - 0.5), (end, y - 0.5), (end, y + 0.5), (x, y + 0.5)), closed=True)
+    label = f"{length:g}\u00a0{unit}"
+    size = style.fonts.label
+    return [
+        Path(left, Paint(fill=ink)),
+        Path(whole, Paint(stroke=ink, width=style.lines.hairline)),
+        Text((x, y + 3.0), label, size, ink),
+    ]
+
+
+def closing_lines(scene: Scene, tally: Tally, width: float) -> list[str]:
+    """Caution and what was left out, broken to the width of the page, bold word excepted."""
+    style = scene.style
+    size = style.fonts.caution
+    caution = CAUTION if scene.estimates else CAUTION_PLAIN
+    if tally.structures or "gravel" in tally.families:
+        caution = f"{caution} {SYMBOLIC}"
+    room = width - 2 * style.page.margin
+    indent = width_mm("Read with care", size, True) + 1.5
+    first, *rest = wrap(caution, room - indent, size)
+    lines = [first]
+    if rest:
+        lines.extend(wrap(" ".join(rest), room, size))
+    left_out = left_out_words(tally)
+    if left_out:
+        lines.extend(wrap(left_out, room, size))
+    return lines
+
+
+def left_out_words(tally: Tally) -> str:
+    """What the margin counts as left out or moved for want of room; "" for nothing."""
+    counted = [f"{number} {what}" for what, number in sorted(tally.left_out.items()) if number]
+    return f"Not on the column for want of room: {', '.join(counted)}." if counted else ""
+
+
+def closing_height(scene: Scene, lines: list[str]) -> float:
+    """Height of the caution block with its rule, mm."""
+    return 4.2 + len(lines) * 1.25 * scene.style.fonts.caution * MM_PER_POINT
+
+
+def closing_block(
+    scene: Scene, lines: list[str], y: float, width: float, sheet: int, sheets: int
+) -> list[Shape]:
+    """Rule, caution lines and the sheet number; `y` is the upper edge."""
+    style = scene.style
+    page, size, colours = style.page, style.fonts.caution, style.colours
+    pitch = 1.25 * size * MM_PER_POINT
+    rule = polyline(((page.margin, y), (width - page.margin, y)))
+    shapes: list[Shape] = [Path(rule, Paint(stroke=colours.ink, width=style.lines.contact))]
+    baseline = y + 3.4
+    indent = width_mm("Read with care", size, True) + 1.5
+    shapes.append(Text((page.margin, baseline), "Read with care", size, colours.ink, bold=True))
+    for number, line in enumerate(lines):
+        x = page.margin + (indent if number == 0 else 0.0)
+        shapes.append(Text((x, baseline + number * pitch), line, size, colours.ink))
+    return shapes
+
+
+def sheet_words(view: View | None, sheet: int, sheets: int, downward: bool) -> str:
+    """Sheet number and where the column goes on."""
+    if sheets == 1:
+        return ""
+    words = f"Sheet {sheet} of {sheets}"
+    if view is not None and view.number < view.of:
+        words += f", continued {'below' if downward else 'above'} on sheet {sheet + 1}"
+    return words

@@ -1,0 +1,297 @@
+"""The texture track: every bed as a group with its fill, grains, structures, profile and contact; gaps; the spine.
+
+The marks themselves come from `textures` and `motifs`; samples and markers beside the profile from `tracks.labels`.
+"""
+
+from __future__ import annotations
+
+from logkit.drawing.ground import LineSegment
+from logkit.drawing.metrics import shorten
+from logkit.drawing.motifs import structure_lines
+from logkit.drawing.outline import Outline, base_path, bed_outline
+from logkit.drawing.palette import fill
+from logkit.drawing.scene import MeasuredBed, Scene, Tally, View, structure_label
+from logkit.drawing.shapes import Gradient, Group, Paint, Path, Segment, Shape, Text, polyline
+from logkit.drawing.textures import bed_texture
+from logkit.vocabulary.terms import vocabulary
+
+DASH = (1.2, 0.8)
+"""Dashes of an edge that is not a boundary: end of exposure, contact not seen."""
+
+
+def draw(scene: Scene, view: View, tally: Tally) -> list[Shape]:
+    """Beds from the lowest to the highest, so that a scoured base covers what it cut into."""
+    style = scene.style
+    outlines = outlines_of(scene, view)
+    beds: list[Shape] = []
+    breaks: list[Segment] = []
+    for place, (item, span) in enumerate(view.items()):
+        outline = outlines.get(item.index)
+        if outline is None:
+            beds.append(_gap(scene, view, item, span, tally))
+            continue
+        below = outlines.get(view.beds[place - 1].index) if place else None
+        beds.append(_bed(scene, view, item, outline, below, tally))
+        if outline.scoured:
+            tally.marks.add("erosive")
+            breaks.append(("M", (outline.profile[0][0] + 0.6, outline.y_base)))
+            breaks.append(("L", (_right_end(scene), outline.y_base)))
+    shapes: list[Shape] = []
+    if breaks:
+        shapes.append(Path(tuple(breaks), Paint(stroke=style.colours.break_, width=0.20)))
+    shapes.append(Group(tuple(beds), id="beds", layer="beds"))
+    shapes.extend(_spine(scene, view))
+    return shapes
+
+
+def outlines_of(scene: Scene, view: View) -> dict[int, Outline]:
+    """Outlines of the real beds on a sheet, by index."""
+    if scene.phi is None:
+        return {}
+    return {
+        item.index: bed_outline(item, span, view, scene.phi, scene.scale, scene.style.texture)
+        for item, span in view.items()
+        if not item.bed.is_gap
+    }
+
+
+def bed_words(item: MeasuredBed) -> str:
+    """A bed in words, for screen readers and tooltips."""
+    bed = item.bed
+    lithologies = vocabulary("lithologies")
+    words = [lithologies[bed.lithology].label if bed.lithology in lithologies else bed.lithology]
+    if bed.size is not None:
+        words.append(" to ".join(dict.fromkeys(state.size.label for state in bed.grain if state.size.label)))
+    words.extend(dict.fromkeys(structure_label(s.term) for s in bed.structures))
+    return f"{bed.name}: " + ", ".join(word for word in words if word)
+
+
+def gap_reason(item: MeasuredBed) -> str:
+    """Why there is no data, in words."""
+    reason, known = item.bed.gap_reason, vocabulary("gaps")
+    return known[reason].label if reason in known else (reason or "no data").replace("_", " ")
+
+
+def _right_end(scene: Scene) -> float:
+    """Where the lines that mark breaks in time end: at the last track before the notes."""
+    return max(column.x1 for column in scene.columns.values() if column.name != "notes")
+
+
+def _bed(
+    scene: Scene, view: View, item: MeasuredBed, outline: Outline, below: Outline | None, tally: Tally
+) -> Group:
+    style = scene.style
+    tall = outline.y_base - outline.y_top
+    closed = outline.closed()
+    children: list[Shape] = [_flat(scene, item, outline, closed, tally)]
+    if item.family:
+        tally.families.add(item.family)
+        if tall >= style.texture.least_bed:
+            children.extend(_inside(scene, view, item, outline, tally))
+    if tall >= 0.4:
+        dash = () if item.sized else (0.9, 0.6)
+        if not item.sized:
+            tally.marks.add("unsized")
+        paint = Paint(stroke=style.colours.ink, width=style.lines.profile, dash=dash, join="round")
+        children.append(Path(polyline(outline.profile), paint))
+    children.extend(_contact(scene, view, item, outline, below, tally))
+    return Group(tuple(children), id=item.id, title=bed_words(item), data=_data(scene, item))
+
+
+def _data(scene: Scene, item: MeasuredBed) -> tuple[tuple[str, str], ...]:
+    """What a page that holds the drawing can filter by."""
+    bed = item.bed
+    data = [("bed", bed.name), ("base", f"{bed.base_m:.5g}"), ("top", f"{bed.top_m:.5g}")]
+    if bed.structures:
+        data.append(("structures", " ".join(dict.fromkeys(s.term for s in bed.structures))))
+    grading = scene.gradings.get(bed.name)
+    if grading and grading.verdict != "not determinable":
+        data.append(("grading", grading.verdict))
+    tendencies = [e.tendency for e in scene.estimates.get(item.index, ()) if e.tendency != "not determinable"]
+    if tendencies:
+        data.append(("tendency", " ".join(dict.fromkeys(tendencies))))
+    return tuple(data)
+
+
+def _flat(
+    scene: Scene, item: MeasuredBed, outline: Outline, closed: tuple[Segment, ...], tally: Tally
+) -> Path:
+    """The fill: one colour, or a gradient where the size changes enough to see."""
+    style = scene.style
+    if not item.family:
+        dash = Paint(
+            fill=style.colours.paper, stroke=style.colours.ink2, width=style.lines.hairline, dash=(0.9, 0.6)
+        )
+        return Path(closed, dash)
+    stops: list[tuple[float, str]] = []
+    for y, phi in reversed(outline.sizes):
+        colour = fill(item.family, phi, style)
+        stops.append((y, colour))
+    if outline.y_base - outline.y_top < 0.6 or len({colour for _, colour in stops}) == 1:
+        return Path(closed, Paint(fill=stops[len(stops) // 2][1]))
+    name = f"g{len(tally.gradients) + 1}"
+    tally.gradients.append(Gradient(name, tuple(stops)))
+    return Path(closed, Paint(fill=f"gradient:{name}"))
+
+
+def _inside(scene: Scene, view: View, item: MeasuredBed, outline: Outline, tally: Tally) -> list[Shape]:
+    """Structure lines, and the grains that keep clear of them."""
+    style = scene.style
+    lines: list[Shape] = []
+    clear: list[LineSegment] = []
+    polygon = outline.polygon()
+    set_m = item.bed.set_thickness.central_m if item.bed.set_thickness else None
+    set_mm = set_m * 1000 / scene.scale if set_m else None
+    boxes = [(layer.term, layer.base_m, layer.top_m) for layer in item.layers if layer.term]
+    boxes += [(term, item.bed.base_m, item.bed.top_m) for term in item.objects]
+    for number, (term, base_m, top_m) in enumerate(boxes):
+        span = view.span(base_m, top_m)
+        if span is None:
+            continue
+        tally.structures[term] = tally.structures.get(term, 0) + 1
+        if span[0] - span[1] < style.texture.least_segment:
+            tally.left_out["structures drawn inside a bed"] += 1
+            continue
+        right = max(x for x, _ in outline.profile)
+        box = (outline.x0, span[1], right, span[0])
+        made = structure_lines(term, box, set_mm, item.seed + number, style, polygon)
+        lines.extend(made.lines)
+        clear.extend(made.clear)
+    marks: list[Shape] = []
+    if style.texture.dots:
+        marks.extend(bed_texture(polygon, outline.sizes, item.family, style, seed=item.seed, clear=clear))
+    return marks + lines
+
+
+def _contact(
+    scene: Scene, view: View, item: MeasuredBed, outline: Outline, below: Outline | None, tally: Tally
+) -> list[Shape]:
+    """The base line of a bed, and its top where exposure ends."""
+    style, bed = scene.style, item.bed
+    ink = style.colours.ink
+    shapes: list[Shape] = []
+    thin = outline.y_base - outline.y_top < 0.4
+    if bed.base_m >= view.position.base_m - 1e-9:
+        kind = bed.contact.kind if bed.contact else "unknown"
+        right = max(outline.profile[0][0], below.profile[-1][0] if below else 0.0)
+        straight = polyline(((outline.x0, outline.y_base), (right, outline.y_base)))
+        if below is None:
+            if view.position.base_m < bed.base_m or bed.base_m <= scene.log.base_m + 1e-9:
+                tally.marks.add("end")
+                shapes.append(Path(straight, Paint(stroke=ink, width=style.lines.contact, dash=DASH)))
+        elif kind in ("erosive", "undulose", "loaded"):
+            weight = style.lines.erosive if kind == "erosive" else style.lines.contact
+            tally.marks.add(kind)
+            paint = Paint(stroke=ink, width=weight if not thin else style.lines.hairline, join="round")
+            shapes.append(Path(base_path(outline.base), paint))
+        elif kind == "gradational":
+            tally.marks.add("gradational")
+        elif kind == "not_seen":
+            tally.marks.add("end")
+            shapes.append(Path(straight, Paint(stroke=ink, width=style.lines.contact, dash=DASH)))
+        elif kind == "faulted":
+            tally.marks.add("faulted")
+            y = outline.y_base
+            both = (*straight, *polyline(((outline.x0 - 2.0, y + 0.9), (outline.x0 + 2.0, y - 0.9))))
+            shapes.append(Path(both, Paint(stroke=style.colours.conflict, width=style.lines.erosive)))
+        else:
+            tally.marks.add("sharp")
+            weight = style.lines.hairline if thin else style.lines.contact
+            sure = bed.contact is None or bed.contact.sure
+            shapes.append(Path(straight, Paint(stroke=ink, width=weight, dash=() if sure else (0.6, 0.5))))
+    if bed.top_m <= view.position.top_m + 1e-9 and _open_above(scene, item):
+        line = polyline(((outline.x0, outline.y_top), (outline.profile[-1][0], outline.y_top)))
+        tally.marks.add("end")
+        shapes.append(Path(line, Paint(stroke=ink, width=style.lines.contact, dash=DASH)))
+    return shapes
+
+
+def _open_above(scene: Scene, item: MeasuredBed) -> bool:
+    following = item.index + 1
+    return following >= len(scene.beds) or scene.beds[following].bed.is_gap
+
+
+def _gap(scene: Scene, view: View, item: MeasuredBed, span: tuple[float, float], tally: Tally) -> Group:
+    """A gap: nothing but its reason and height in words, where they fit."""
+    column = scene.columns["texture"]
+    style = scene.style
+    tall = span[0] - span[1]
+    height = f"{item.bed.thickness_m:.3g}\u00a0m"
+    words = f"{gap_reason(item)}: {height}"
+    words = words[0].upper() + words[1:]
+    cut = any(piece.cut and piece.base_m <= item.bed.base_m < piece.top_m for piece in view.position.pieces)
+    texts: list[Shape] = []
+    size = style.fonts.label
+    middle = (span[0] + span[1]) / 2
+    if cut:
+        below = f"scale cut here: {height} drawn as {tall:.0f}\u00a0mm"
+        tally.marks.add("cut")
+        texts.append(
+            Text(
+                (column.x0 + 3.5, middle - 0.4),
+                shorten(words, column.x1 - column.x0 - 4, size),
+                size,
+                style.colours.ink,
+            )
+        )
+        texts.append(
+            Text(
+                (column.x0 + 3.5, middle + 2.4),
+                shorten(below, column.x1 - column.x0 - 4, size),
+                size,
+                style.colours.ink2,
+            )
+        )
+    elif tall >= 2.6:
+        line = shorten(words, column.x1 - column.x0 - 4, size)
+        texts.append(Text((column.x0 + 3.5, middle + 0.8), line, size, style.colours.ink))
+    else:
+        tally.left_out["reasons of thin gaps"] += 1
+    return Group(tuple(texts), id=item.id, title=words, data=_data(scene, item))
+
+
+def _spine(scene: Scene, view: View) -> list[Shape]:
+    """The line the profile stands on: solid where there are beds, dashed in gaps, broken where the scale is cut."""
+    column, style = scene.columns["texture"], scene.style
+    solid: list[Segment] = []
+    dashed: list[Segment] = []
+    for item, (y_base, y_top) in view.items():
+        target = dashed if item.bed.is_gap else solid
+        if not item.bed.is_gap and target and target[-1] == ("L", (column.x0, y_base)):
+            target[-1] = ("L", (column.x0, y_top))
+        else:
+            target.extend((("M", (column.x0, y_base)), ("L", (column.x0, y_top))))
+    shapes: list[Shape] = []
+    if solid:
+        shapes.append(Path(tuple(solid), Paint(stroke=style.colours.ink, width=style.lines.spine)))
+    if dashed:
+        paint = Paint(stroke=style.colours.ink, width=style.lines.contact, dash=(1.0, 1.0))
+        shapes.append(Path(tuple(dashed), paint))
+    for piece in view.position.pieces:
+        if piece.cut:
+            shapes.append(break_mark(column.x0, (piece.y_base + piece.y_top) / 2, scene))
+    return shapes
+
+
+def break_mark(x: float, y: float, scene: Scene) -> Group:
+    """Two zigzags on white: the scale is cut here."""
+    steps: list[Segment] = []
+    for dy in (-0.9, 0.9):
+        steps.extend(
+            polyline(
+                (
+                    (x - 1.8, y + dy + 0.5),
+                    (x - 0.6, y + dy - 0.5),
+                    (x + 0.6, y + dy + 0.5),
+                    (x + 1.8, y + dy - 0.5),
+                )
+            )
+        )
+    wipe = polyline(
+        ((x - 1.4, y - 0.8), (x + 1.4, y - 1.2), (x + 1.4, y + 0.8), (x - 1.4, y + 1.2)), closed=True
+    )
+    colours = scene.style.colours
+    return Group((
+        Path(wipe, Paint(fill=colours.paper)),
+        Path(tuple(steps), Paint(stroke=colours.ink, width=scene.style.lines.contact)),
+    ))  # fmt: skip
