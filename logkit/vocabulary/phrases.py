@@ -75,8 +75,11 @@ class Lexicon:
         doubtful = self._ambiguous.get(written.casefold())
         key = " ".join(w for _, form in parts for w in form)
         name, term = self._index.get(key, ("", None))
-        if doubtful and not any(clear in self.names[:1] for clear in doubtful.clear_in):
-            return Piece(written, name, term, doubtful)
+        if doubtful:
+            if self.names[0] not in doubtful.clear_in:
+                return Piece(written, name, term, doubtful)
+            own = next((t for m in doubtful.meanings for n, t in m.terms if n == self.names[0]), None)
+            return Piece(written, self.names[0], own)
         return Piece(written, name, term) if term else None
 
 
