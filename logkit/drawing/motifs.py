@@ -17,6 +17,7 @@ from typing import Any
 
 import numpy as np
 
+from logkit.drawing.cutting import cut, inside
 from logkit.drawing.data_file import DataText, Reader, field_types, read_data
 from logkit.drawing.ground import Array, LineSegment
 from logkit.drawing.marks import Mark, draw_mark, mark_outline, parse_step
@@ -32,8 +33,7 @@ GENERIC = "unknown_term"
 """The motif of a term that has none."""
 
 _KEYS = ("label", "group", "glyph", "fill", "mark", "objects", "like", "source")
-_CELL_MM = 0.02  # lines are simplified by no more than this
-_LEAST_STROKE_MM = 0.35  # shorter rests of cut lines are left out
+_SLACK = 0.86  # objects may touch the edge of their bed: this share of them must lie inside
 
 
 @dataclass(frozen=True, slots=True)
@@ -152,8 +152,9 @@ def structure_lines(
     strokes: dict[str, list[Array]] = {}
     if drawn.fill is not None:
         size = None if set_mm is None or not set_mm > 0 else set_mm
-        for stratum in drawn.fill.lines(box, size, random):
-            strokes.setdefault(stratum.role, []).extend(cut(stratum.points, polygon))
+        strata = drawn.fill.lines(box, size, random)
+        for stratum, parts in zip(strata, cut([s.points for s in strata], polygon), strict=True):
+            strokes.setdefault(stratum.role, []).extend(parts)
     shapes = [_painted(role, lines, style) for role, lines in sorted(strokes.items()) if lines]
     clear = [segment for lines in strokes.values() for line in lines for segment in _segments(line)]
     if drawn.objects is not None:
@@ -162,92 +163,6 @@ def structure_lines(
             shapes += made
             clear += edges
     return StructureLines(tuple(shapes), tuple(clear))
-
-
-def cut(line: Array, polygon: Array) -> list[Array]:
-    """The parts of a polyline inside a polygon, simplified; very short rests are left out."""
-    crossings = _crossings(line, polygon)
-    inside = _inside(line, polygon)
-    if not crossings:
-        return [_simplified(line)] if inside[0] and len(line) > 1 else []
-    parts: list[list[Array]] = []
-    current: list[Array] = [line[0]] if inside[0] else []
-    state = bool(inside[0])
-    for i in range(len(line) - 1):
-        for along in crossings.get(i, ()):
-            at = line[i] + along * (line[i + 1] - line[i])
-            current.append(at)
-            if state:
-                parts.append(current)
-                current = []
-            state = not state
-        if state:
-            current.append(line[i + 1])
-    if state and len(current) > 1:
-        parts.append(current)
-    arrays = [np.array(part) for part in parts if len(part) > 1]
-    return [_simplified(part) for part in arrays if _length(part) >= _LEAST_STROKE_MM]
-
-
-def _crossings(line: Array, polygon: Array) -> dict[int, list[float]]:
-    """Where the pieces of a line cross the polygon: piece -> shares along it, ascending."""
-    low, high = polygon.min(axis=0), polygon.max(axis=0)
-    if (line >= low + 1e-9).all() and (line <= high - 1e-9).all() and len(polygon) == 4 and _is_box(polygon):
-        return {}
-    p, d = line[:-1, None, :], np.diff(line, axis=0)[:, None, :]
-    q = polygon[None, :, :]
-    e = np.roll(polygon, -1, axis=0)[None, :, :] - q
-    cross = d[..., 0] * e[..., 1] - d[..., 1] * e[..., 0]
-    gap = q - p
-    with np.errstate(divide="ignore", invalid="ignore"):
-        t = (gap[..., 0] * e[..., 1] - gap[..., 1] * e[..., 0]) / cross
-        u = (gap[..., 0] * d[..., 1] - gap[..., 1] * d[..., 0]) / cross
-    hit = (cross != 0) & (t >= 0) & (t < 1) & (u >= 0) & (u < 1)
-    found: dict[int, list[float]] = {}
-    for i, j in zip(*np.nonzero(hit), strict=True):
-        found.setdefault(int(i), []).append(float(t[i, j]))
-    return {i: sorted(shares) for i, shares in found.items()}
-
-
-def _is_box(polygon: Array) -> bool:
-    return len(np.unique(polygon[:, 0])) == 2 and len(np.unique(polygon[:, 1])) == 2
-
-
-def _inside(points: Array, polygon: Array) -> np.ndarray:
-    x, y = points[:, 0, None], points[:, 1, None]
-    ax, ay = polygon[:, 0], polygon[:, 1]
-    bx, by = np.roll(ax, -1), np.roll(ay, -1)
-    with np.errstate(divide="ignore", invalid="ignore"):
-        at = ax + (y - ay) * (bx - ax) / (by - ay)
-    crosses = ((ay > y) != (by > y)) & (x < at)
-    return np.asarray(crosses.sum(axis=1) % 2 == 1)
-
-
-def _simplified(line: Array) -> Array:
-    """The polyline without points that lie within a hair of the line between their neighbours kept."""
-    if len(line) < 3:
-        return line
-    keep = np.zeros(len(line), dtype=bool)
-    keep[[0, -1]] = True
-    stack = [(0, len(line) - 1)]
-    while stack:
-        first, last = stack.pop()
-        if last - first < 2:
-            continue
-        chord = line[last] - line[first]
-        rest = line[first + 1 : last] - line[first]
-        size = float(np.hypot(chord[0], chord[1]))
-        away = np.abs(rest[:, 0] * chord[1] - rest[:, 1] * chord[0]) / size if size else np.hypot(*rest.T)
-        worst = int(away.argmax())
-        if away[worst] > _CELL_MM:
-            middle = first + 1 + worst
-            keep[middle] = True
-            stack += [(first, middle), (middle, last)]
-    return line[keep]
-
-
-def _length(line: Array) -> float:
-    return float(np.hypot(*np.diff(line, axis=0).T).sum())
 
 
 def _segments(line: Array) -> list[LineSegment]:
@@ -280,7 +195,9 @@ def _object(
 
     unit = min(placed.half_width, placed.half_height)
     edges = mark_outline(mark, place, unit)
-    if not _inside(np.array([point for line in edges for point in line]), polygon).all():
+    points = np.array([point for line in edges for point in line])
+    centre = np.array([placed.x, placed.y])
+    if not inside(centre + _SLACK * (points - centre), polygon).all():
         return (), []
     shapes = draw_mark(mark, place, unit, style, style.colours.structure, style.lines.crest)
     return shapes, [(*a, *b) for line in edges for a, b in itertools.pairwise(line)]

@@ -100,15 +100,16 @@ class Troughs:
 class Foresets:
     """Sets of inclined layers.
 
-    angle : dip at the middle of a foreset, degrees; form : "tangential", "sigmoid", "straight" or
+    angle : mean dip of a foreset, degrees; spacing : distance across the layers as a share of the set,
+    at least `least` mm; form : "tangential", "sigmoid", "straight" or
     "overturned"; both_ways : every second set dips the other way; bundles : spacing waxes and wanes;
     drape : every n-th foreset is a heavy drape, 0 never; whole : one set fills the bed
     """
 
-    angle: float = 24.0
+    angle: float = 26.0
     form: str = "tangential"
-    spacing: float = 0.17
-    least: float = 1.9
+    spacing: float = 0.10
+    least: float = 1.15
     both_ways: bool = False
     bundles: bool = False
     drape: int = 0
@@ -134,7 +135,7 @@ class Foresets:
     ) -> Iterator[Stratum]:
         height = base - top
         run = height / math.tan(math.radians(self.angle))
-        step = max(self.least, self.spacing * height) * max(1.0, 24.0 / self.angle * 0.55)
+        step = max(self.least, self.spacing * height) / math.sin(math.radians(self.angle))
         backward = self.both_ways and number % 2 == 1
         x, count = box[0] - run - step * random.random(), 0
         while x < box[2] + run:
@@ -160,7 +161,7 @@ class Foresets:
             return np.where(t < 0.3, hook, 0.50 - 1.1 * (t - 0.3)), t
         if self.form == "straight":
             return t, t
-        return t, 1 - (1 - t) ** 1.9
+        return t, 1 - (1 - t) ** 2.3
 
 
 @dataclass(frozen=True, slots=True)
@@ -356,7 +357,8 @@ class Folds:
             calm = math.sin(math.pi * min(max(0.12 + 0.8 * share, 0), 1)) ** 0.7
             angle = 2 * math.pi * s / self.wavelength + phase + 0.8 * np.sin(s / 5.3 + drift)
             size = min(self.height, 0.35 * (box[3] - box[1])) * calm * (0.75 + 0.35 * np.sin(s / 8.1 + drift))
-            x = s + self.overhang * self.wavelength * calm * np.sin(angle + 0.9)
+            lean = 0.75 * np.sin(angle) + 0.5 * np.cos(angle)
+            x = s - self.overhang * self.wavelength * calm * lean
             y = level - 0.5 * self.spacing + size * np.cos(angle)
             made.append(Stratum(np.column_stack([x, y]), self.role))
         return made

@@ -7,16 +7,22 @@ that names the nearest one. What the values do is decided where they are used, n
 from __future__ import annotations
 
 import dataclasses
-import re
 import types
-import typing
 from collections.abc import Mapping
 from dataclasses import dataclass, field
 from functools import cache
 from pathlib import Path
 from typing import Any
 
-from logkit.drawing.data_file import DataText, read_data
+from logkit.drawing.data_file import (
+    DataText,
+    HexColour,
+    Origin,
+    Reader,
+    field_types,
+    key_of,
+    read_data,
+)
 from logkit.errors import ArgumentError, LogkitError, UnknownNameError
 from logkit.resources import shipped
 
@@ -42,14 +48,6 @@ PAPER_MM: dict[str, tuple[float, float]] = {
 }
 """Upright width and height of named paper sizes, mm. "roll" is as long as the drawing needs."""
 
-_COLOUR = re.compile(r"#[0-9a-f]{6}", re.IGNORECASE)
-
-
-class HexColour(str):
-    """An sRGB colour as "#rrggbb"."""
-
-    __slots__ = ()
-
 
 @dataclass(frozen=True, slots=True)
 class PageStyle:
@@ -59,15 +57,10 @@ class PageStyle:
     landscape: bool
     margin: float
     scale: float
-    title_base: float
     rule: float
     summary: float
     heads: float
     section_top: float
-    section_bottom: float
-    lower_axes: float
-    footer: float
-    caution: float
     legend: bool
 
 
@@ -82,9 +75,8 @@ class TrackStyle:
 
 @dataclass(frozen=True, slots=True)
 class FontStyle:
-    """Font family and type sizes in points."""
+    """Type sizes in points; the type is DejaVu Sans, which ships with the installation."""
 
-    family: str
     title: float
     subtitle: float
     head: float
@@ -210,11 +202,10 @@ class RibbonStyle:
 
 @dataclass(frozen=True, slots=True)
 class NoteStyle:
-    """Notes in the margin: gap between them, mm; line height as a factor; lines before a note is cut."""
+    """Notes in the margin: gap between them, mm; line height as a factor on the type size."""
 
     gap: float
     line_height: float
-    most_lines: int
 
 
 @dataclass(frozen=True, slots=True)
@@ -342,10 +333,6 @@ def _build_file(path: Path) -> Style:
     return _build(tables, origin, name)
 
 
-Origin = dict[tuple[str, ...], DataText]
-"""Which file a key came from, for messages."""
-
-
 def _merged(path: Path, seen: tuple[Path, ...]) -> tuple[dict[str, Any], Origin, str]:
     """The tables of a style file over those it inherits from."""
     data = read_data(path)
@@ -387,7 +374,7 @@ def _merge(
 
 def _build(tables: dict[str, Any], origin: Origin, name: str) -> Style:
     """Check merged tables and make the style."""
-    check = _Check(origin, name)
+    check = Reader(origin, name)
     check.keys(tables, _TOP, ())
     sections = {key: check.record(cls, tables.get(key, {}), (key,)) for key, cls in _SECTIONS.items()}
     tracks = check.table(tables.get("tracks", {}), ("tracks",))
@@ -412,79 +399,16 @@ def _build(tables: dict[str, Any], origin: Origin, name: str) -> Style:
     return style
 
 
-class _Check:
-    """Turns parsed TOML into records; a problem names the file and line the value came from."""
-
-    def __init__(self, origin: Origin, name: str) -> None:
-        self._origin = origin
-        self._name = name
-
-    def at(self, path: tuple[str, ...]) -> DataText:
-        """The file a key came from."""
-        for depth in range(len(path), 0, -1):
-            if path[:depth] in self._origin:
-                return self._origin[path[:depth]]
-        return DataText(self._name, "")
-
-    def keys(self, table: Mapping[str, Any], known: tuple[str, ...], path: tuple[str, ...]) -> None:
-        for key in table:
-            if key not in known:
-                raise self.at((*path, key)).unknown((*path, key), known)
-
-    def table(self, value: Any, path: tuple[str, ...]) -> dict[str, Any]:
-        if not isinstance(value, dict):
-            raise self.at(path).fail(path, f"{'.'.join(path)} must be a table, not {value!r}.")
-        return value
-
-    def record(self, cls: Any, value: Any, path: tuple[str, ...]) -> Any:
-        table = self.table(value, path)
-        hints = _hints(cls)
-        self.keys(table, tuple(_key(name) for name in hints), path)
-        made = {}
-        for name, hint in hints.items():
-            here = (*path, _key(name))
-            if _key(name) not in table:
-                raise self.at(path).fail(path, f"{'.'.join(here)} is missing.", "Give it a value.")
-            made[name] = self.value(hint, table[_key(name)], here)
-        return cls(**made)
-
-    def value(self, hint: Any, value: Any, path: tuple[str, ...]) -> Any:
-        name, wrong = ".".join(path), f"not {value!r}"
-        if typing.get_origin(hint) is types.UnionType:
-            hint = str if isinstance(value, str) else tuple[float, ...]
-        if typing.get_origin(hint) is not None and issubclass(typing.get_origin(hint), Mapping):
-            kind = typing.get_args(hint)[1]
-            table = self.table(value, path)
-            return types.MappingProxyType({k: self.record(kind, v, (*path, k)) for k, v in table.items()})
-        if typing.get_origin(hint) is tuple:
-            kind = typing.get_args(hint)[0]
-            if not isinstance(value, list | tuple):
-                raise self.at(path).fail(path, f"{name} must be a list, {wrong}.")
-            return tuple(self.value(kind, item, path) for item in value)
-        if hint is HexColour:
-            if not isinstance(value, str) or not _COLOUR.fullmatch(value):
-                raise self.at(path).fail(path, f'{name} must be a colour like "#1d2430", {wrong}.')
-            return HexColour(value.lower())
-        if hint is float and isinstance(value, int | float) and not isinstance(value, bool):
-            if not abs(value) < 1e9:
-                raise self.at(path).fail(path, f"{name} must be a finite number, {wrong}.")
-            return float(value)
-        if hint is not float and isinstance(value, hint) and isinstance(value, bool) == (hint is bool):
-            return value
-        words = {float: "a number", int: "a whole number", bool: "true or false", str: "text in quotes"}[hint]
-        raise self.at(path).fail(path, f"{name} must be {words}, {wrong}.")
-
-
-def _check_ranges(style: Style, check: _Check) -> None:
+def _check_ranges(style: Style, check: Reader) -> None:
     """Limits that hold in every style: legible type, visible lines, real paper, pairs in order."""
-    for name in _hints(FontStyle):
+    for name in field_types(FontStyle):
         size = getattr(style.fonts, name)
         if isinstance(size, float) and size < LEAST_TYPE_PT:
             path = ("fonts", name)
             raise check.at(path).fail(
                 path, f"fonts.{name} is {size:g} pt; at least {LEAST_TYPE_PT:g} is legible."
             )
-    for name in _hints(LineStyle):
+    for name in field_types(LineStyle):
         if getattr(style.lines, name) < LEAST_LINE_MM:
             path = ("lines", name)
             raise check.at(path).fail(path, f"lines.{name} must be at least {LEAST_LINE_MM} mm.")
@@ -517,16 +441,6 @@ def _check_ranges(style: Style, check: _Check) -> None:
             )
 
 
-@cache
-def _hints(cls: Any) -> dict[str, Any]:
-    return typing.get_type_hints(cls)
-
-
-def _key(name: str) -> str:
-    """Key in the file of a field; a Python keyword carries an underscore in the class only."""
-    return name.rstrip("_")
-
-
 def _as_tables(style: Style) -> dict[str, Any]:
     tables: dict[str, Any] = {"label": style.label, "source": style.source}
     tables["page"] = _plain(style.page)
@@ -536,7 +450,7 @@ def _as_tables(style: Style) -> dict[str, Any]:
 
 def _plain(value: Any) -> Any:
     if dataclasses.is_dataclass(value):
-        return {_key(f.name): _plain(getattr(value, f.name)) for f in dataclasses.fields(value)}
+        return {key_of(f.name): _plain(getattr(value, f.name)) for f in dataclasses.fields(value)}
     if isinstance(value, Mapping):
         return {key: _plain(item) for key, item in value.items()}
     if isinstance(value, tuple):

@@ -10,6 +10,7 @@ import math
 from collections.abc import Sequence
 
 import numpy as np
+from numpy.typing import NDArray
 
 from logkit.drawing.ground import Array, Ground, LineSegment
 from logkit.drawing.noise import FINEST_MM, seed_of
@@ -209,7 +210,7 @@ def _clasts(ground: Ground, style: Style) -> tuple[Shape, ...]:
     return (Path(tuple(steps), paint),)
 
 
-def _packed(u: Array, v: Array, radius: Array, order: Array, gap: float) -> Array:
+def _packed(u: Array, v: Array, radius: Array, order: NDArray[np.int64], gap: float) -> Array:
     """Radii lowered, in the order given, until no circle comes nearer to an earlier one than `gap`; 0 where it cannot."""
     placed = np.zeros(u.size)
     done: list[int] = []

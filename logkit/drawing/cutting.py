@@ -1,0 +1,122 @@
+"""Cutting polylines to a polygon, and leaving out points that no eye would miss.
+
+Geometry only. All lines of a bed are cut in one pass, since array code pays per call and not per line.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+import numpy as np
+from numpy.typing import NDArray
+
+from logkit.drawing.ground import Array
+
+TOLERANCE_MM = 0.02
+"""Lines are simplified by no more than this."""
+
+LEAST_REST_MM = 0.35
+"""Shorter rests of cut lines are left out."""
+
+
+def cut(lines: Sequence[Array], polygon: Array) -> list[list[Array]]:
+    """The parts of polylines that lie inside a polygon.
+
+    Parameters
+    ----------
+    lines : each (n, 2), mm
+    polygon : (m, 2), mm
+
+    Returns
+    -------
+    For each line its parts, in order along the line, simplified
+    """
+    if not lines:
+        return []
+    sizes = np.array([len(line) for line in lines])
+    points = np.concatenate(lines)
+    owner = np.repeat(np.arange(len(lines)), sizes)
+    piece = np.flatnonzero(owner[1:] == owner[:-1])
+    start, step = points[piece], points[piece + 1] - points[piece]
+    at_piece, along = _crossings(start, step, polygon)
+    # every piece is split at its crossings; a part is inside when its middle is
+    which = np.concatenate([np.arange(len(piece)), np.arange(len(piece)), at_piece])
+    share = np.concatenate([np.zeros(len(piece)), np.ones(len(piece)), along])
+    order = np.lexsort((share, which))
+    which, share = which[order], share[order]
+    pairs = np.flatnonzero((which[1:] == which[:-1]) & (share[1:] - share[:-1] > 1e-9))
+    which_part, low, high = which[pairs], share[pairs], share[pairs + 1]
+    origin, vector = start[which_part], step[which_part]
+    middle = origin + (0.5 * (low + high))[:, None] * vector
+    keep = inside(middle, polygon)
+    first, last = origin + low[:, None] * vector, origin + high[:, None] * vector
+    return _joined(owner[piece[which_part]], first, last, keep, len(lines))
+
+
+def inside(points: Array, polygon: Array) -> NDArray[np.bool_]:
+    """True for points inside a polygon (even-odd)."""
+    x, y = points[:, 0, None], points[:, 1, None]
+    ax, ay = polygon[:, 0], polygon[:, 1]
+    bx, by = np.roll(ax, -1), np.roll(ay, -1)
+    with np.errstate(divide="ignore", invalid="ignore"):
+        at = ax + (y - ay) * ((bx - ax) / (by - ay))
+    crosses = ((ay > y) != (by > y)) & (x < at)
+    return np.asarray(crosses.sum(axis=1) % 2 == 1)
+
+
+def _crossings(start: Array, step: Array, polygon: Array) -> tuple[NDArray[np.int64], Array]:
+    """Pieces that cross an edge of the polygon, and the share of the piece at which they do."""
+    edge = np.roll(polygon, -1, axis=0) - polygon
+    cross = step[:, None, 0] * edge[None, :, 1] - step[:, None, 1] * edge[None, :, 0]
+    gap = polygon[None, :, :] - start[:, None, :]
+    with np.errstate(divide="ignore", invalid="ignore"):
+        t = (gap[..., 0] * edge[None, :, 1] - gap[..., 1] * edge[None, :, 0]) / cross
+        u = (gap[..., 0] * step[:, None, 1] - gap[..., 1] * step[:, None, 0]) / cross
+    hit = (cross != 0) & (t > 0) & (t < 1) & (u >= 0) & (u <= 1)
+    pieces, edges = np.nonzero(hit)
+    return pieces, t[pieces, edges]
+
+
+def _joined(
+    owner: NDArray[np.int64], first: Array, last: Array, keep: NDArray[np.bool_], count: int
+) -> list[list[Array]]:
+    """Parts that are kept and follow each other, as polylines of their line."""
+    parts: list[list[Array]] = [[] for _ in range(count)]
+    kept = np.flatnonzero(keep)
+    if not kept.size:
+        return parts
+    joint = (kept[1:] == kept[:-1] + 1) & (owner[kept[1:]] == owner[kept[:-1]])
+    edges = np.concatenate([[0], np.flatnonzero(~joint) + 1, [kept.size]])
+    for low, high in zip(edges[:-1].tolist(), edges[1:].tolist(), strict=True):
+        index = kept[low:high]
+        line = np.concatenate([first[index], last[index[-1:]]])
+        if float(np.hypot(*(line[1:] - line[:-1]).T).sum()) >= LEAST_REST_MM:
+            parts[int(owner[index[0]])].append(simplified(line))
+    return parts
+
+
+def simplified(line: Array) -> Array:
+    """The polyline without points that lie within the tolerance of what is kept."""
+    if len(line) < 3:
+        return line
+    points = line.tolist()
+    keep = [0]
+    anchor = 0
+    while anchor < len(points) - 1:
+        reach = anchor + 1
+        while reach + 1 < len(points) and _fits(points, anchor, reach + 1):
+            reach += 1
+        keep.append(reach)
+        anchor = reach
+    return line[keep]
+
+
+def _fits(points: list[list[float]], first: int, last: int) -> bool:
+    """True when all points between two lie within the tolerance of the chord."""
+    x0, y0 = points[first]
+    dx, dy = points[last][0] - x0, points[last][1] - y0
+    size = (dx * dx + dy * dy) ** 0.5
+    if size == 0:
+        return False
+    limit = TOLERANCE_MM * size
+    return all(abs((x - x0) * dy - (y - y0) * dx) <= limit for x, y in points[first + 1 : last])
