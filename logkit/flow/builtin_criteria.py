@@ -14,6 +14,7 @@ import numpy as np
 from logkit.flow.criteria import (
     CRITERIA,
     Cells,
+    ClastReading,
     Context,
     Criterion,
     DepthReading,
@@ -26,6 +27,7 @@ from logkit.flow.grid import Array, Grid
 from logkit.flow.phases import speaks, structure_term
 from logkit.flow.settings import flow_settings
 from logkit.flow.states import MOVING, skin_shear_velocity
+from logkit.hydraulics.threshold import GRAVEL_SHIFT_LOG10
 from logkit.model import Phase
 from logkit.registry import GRAVITY_M_S2
 
@@ -145,7 +147,7 @@ def _mud_chips_likelihood(_: str, cells: Cells) -> Array:
 
 
 def _largest_clast(phase: Phase, context: Context) -> Hashable | None:
-    """Phi of a grain on a uniform bed that is as hard to move as the largest clast."""
+    """The clast as a grain of a uniform bed that is as hard to move."""
     if phase.largest_mm is None or not phase.largest_mm > 0:
         return None
     clast = -math.log2(phase.largest_mm)
@@ -155,9 +157,12 @@ def _largest_clast(phase: Phase, context: Context) -> Hashable | None:
         clast = HIDING_EXPONENT * phase.size.middle_phi + (1 - HIDING_EXPONENT) * clast
     elif phase.largest_mm <= phase.size.high_mm:
         return None
+    else:
+        # The tables count gravel as beds of gravel, which move below the curve; a single clast on sand is no bed.
+        clast += GRAVEL_SHIFT_LOG10 * math.log2(10.0)
     if not Grid.coarse_phi + 0.07 < clast < Grid.fine_phi - 0.07:
         return None
-    return round(clast, 3)
+    return ClastReading(round(clast, 3), phase.largest_mm)
 
 
 def _depth_words(what: str) -> Callable[[DepthReading], str]:
@@ -175,8 +180,8 @@ def _state_words(states: tuple[str, ...]) -> str:
     return "the bed carried " + " or ".join(STATE_WORDS[state] for state in states)
 
 
-def _clast_words(phi: float) -> str:
-    return f"the flow moved a clast as heavy to move as {2.0**-phi:.2g} mm on a bed of its like"
+def _clast_words(reading: ClastReading) -> str:
+    return f"the flow moved a clast of {reading.written_mm:.3g} mm"
 
 
 def _register(

@@ -4,7 +4,7 @@ A criterion reads a phase and answers with a reading, or with None when the phas
 reading is a hashable value; equal readings share their tables. Four kinds are known to the engine:
 
 - ``state``: the reading is a tuple of bed states, looked up in the precomputed tables;
-- ``clast``: the reading is the phi of a clast that was moved, looked up in the tables as well;
+- ``clast``: the reading is a `ClastReading`, looked up in the tables as well;
 - ``depth``: the reading is a `DepthReading`, a soft range of flow depth;
 - ``cells``: anything else; `log_likelihood(reading, cells)` gives the natural logarithm of the likelihood
   on the arrays of `Cells`, at most 0, in any shape that broadcasts to (size, velocity, depth).
@@ -50,6 +50,20 @@ class DepthReading:
             raise ArgumentError("median_m", self.median_m, "a depth above zero")
         if not (self.sd_ln_below > 0 and self.sd_ln_above > 0):
             raise ArgumentError("sd_ln", (self.sd_ln_below, self.sd_ln_above), "above zero")
+
+
+@dataclass(frozen=True, slots=True)
+class ClastReading:
+    """A clast that was moved.
+
+    Attributes
+    ----------
+    phi : size on a uniform bed that is as hard to move as the clast, as the tables count it
+    written_mm : size as written
+    """
+
+    phi: float
+    written_mm: float
 
 
 @dataclass(frozen=True, slots=True)

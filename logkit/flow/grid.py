@@ -64,7 +64,7 @@ class Grid:
     velocity_cells: int = 96
     depth_cells: int = 56
 
-    coarse_phi = -7.0
+    coarse_phi = -8.0
     fine_phi = 6.0
     velocity_limits = (0.02, 12.0)
     depth_limits = (0.02, 60.0)

@@ -132,11 +132,12 @@ def estimate_phases(solver: Solver, phases: Sequence[Phase], readings: Sequence[
                 limits[reading.case] = lower_limit(solver, reading.case)
             return PhaseEstimate(phase, "estimated", bound="above", limit_velocity_m_s=limits[reading.case],
                                  **common)  # fmt: skip
+        quantities: dict[str, Any] = {q: Quantiles(*numbers[q][i]) for q in _quantities_of(phase)}
         if answer.rim[i] > RIM_LIMIT:
             common["notes"] = (*reading.notes, "The answer reaches the limits of the grid.")
         return PhaseEstimate(
             phase, "estimated", bound="range", **common, transport_mode=modes[i],
-            **{name: Quantiles(*numbers[name][i]) for name in _quantities_of(phase)},
+            **quantities,
             base_velocity=end_velocity.get((i, "base")), top_velocity=end_velocity.get((i, "top")),
         )  # fmt: skip
 
@@ -159,7 +160,7 @@ def _one_sided(case: Case) -> bool:
     A prior that was fitted to measured rivers ends a range for sand that moved; a clast that had to move
     tells of the fastest moment, which a prior of ordinary flows must not cap.
     """
-    ids = {id: reading for id, reading in case.signature.factors}
+    ids = dict(case.signature.factors)
     if "largest_clast" in ids and "bed_state" not in ids:
         return True
     prior = case.signature.prior
@@ -185,7 +186,9 @@ def _in_conflict(solver: Solver, phase: Phase, reading: Reading, common: dict[st
         return PhaseEstimate(phase, "estimated", bound="above", limit_velocity_m_s=lower_limit(solver, kept),
                              **common)  # fmt: skip
     answer = solver.solve(compile_cases([kept]))
-    quantities = {name: Quantiles(*getattr(answer, name)[:, 0].tolist()) for name in _quantities_of(phase)}
+    quantities: dict[str, Any] = {
+        name: Quantiles(*getattr(answer, name)[:, 0].tolist()) for name in _quantities_of(phase)
+    }
     mode = _modes(answer, [phase], [replace(reading, case=kept)])[0]
     return PhaseEstimate(phase, "estimated", bound="range", transport_mode=mode, **quantities, **common)
 

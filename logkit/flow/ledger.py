@@ -12,10 +12,9 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
-from logkit.flow.criteria import CRITERIA, DepthReading, criterion_texts
+from logkit.flow.criteria import CRITERIA, criterion_texts
 from logkit.flow.grid import Array, quantiles
 from logkit.flow.settings import flow_settings
-from logkit.flow.slices import Signature
 from logkit.flow.solver import LEDGER_LEVELS, Case, Solver, compile_cases
 
 if TYPE_CHECKING:
@@ -202,9 +201,3 @@ def says(case: Case, id: str) -> str:
         if found == id:
             return CRITERIA[id].words(reading)
     return ""
-
-
-__all__ = [
-    "LedgerRow", "criteria_of", "ledger_frame", "ledger_rows", "lower_limit", "pair_agreement", "says",
-    "velocity_alone", "Signature", "DepthReading",
-]  # fmt: skip

@@ -69,7 +69,7 @@ def read_density_current(phase: Phase, context: Context, code: str, read_tb: boo
                 "Grains above 1 mm are not held up by turbulence alone; the suspension rule does not hold.",
             )  # fmt: skip
         return _density_range(phase, context, size, "suspension",
-                              "grains held up at u* of 0.4 to 1.0 of their settling velocity, then dropped")  # fmt: skip
+                              "grains held up at u* of 0.4 to 1.0 of their settling velocity")  # fmt: skip
     if division == "Tc":
         return _density_range(phase, context, size, "turbidite_ripples",
                               "ripples: above the motion of the sand, below the plane-bed edge")  # fmt: skip

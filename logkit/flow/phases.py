@@ -9,6 +9,7 @@ from __future__ import annotations
 import math
 from collections.abc import Sequence
 from dataclasses import dataclass
+from itertools import pairwise
 
 from logkit.model import Bed, GrainState, Log, Phase, SizeInterval, Structure
 from logkit.vocabulary.terms import Term, vocabulary
@@ -77,7 +78,8 @@ def split_bed(bed: Bed, section: str, setting: str, bed_index: int = 0) -> tuple
     phases = []
     for index, part in enumerate(segments):
         if by_state:
-            base_size = top_size = states[index].size
+            base_size: SizeInterval | None = states[index].size
+            top_size = base_size
         else:
             base_size, top_size = _size_at(states, part.base), _size_at(states, part.top)
         term = structure_term(part.structure.term) if part.structure else None
@@ -171,11 +173,11 @@ def _placed_segments(structures: list[Structure]) -> list[_Segment]:
 
 def _state_segments(states: tuple[GrainState, ...], structure: Structure | None) -> list[_Segment]:
     """One segment a state, divided half-way between states; only inner states give a recorded division."""
-    cuts = [0.0, *(0.5 * (a.fraction + b.fraction) for a, b in zip(states, states[1:], strict=False)), 1.0]
-    if any(b - a < 1e-6 for a, b in zip(cuts, cuts[1:], strict=False)):
+    cuts = [0.0, *(0.5 * (a.fraction + b.fraction) for a, b in pairwise(states)), 1.0]
+    if any(b - a < 1e-6 for a, b in pairwise(cuts)):
         cuts = [i / len(states) for i in range(len(states) + 1)]
     recorded = len(states) > 2
-    return [_Segment(a, b, recorded, structure) for a, b in zip(cuts, cuts[1:], strict=False)]
+    return [_Segment(a, b, recorded, structure) for a, b in pairwise(cuts)]
 
 
 def _size_at(states: tuple[GrainState, ...], fraction: float) -> SizeInterval | None:
@@ -184,7 +186,7 @@ def _size_at(states: tuple[GrainState, ...], fraction: float) -> SizeInterval | 
         return None
     if len(states) == 1 or fraction <= states[0].fraction:
         return states[0].size
-    for below, above in zip(states, states[1:], strict=False):
+    for below, above in pairwise(states):
         if fraction <= above.fraction:
             if fraction == above.fraction or above.fraction <= below.fraction:
                 return above.size

@@ -10,7 +10,7 @@ from dataclasses import dataclass, replace
 
 from logkit.errors import ArgumentError
 from logkit.flow import other_settings
-from logkit.flow.criteria import CRITERIA, Context, DepthReading
+from logkit.flow.criteria import CRITERIA, ClastReading, Context, DepthReading
 from logkit.flow.grid import Grid
 from logkit.flow.other_settings import Answered, no_estimate
 from logkit.flow.phases import speaks, structure_term
@@ -185,7 +185,7 @@ class Reader:
         size = phase.size
         found = [(id, criterion, criterion.reads(phase, context)) for id, criterion in CRITERIA.items()]
         factors = tuple((id, r) for id, c, r in found if r is not None and c.kind != "depth")
-        depths = tuple((id, r) for id, c, r in found if r is not None and c.kind == "depth")
+        depths = tuple((id, r) for id, _, r in found if isinstance(r, DepthReading))
         ids = {id for id, _ in factors}
         if size is None and "largest_clast" not in ids:
             outside = phase.largest_mm is not None
@@ -193,7 +193,7 @@ class Reader:
         if size is not None and size.middle_mm < SAND_MM and "bed_state" not in ids:
             return no_estimate(phase, "mud", *_mud_notes(context))
         if size is None:
-            clast = next(float(r) for id, r in factors if id == "largest_clast")  # type: ignore[arg-type]
+            clast = next(r.phi for _, r in factors if isinstance(r, ClastReading))
             size = SizeInterval(2.0 ** -(clast + 0.25), 2.0 ** -(clast - 0.25))
         if not _on_grid(size):
             return no_estimate(phase, "outside validity", f"Sizes are read from {_GRID_WORDS}.")
@@ -203,7 +203,7 @@ class Reader:
         signature = Signature(
             self._prior(context, size), context.fluid, size_steps(size.coarse_phi, size.fine_phi), factors
         )
-        case = Case(signature, depths)  # type: ignore[arg-type]
+        case = Case(signature, depths)
         ends = [
             self._at(case, end) if phase.base_size != phase.top_size else None
             for end in (phase.base_size, phase.top_size)
@@ -255,7 +255,7 @@ def _mud_notes(context: Context) -> tuple[str, ...]:
 
 
 def _notes(
-    phase: Phase, context: Context, size: SizeInterval, depths: tuple[tuple[str, object], ...]
+    phase: Phase, context: Context, size: SizeInterval, depths: tuple[tuple[str, DepthReading], ...]
 ) -> tuple[str, ...]:
     """What must be said about how a phase was read."""
     notes = []
@@ -279,6 +279,3 @@ def _notes(
     if phase.setting == "unknown":
         notes.append("The setting is unknown: read as a one-way current of water, with no prior.")
     return tuple(notes)
-
-
-__all__ = ["DepthReading", "Options", "Reader", "Reading", "checked_options"]

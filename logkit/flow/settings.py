@@ -9,12 +9,10 @@ from __future__ import annotations
 from dataclasses import dataclass
 from functools import cache
 from importlib.resources import files
-from typing import Any, TypeVar
+from typing import Any
 
 from logkit.errors import UnknownNameError, nearest
 from logkit.vocabulary.loading import DataFile, parse_toml
-
-T = TypeVar("T")
 
 PRIORS = ("off", "broad", "river")
 
@@ -121,7 +119,7 @@ def build_settings(file: DataFile, calibration: DataFile) -> Settings:
             raise file.fail(f"the table [{table}] is missing.", table)
     settings = {}
     for name, entry in file.data["settings"].items():
-        settings[name] = _record(Setting, name, entry, file, f"settings.{name}")
+        settings[name] = _setting(name, entry, file)
         if settings[name].prior not in PRIORS:
             raise file.fail(f"{name}: no prior {settings[name].prior!r}.", f"settings.{name}", "prior")
     priors = {name: _prior(name, file, calibration) for name in PRIORS}
@@ -137,8 +135,9 @@ def build_settings(file: DataFile, calibration: DataFile) -> Settings:
     )  # fmt: skip
 
 
-def _record(kind: type[T], name: str, entry: dict[str, Any], file: DataFile, table: str) -> T:
-    known = [f for f in kind.__dataclass_fields__ if f != "name"]  # type: ignore[attr-defined]
+def _setting(name: str, entry: dict[str, Any], file: DataFile) -> Setting:
+    table = f"settings.{name}"
+    known = [f for f in Setting.__dataclass_fields__ if f != "name"]
     for field in entry:
         if field not in known:
             near = nearest(field, known)
@@ -147,7 +146,7 @@ def _record(kind: type[T], name: str, entry: dict[str, Any], file: DataFile, tab
     for field in known:
         if field not in entry:
             raise file.fail(f"{name}: {field} is missing.", table)
-    return kind(name=name, **entry)
+    return Setting(name=name, **entry)
 
 
 def _numbers(file: DataFile, table: str, entry: dict[str, Any]) -> None:

@@ -15,7 +15,8 @@ from typing import TypeVar
 
 import numpy as np
 
-from logkit.flow.criteria import CRITERIA, Cells
+from logkit.errors import ArgumentError
+from logkit.flow.criteria import CRITERIA, Cells, ClastReading
 from logkit.flow.grid import Array, ColumnShift, Grid
 from logkit.flow.settings import Prior, flow_settings
 from logkit.flow.states import Fluid, StateTables, state_tables
@@ -133,8 +134,8 @@ class SliceStore:
     def _mixed(self, signature: Signature, build: Callable[[Signature], Array]) -> Array:
         """A clast between two nodes is the weighted sum of the slices of both."""
         for place, (id, reading) in enumerate(signature.factors):
-            if CRITERIA[id].kind == "clast" and isinstance(reading, float):
-                position = (reading - self.grid.coarse_phi) * self.grid.per_phi - 0.5
+            if isinstance(reading, ClastReading):
+                position = (reading.phi - self.grid.coarse_phi) * self.grid.per_phi - 0.5
                 node = int(np.clip(np.floor(position), 0, len(self.grid.phi) - 2))
                 share = np.float32(np.clip(position - node, 0.0, 1.0))
                 parts = []
@@ -166,7 +167,7 @@ class SliceStore:
             if criterion.kind == "state":
                 states = reading  # type: ignore[assignment]
             elif criterion.kind == "clast":
-                plane = plane * (spread @ tables.clast_moved(reading))  # type: ignore[arg-type]
+                plane = plane * (spread @ tables.clast_moved(reading, sharp))  # type: ignore[arg-type]
             else:
                 table = self._cells_likelihood(id, reading, signature.fluid, cells)
                 if table.shape[0] == 1:
@@ -175,8 +176,7 @@ class SliceStore:
                     by_size.append(table)
         if states is None and not by_size:
             return plane
-        if not by_size:
-            assert states is not None
+        if states is not None and not by_size:
             mixed = self._state_mean(tables, states, cells, shares, eps)
             result: Array = plane * (spread @ mixed)
             return result
@@ -208,7 +208,8 @@ class SliceStore:
 
     def _cells_likelihood(self, id: str, reading: Hashable, fluid: Fluid, cells: slice) -> Array:
         function = CRITERIA[id].log_likelihood
-        assert function is not None
+        if function is None:
+            raise ArgumentError("log_likelihood", None, f"given by the criterion {id!r}")
         grid = self.grid
         asked = Cells(
             grid.d_m[cells][:, None, None], grid.velocity.nodes[None, :, None],

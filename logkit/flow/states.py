@@ -27,6 +27,9 @@ D90_OVER_D50 = 1.5
 SUBMERGENCE = (3.0, 0.10)
 """A clast counts as moved by a flow only where h > 3 D; sigma in log10 (judgement): C' means nothing below."""
 
+SHARP_MOTION_SIGMA = 0.10
+"""Width of the motion edge in the conflict test, log10: one bed, not all laboratories (judgement)."""
+
 MOVING = tuple(state for state in STATES if state != "still")
 
 
@@ -164,11 +167,22 @@ class StateTables:
         """The table of a state; "moved" is the sum of all but "still"."""
         return self.moved if state == "moved" else self._states[state]
 
-    def clast_moved(self, cell: int) -> Array:
-        """Likelihood that a clast of a size cell was moved by the flow, shape (velocity, depth)."""
+    def clast_moved(self, cell: int, sharp: bool = False) -> Array:
+        """Likelihood that a clast of a size cell was moved by the flow, shape (velocity, depth).
+
+        Parameters
+        ----------
+        cell : index of the size cell
+        sharp : for the conflict test: the edge without the scatter between laboratories
+        """
         ratio, sigma = SUBMERGENCE
         deep = soft_edge(self.grid.depth.nodes, ratio * self.grid.d_m[cell], sigma)
-        result: Array = self.moved[cell] * deep.astype(np.float32)[None, :]
+        moved = self.moved[cell]
+        if sharp:
+            theta = self.theta_unit[cell][None, :] * self.grid.velocity.nodes[:, None] ** 2
+            critical = self.fluid.theta_critical(self.grid.d_m[cell])
+            moved = soft_edge(theta, critical, SHARP_MOTION_SIGMA).astype(np.float32)
+        result: Array = moved * deep.astype(np.float32)[None, :]
         return result
 
 

@@ -44,7 +44,7 @@ def explain_phase(estimate: PhaseEstimate, rows: Sequence[LedgerRow], phases: in
 def explain_transition(transition: Transition) -> str:
     """One line on the change between two phases of a bed."""
     where = f"From phase {transition.from_phase + 1} to {transition.to_phase + 1}"
-    verdict = transition.tendency
+    verdict: str = transition.tendency
     if transition.p_waxing is not None:
         chance = transition.probability or 0.0
         if verdict == "not determinable":
@@ -81,7 +81,8 @@ def _answer(estimate: PhaseEstimate) -> str:
         return f"no estimate ({estimate.reason})"
     if estimate.bound == "above" and estimate.limit_velocity_m_s is not None:
         what = "the wind was" if estimate.phase.setting == "wind" else "the flow was"
-        return f"{what} faster than {estimate.limit_velocity_m_s:.2g} m/s (nine chances in ten); no upper limit is known"
+        limit = f"{estimate.limit_velocity_m_s:.2g} m/s"
+        return f"{what} faster than {limit} (nine chances in ten); no upper limit is known"
     if estimate.bound == "below" and estimate.limit_velocity_m_s is not None:
         return f"the current was slower than {estimate.limit_velocity_m_s:.2g} m/s"
     parts = []
