@@ -272,6 +272,7 @@ def _way(term: str, table: dict[str, Any], reader: Reader) -> Way:
 
 
 _ABOVE_ZERO = (
+    "lean",
     "set",
     "spacing",
     "row",

@@ -77,7 +77,7 @@ class Troughs:
         younger = np.array(troughs[number + 1 :]).reshape(-1, 4)
         step = max(1.55, 0.29 * depth)
         for arc in range(int(0.96 * depth / step) + 1):
-            u = np.linspace(-1, 1, max(13, int(half * 2 / 0.45)))
+            u = np.linspace(-1, 1, max(13, int(half * 2 / 0.25)))
             x = cx + half * u + (arc * step * self.skew)
             y = bottom - arc * step - (depth) * u**2 * (1.0 - 0.06 * arc)
             own = y >= bottom - depth
@@ -108,8 +108,8 @@ class Foresets:
 
     angle: float = 26.0
     form: str = "tangential"
-    spacing: float = 0.10
-    least: float = 1.15
+    spacing: float = 0.11
+    least: float = 1.4
     both_ways: bool = False
     bundles: bool = False
     drape: int = 0
@@ -337,29 +337,32 @@ class Domes:
 
 @dataclass(frozen=True, slots=True)
 class Folds:
-    """Contorted laminae.
+    """Contorted laminae: level lines moved up and down, then sheared, so that they never cross.
 
-    wavelength, height : mm; overhang : how far crests lean over, share of the wavelength; spacing : mm
+    wavelength, height : mm; lean : 1 makes one limb upright, more overturns it; spacing : mm
     """
 
-    wavelength: float = 7.0
-    height: float = 1.6
-    overhang: float = 0.28
+    wavelength: float = 8.0
+    height: float = 1.5
+    lean: float = 0.75
     spacing: float = 1.3
     role: str = "lamina"
 
     def lines(self, box: Box, set_mm: float | None, random: np.random.Generator) -> list[Stratum]:
-        made = []
-        s = np.arange(box[0] - self.wavelength, box[2] + self.wavelength, 0.35)
+        tall = min(self.height, 0.3 * (box[3] - box[1]))
+        wave = 2 * math.pi / self.wavelength
+        shear = self.lean / (wave * tall)
+        reach = shear * (box[3] - box[1]) + self.wavelength
+        s = np.arange(box[0] - reach, box[2] + reach, 0.4)
         phase, drift = 2 * math.pi * random.random(2)
+        angle = wave * s + phase + 0.7 * np.sin(s / (1.7 * self.wavelength) + drift)
+        fold = (np.cos(angle) + 0.28 * np.cos(2 * angle)) * (0.8 + 0.3 * np.sin(s / 9.1 + drift))
+        made = []
         for level in levels(box, self.spacing, random, 0.1):
             share = (box[3] - level) / max(box[3] - box[1], 1e-9)
-            calm = math.sin(math.pi * min(max(0.12 + 0.8 * share, 0), 1)) ** 0.7
-            angle = 2 * math.pi * s / self.wavelength + phase + 0.8 * np.sin(s / 5.3 + drift)
-            size = min(self.height, 0.35 * (box[3] - box[1])) * calm * (0.75 + 0.35 * np.sin(s / 8.1 + drift))
-            lean = 0.75 * np.sin(angle) + 0.5 * np.cos(angle)
-            x = s - self.overhang * self.wavelength * calm * lean
-            y = level - 0.5 * self.spacing + size * np.cos(angle)
+            calm = math.sin(math.pi * min(0.25 + 0.6 * share, 1.0))
+            y = level - 0.5 * self.spacing - tall * calm * fold
+            x = s + shear * (0.5 * (box[1] + box[3]) - y)
             made.append(Stratum(np.column_stack([x, y]), self.role))
         return made
 

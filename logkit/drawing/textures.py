@@ -153,7 +153,7 @@ def _triangles(ground: Ground, x: Array, y: Array, diameter: Array, ink: str) ->
 
 def _strokes(ground: Ground, style: Style, ink: str, density: float) -> tuple[Shape, ...]:
     texture = style.texture
-    spacing = 0.92 / math.sqrt(density)
+    spacing = 1.05 / math.sqrt(density)
     expected = 0.7 * ground.area / (spacing**2 * _STROKE_STRETCH[0] * _STROKE_STRETCH[1])
     spacing *= max(1.0, math.sqrt(expected / texture.most_dots))
     x, y, reach = ground.points(spacing, _STROKE_STRETCH, salt=101)

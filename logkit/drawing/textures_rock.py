@@ -57,12 +57,12 @@ def _mixed(ground: Ground, style: Style, ink: str, grains: LooseGrains) -> tuple
 
 def _evaporite(ground: Ground, style: Style, ink: str, grains: LooseGrains) -> tuple[Shape, ...]:
     """Needles that cross in pairs below their middle, each a thin lozenge."""
-    x, y = _places(ground, 2.2, (1.1, 1.0), salt=41)
+    x, y = _places(ground, 2.3, (1.1, 0.95), salt=41)
     spin = 2 * np.pi * ground.random.random(x.size)
     shapes: tuple[Shape, ...] = ()
     for turn, length in ((0.0, 1.0), (0.95, 0.72)):
-        along = np.array([-0.5, 0.1, 0.5, 0.1]) * 1.5 * length
-        across = np.array([0.0, -0.09, 0.0, 0.09])
+        along = np.array([-0.5, 0.1, 0.5, 0.1]) * 2.3 * length
+        across = np.array([0.0, -0.12, 0.0, 0.12])
         px, py = _turned(x, y, along, across, spin + turn)
         shapes += _filled(ground, px, py, ink, 0.1)
     return shapes
@@ -70,9 +70,9 @@ def _evaporite(ground: Ground, style: Style, ink: str, grains: LooseGrains) -> t
 
 def _chert(ground: Ground, style: Style, ink: str, grains: LooseGrains) -> tuple[Shape, ...]:
     """Flat shards with one hollow side."""
-    x, y = _places(ground, 1.9, (1.35, 0.85), salt=43)
+    x, y = _places(ground, 1.75, (1.3, 0.85), salt=43)
     spin = 0.5 * (ground.random.random(x.size) - 0.5) + np.pi * (ground.random.random(x.size) < 0.5)
-    size = 0.75 + 0.5 * ground.random.random(x.size)
+    size = 0.9 + 0.7 * ground.random.random(x.size)
     along = np.array([-0.6, -0.05, 0.6, 0.05, -0.2])
     across = np.array([0.24, -0.28, 0.24, 0.10, 0.10])
     px, py = _turned(x, y, along, across, spin, size)
