@@ -1,0 +1,145 @@
+"""The lithology cell, and the words that say there is no rock to see."""
+
+from __future__ import annotations
+
+import re
+from dataclasses import dataclass
+from functools import lru_cache
+
+from logkit.model import GrainState, LargestClasts, Structure
+from logkit.tables.cells.dates import date_remark
+from logkit.tables.cells.grain import read_grain
+from logkit.tables.cells.largest import take_largest, take_median
+from logkit.tables.cells.reading import CACHE_SIZE, Reading, Remark, clean, error, question, quoted, too_long
+from logkit.tables.cells.sizes import parse_state
+from logkit.tables.cells.words import collect, unread
+from logkit.vocabulary import lexicon, vocabulary
+
+_EDGES = " .,;:()[]-"
+_GAP_NUMBERS = re.compile(r"[~]?\d+(?:[.,]\d+)?\s*(?:mm|cm|m|ft|feet|in|'|\")?(?![A-Za-z])", re.I)
+
+
+@dataclass(frozen=True, slots=True)
+class RockCell:
+    """What a lithology cell holds.
+
+    Attributes
+    ----------
+    lithology : vocabulary id, "" when none is named
+    qualifiers : vocabulary ids
+    grain : size states written beside the rock, upward
+    structures, largest, d50_mm : as in `GrainCell`
+    sure : False when the rock is written with doubt or read from an ambiguous word
+    """
+
+    lithology: str = ""
+    qualifiers: tuple[str, ...] = ()
+    grain: tuple[GrainState, ...] = ()
+    structures: tuple[Structure, ...] = ()
+    largest: LargestClasts | None = None
+    d50_mm: float | None = None
+    sure: bool = True
+
+
+@lru_cache(maxsize=CACHE_SIZE)
+def read_lithology(text: str, scale: str = "wentworth") -> Reading[RockCell]:
+    """The lithology cell.
+
+    Parameters
+    ----------
+    text : the cell
+    scale : size scale of size classes written beside the rock
+    """
+    plain = clean(text)
+    if not plain:
+        return Reading(None)
+    refused = date_remark(plain) or too_long(plain)
+    if refused:
+        return Reading(None, (refused,))
+    whole = vocabulary("lithologies").find(plain)
+    known = lexicon("lithologies", "qualifiers", "structures", "fossils", "rounding")
+    if whole and not known.scan(plain)[0].ambiguity:
+        return Reading(RockCell(whole.id, sure="?" not in plain))
+    remarks: list[Remark] = []
+    rest, largest = take_largest(plain, remarks)
+    rest, d50 = take_median(rest, largest, remarks)
+    words = collect(rest, known)
+    remarks.extend(words.remarks)
+    rocks = words.terms.get("lithologies", [])
+    grain: tuple[GrainState, ...] = ()
+    leftover = " ".join(words.unknown)
+    if leftover and _has_size(leftover, scale):
+        beside = read_grain(_without_rocks(rest, [written for _, written, _ in rocks]), scale)
+        if beside.value:
+            grain = beside.value.states
+            remarks.extend(r for r in beside.remarks if r.code.startswith("grain."))
+            leftover = ""
+    named = dict.fromkeys(term.id for term, _, _ in rocks)
+    mixed = _interbedded(plain, tuple(named))
+    _say_mixture(tuple(named), mixed, remarks)
+    if not named and not (grain or largest or words.terms):
+        return Reading(None, (*remarks, _unknown(plain)))
+    left = unread(leftover.split())
+    if left:
+        remarks.append(left)
+    structures = tuple(Structure(t.id, w, sure=sure) for t, w, sure in words.terms.get("structures", ()))
+    lithology = "heterolithic" if mixed else next(iter(named), "")
+    return Reading(
+        RockCell(lithology, words.ids("qualifiers"), grain, structures, largest, d50,
+                 "?" not in plain and all(sure for _, _, sure in rocks)),
+        tuple(remarks),
+    )  # fmt: skip
+
+
+@lru_cache(maxsize=CACHE_SIZE)
+def read_gap(text: str) -> Reading[str]:
+    """The reason for a gap (vocabulary id), or None when the text is not about a gap."""
+    plain = _GAP_NUMBERS.sub(" ", clean(text)).strip(_EDGES)
+    if not plain or len(plain) > 120:
+        return Reading(None)
+    terms = vocabulary("gaps")
+    found = terms.find(plain)
+    if found:
+        return Reading(found.id)
+    pieces = lexicon("gaps").scan(plain)
+    if pieces and pieces[0].vocabulary == "gaps" and pieces[0].term:
+        others = [p for p in pieces[1:] if not p.filler and p.vocabulary != "gaps"]
+        # `lost core 2.6 ft` is a gap; `covered by fine sst` talks about a rock
+        if not others:
+            return Reading(pieces[0].term.id)
+    return Reading(None)
+
+
+def _has_size(words: str, scale: str) -> bool:
+    return parse_state(words, scale).size is not None
+
+
+def _without_rocks(text: str, rocks: list[str]) -> str:
+    for rock in rocks:
+        text = re.sub(rf"(?<!\w){re.escape(rock)}(?!\w)", " ", text, count=1)
+    return text
+
+
+def _interbedded(text: str, rocks: tuple[str, ...]) -> bool:
+    return bool(re.search(r"\binterb\w*|\binterlam\w*|\balternat\w*|/", text, re.I)) and len(rocks) == 2
+
+
+def _say_mixture(rocks: tuple[str, ...], mixed: bool, remarks: list[Remark]) -> None:
+    if len(rocks) > 1 and not any(r.code == "word.ambiguous" for r in remarks):
+        labels = [vocabulary("lithologies")[id].label for id in rocks]
+        shown = [labels[0], "heterolithic: " + " and ".join(labels)]
+        if mixed:
+            shown.reverse()
+        remarks.append(
+            question("lithology.several", f"{len(rocks)} rocks are named: {', '.join(labels)}",
+                     "name the main rock first, or write alternating beds as a pattern",
+                     (shown[0], shown[1]))
+        )  # fmt: skip
+
+
+def _unknown(plain: str) -> Remark:
+    terms = vocabulary("lithologies")
+    labels = tuple(term.label for term in terms.values())
+    near = terms.nearest(plain) or next((n for w in plain.split()[:6] if len(w) > 2 and (n := terms.nearest(w))), None)
+    return error("lithology.unknown", f"{quoted(plain)} is not a rock that is known",
+                 "use a known rock, or move the words to the notes column", allowed=labels, nearest=near)  # fmt: skip
