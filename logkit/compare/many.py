@@ -1,0 +1,207 @@
+"""Many wells in one go: read, infer, write, count, one after another on several processes.
+
+An error in one file is recorded and does not stop the others. Only a short digest of each well is kept, so that
+memory does not grow with their number; progress is yielded, a front may show it.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Sequence
+from concurrent.futures import Future, ProcessPoolExecutor
+from dataclasses import dataclass, field
+from pathlib import Path
+from typing import TYPE_CHECKING, Any
+
+import numpy as np
+
+from logkit.compare import measures
+from logkit.compare.companions import find_companions
+from logkit.compare.differences import Difference, compare_values, differences_frame, gather
+from logkit.compare.handover import HandoverWriter, WellFiles, well_files
+from logkit.compare.placing import place_logs
+from logkit.errors import ArgumentError, LogkitError
+from logkit.files import write_atomic
+
+if TYPE_CHECKING:
+    import pandas as pd
+    from numpy.typing import NDArray
+
+AHEAD = 3
+"""Wells a process may be ahead of the writer; more would only fill memory."""
+
+
+@dataclass(frozen=True, slots=True)
+class WellDone:
+    """Progress: one source is through.
+
+    Attributes
+    ----------
+    source : file
+    done, of : how many sources are through, of how many
+    sections : names of the logs it held; empty when it failed
+    problem : what went wrong, "" when nothing did
+    """
+
+    source: str
+    done: int
+    of: int
+    sections: tuple[str, ...] = ()
+    problem: str = ""
+
+
+@dataclass
+class ManyWells:
+    """What is kept of many wells while they go by.
+
+    Attributes
+    ----------
+    rows : rows of the tables of single wells, by table
+    values : short series of each well for the tests between wells
+    failures : (source, what went wrong)
+    """
+
+    rows: dict[str, list[pd.DataFrame]] = field(default_factory=dict)
+    values: dict[str, dict[str, NDArray[np.float32]]] = field(default_factory=dict)
+    failures: list[tuple[str, str]] = field(default_factory=list)
+
+    def tables(self) -> dict[str, pd.DataFrame]:
+        """The tables of all wells."""
+        import pandas as pd
+
+        found = {name: pd.concat(parts, ignore_index=True) for name, parts in self.rows.items()}
+        found["differences"] = differences_frame(self.differences())
+        return found
+
+    def differences(self) -> tuple[Difference, ...]:
+        """Tests between the wells: each against all others when there are many."""
+        wide = {
+            name: {quantity: np.asarray(v, dtype=float) for quantity, v in values.items()}
+            for name, values in self.values.items()
+        }
+        return compare_values(wide) if len(wide) > 1 else ()
+
+    def summary(self) -> list[str]:
+        """What happened, in sentences."""
+        said = [f"{len(self.values)} wells written, {len(self.failures)} files could not be used."]
+        said += [f"{source}: {problem}" for source, problem in self.failures]
+        return said
+
+
+@dataclass(frozen=True, slots=True)
+class _Digest:
+    files: WellFiles
+    rows: dict[str, Any]
+    values: dict[str, NDArray[np.float32]]
+
+
+def process_wells(
+    sources: Sequence[str | Path],
+    folder: str | Path,
+    kept: ManyWells | None = None,
+    *,
+    processes: int = 2,
+    step_m: float | None = None,
+    flow: bool = True,
+    trends: bool = True,
+    reading: dict[str, Any] | None = None,
+) -> Iterator[WellDone]:
+    """Write the hand-over set and the tables of many wells, one source after another.
+
+    Parameters
+    ----------
+    sources : files of logs
+    folder : where the set goes; tables of all wells go into its folder `tables`
+    kept : receives tables and failures; pass one to look at them afterwards
+    processes : how many work side by side
+    step_m : step of LAS curves, m
+    flow, trends : whether these results are taken
+    reading : options of `read_log`
+
+    Yields
+    ------
+    WellDone after each source, in the order given. The files take their names when the last one is through.
+
+    Raises
+    ------
+    ArgumentError : no source, or fewer than one process
+    LogkitError : the folder cannot be written
+    """
+    if not sources:
+        raise ArgumentError("sources", "an empty list", "one file or more")
+    if processes < 1:
+        raise ArgumentError("processes", processes, "one or more")
+    kept = ManyWells() if kept is None else kept
+    target = Path(folder)
+    jobs = [(str(source), step_m, flow, trends, reading or {}) for source in sources]
+    with HandoverWriter(target) as writer:
+        for number, (job, answer) in enumerate(_answers(jobs, processes), start=1):
+            if isinstance(answer, str):
+                kept.failures.append((job[0], answer))
+                yield WellDone(job[0], number, len(jobs), problem=answer)
+                continue
+            for digest in answer:
+                writer.add(digest.files)
+                for name, frame in digest.rows.items():
+                    kept.rows.setdefault(name, []).append(frame)
+                kept.values[_free(digest.files.name, kept.values)] = digest.values
+            yield WellDone(job[0], number, len(jobs), tuple(d.files.name for d in answer))
+    (target / "tables").mkdir(exist_ok=True)
+    for name, table in kept.tables().items():
+        write_atomic(target / "tables" / f"{name}.csv", table.to_csv(index=False))
+
+
+def _answers(
+    jobs: Sequence[tuple[Any, ...]], processes: int
+) -> Iterator[tuple[tuple[Any, ...], list[_Digest] | str]]:
+    """Answers in the order of the jobs, with only a few under way at a time."""
+    if processes == 1 or len(jobs) == 1:
+        for job in jobs:
+            yield job, _one(*job)
+        return
+    with ProcessPoolExecutor(processes) as pool:
+        waiting: list[tuple[tuple[Any, ...], Future[list[_Digest] | str]]] = []
+        left = iter(jobs)
+        for job in left:
+            waiting.append((job, pool.submit(_one, *job)))
+            if len(waiting) >= AHEAD * processes:
+                first, future = waiting.pop(0)
+                yield first, future.result()
+        for job, future in waiting:
+            yield job, future.result()
+
+
+def _one(
+    source: str, step_m: float | None, flow: bool, trends: bool, reading: dict[str, Any]
+) -> list[_Digest] | str:
+    """Everything about the logs of one source, or what went wrong with it."""
+    from logkit.flow import infer_flow
+    from logkit.tables import read_logs
+    from logkit.trends import find_trends
+
+    try:
+        digests = []
+        for log in read_logs(source, **reading):
+            history = infer_flow(log) if flow else None
+            found = find_trends(log) if trends else None
+            placed, _ = place_logs([log], "base", "true", [find_companions(log)])
+            tables = {
+                "wells": measures.wells_table(placed),
+                "net_to_gross": measures.net_to_gross_table(placed),
+                "beds": measures.beds_table(placed),
+                "facies": measures.facies_table(placed),
+                "flow": measures.flow_table(placed, [history]),
+                "grading": measures.grading_table(placed, [found]),
+            }
+            values = {k: v.astype(np.float32) for k, v in gather(placed[0], history).items()}
+            rows = {name: table for name, table in tables.items() if len(table)}
+            digests.append(_Digest(well_files(placed[0], history, found, step_m), rows, values))
+        return digests
+    except LogkitError as problem:
+        return str(problem)
+
+
+def _free(name: str, taken: dict[str, Any]) -> str:
+    number, free = 2, name
+    while free in taken:
+        free, number = f"{name} ({number})", number + 1
+    return free
