@@ -373,6 +373,8 @@ def _arguments(record: Formula, inputs: dict[str, Any]) -> dict[str, Any]:
         wanted = split_suffix(target)[1] if target else None
         if target is None or unit is None or wanted is None or unit.dimension != wanted.dimension:
             raise ArgumentError(name, value, f"one of the inputs of {record.id}: {', '.join(known)}")
+        if not _is_number(value):
+            raise ArgumentError(name, value, f"a number or numbers in {unit.symbol}")
         arguments[target] = wanted.from_si(unit.to_si(value))
     for name, parameter in known.items():
         if name not in arguments and parameter.default is inspect.Parameter.empty:
@@ -389,14 +391,21 @@ def _guard(function: F, positive: tuple[str, ...], not_negative: tuple[str, ...]
     def guarded(*args: Any, **kwargs: Any) -> Any:
         named = dict(zip(order, args, strict=False)) | kwargs
         for name in positive:
-            if name in named and np.any(np.asarray(named[name]) <= 0):
+            if name in named and np.any(_numbers(name, named[name]) <= 0):
                 raise ArgumentError(name, named[name], "above zero")
         for name in not_negative:
-            if name in named and np.any(np.asarray(named[name]) < 0):
+            if name in named and np.any(_numbers(name, named[name]) < 0):
                 raise ArgumentError(name, named[name], "zero or above")
         return function(*args, **kwargs)
 
     return guarded  # type: ignore[return-value]
+
+
+def _numbers(name: str, value: Any) -> np.ndarray:
+    try:
+        return np.asarray(value, dtype=float)
+    except (TypeError, ValueError):
+        raise ArgumentError(name, value, "a number or numbers") from None
 
 
 def _input_quantity(name: str, meaning: str) -> Quantity:

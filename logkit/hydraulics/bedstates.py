@@ -191,7 +191,7 @@ def _one_state(state: str, name: str) -> Any:
         f"bedforms.{name}",
         gives=f"probability of the bed state {state.replace('_', ' ')}",
         equation=f"the row {state.replace('_', ' ')} of bedforms.soft_criterion",
-        homogeneous=False,
+        homogeneous=state in ("still", "upper_plane", "antidune"),
         **_COMMON,
     )(probability)
 

@@ -421,6 +421,8 @@ def depth_over_set_thickness(
     factors = (set_factor_mean, set_factor_sd, depth_factor_median, depth_factor_sigma_ln)
     if any(np.ndim(factor) for factor in factors):
         raise ArgumentError("set_factor_mean to depth_factor_sigma_ln", factors, "one number each")
+    if any(np.isnan(factor) for factor in factors):
+        return float("nan")
     return float(chosen("percentile", percentile, _product_quantiles(*map(float, factors))))
 
 

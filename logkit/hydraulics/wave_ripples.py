@@ -80,15 +80,12 @@ def ripple_spacing_limit(d_m: Values) -> Values:
 
 
 def _height(orbital_diameter_m: Values, spacing_m: Values) -> np.ndarray:
-    """Ripple height for a spacing: smaller root of the steepness law, capped."""
-    with np.errstate(invalid="ignore"):
-        constant = 2.28 + np.log(np.divide(orbital_diameter_m, spacing_m))
-        inside = 1.442**2 - 4 * 0.095 * constant
-        y = (1.442 - np.sqrt(np.where(inside >= 0, inside, np.nan))) / (2 * 0.095)
+    """Ripple height for a spacing: smaller root of the steepness law, capped; NaN where it has no root."""
+    constant = 2.28 + np.log(np.divide(orbital_diameter_m, spacing_m))
+    inside = 1.442**2 - 4 * 0.095 * constant
+    y = (1.442 - np.sqrt(np.where(inside >= 0, inside, np.nan))) / (2 * 0.095)
     steepness = np.exp(-0.095 * np.square(y) + 0.442 * y - 2.28)
-    # no real root: d0 is too large for the law, which then means the cap (as published)
-    capped = np.where(np.isnan(y), STEEPNESS_CAP, np.minimum(steepness, STEEPNESS_CAP))
-    return np.where(np.isnan(constant), np.nan, capped * spacing_m)
+    return np.minimum(steepness, STEEPNESS_CAP) * spacing_m
 
 
 @formula(
@@ -121,7 +118,8 @@ def wiberg_harris_spacing(orbital_diameter_m: Values, d50_m: Values) -> Values:
     """
     d0 = np.asarray(orbital_diameter_m, dtype=float)
     orbital, anorbital = 0.62 * d0, 535 * np.asarray(d50_m, dtype=float)
-    relative = d0 / _height(d0, anorbital)
+    # the steepness law has no root above d0/lambda = 24: far beyond the anorbital limit
+    relative = np.fmin(d0 / _height(d0, anorbital), np.where(np.isnan(d0), np.nan, 10 * _ANORBITAL_ABOVE))
     share = np.clip(np.log(relative / _ORBITAL_BELOW) / np.log(_ANORBITAL_ABOVE / _ORBITAL_BELOW), 0, 1)
     return orbital * (anorbital / orbital) ** share
 
@@ -135,8 +133,18 @@ def wiberg_harris_spacing(orbital_diameter_m: Values, d50_m: Values) -> Values:
     domain="wave-dominated sand",
     status="secondary",
     inputs=SYMBOLS,
+    limits=(
+        Limit(
+            "d0/lambda",
+            None,
+            24,
+            lambda orbital_diameter_m, d50_m, **_: (
+                np.asarray(orbital_diameter_m) / wiberg_harris_spacing(orbital_diameter_m, d50_m)
+            ),
+        ),
+    ),
     positive=("orbital_diameter_m", "d50_m"),
-    pitfalls="Natural logarithms.",
+    pitfalls="Natural logarithms. No height above d0/lambda = 24, where the law has no root.",
 )
 def wiberg_harris_height(orbital_diameter_m: Values, d50_m: Values) -> Values:
     """Height of orbital, suborbital and anorbital ripples.
@@ -148,7 +156,7 @@ def wiberg_harris_height(orbital_diameter_m: Values, d50_m: Values) -> Values:
 
     Returns
     -------
-    eta, m
+    eta, m; NaN above d0/lambda of about 24, where the law gives no height
 
     References
     ----------
