@@ -28,7 +28,7 @@ FLAT_PRICE, SLOPE_PRICE = 1.3, 2.3
 NESTING_PRICE = 4.0
 """How much dearer a cut is when packages are gathered into larger ones. Ours."""
 
-TRIED = (0.5, 0.7, 1.4, 2.0)
+TRIED = (0.5, 2.0)
 """Penalties tried for the support of a boundary, times the one used."""
 
 WORDS: dict[Quantity, tuple[str, str]] = {
@@ -44,7 +44,7 @@ class Boundary:
 
     height_m : base of the upper package
     change : mean of the upper less mean of the lower package, phi or ln(m)
-    support : share of four other penalties (half to twice the one used) that keep it within one bed
+    support : share of the penalties half and twice the one used that keep it within one bed
     """
 
     quantity: str
@@ -78,12 +78,14 @@ def find_packages(
 
     Notes
     -----
-    Half the level goes to the search: cuts are made only where the test against random order, shared over
-    the quantities, is below it. The other half goes to the trends: Kendall's p of every package of every
-    quantity, adjusted together by Benjamini-Hochberg, must be below it. So both errors together stay
-    within the level, whatever the cut finds. A flat piece costs 1.3 and a sloping one 2.3 ln(n) times the noise variance, which is
-    estimated from bed-to-bed steps, then once more from what the first cut leaves, and is never below
-    that of the size classes. Packages are gathered into larger ones where these have a trend of their own.
+    Half the level goes to the search: cuts are made only where the gain from cutting is rarer in random
+    order than that half, shared over the quantities. The other half goes to the trends: Kendall's p of
+    every package of every quantity, adjusted together by Benjamini-Hochberg, must be below it. So both
+    errors together stay within the level, whatever the cut finds.
+
+    A flat piece costs 1.3 ln(n) times the noise variance, a sloping one 2.3. The noise is estimated from
+    bed-to-bed steps, then from what a first cut leaves, and is never below that of the size classes.
+    Packages are gathered into larger ones where these have a trend of their own.
 
     References
     ----------

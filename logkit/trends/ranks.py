@@ -213,7 +213,7 @@ def _exact_two_sided(s: float, ties: tuple[int, ...]) -> float:
     pairs = n * (n - 1) / 2 - sum(t * (t - 1) / 2 for t in ties)
     if pairs == 0:
         return 1.0
-    return min(1.0, 2 * _inversion_tail(ties)[round((pairs - abs(s)) / 2)])
+    return float(min(1.0, 2 * _inversion_tail(ties)[round((pairs - abs(s)) / 2)]))
 
 
 @formula(

@@ -91,9 +91,9 @@ def cut(
     costs = np.zeros(len(stops) + 1)
     expiry = np.full(len(stops) + 1, n + 1, dtype=np.intp)
     count = 1
-    for stop in stops:
-        alive = np.flatnonzero(expiry[:count] > stop)
-        if alive.size < count:
+    for number, stop in enumerate(stops):
+        if number % 16 == 0:  # a useless start does no harm, so they are thrown out now and then
+            alive = np.flatnonzero(expiry[:count] > stop)
             for array in (starts, costs, expiry):
                 array[: alive.size] = array[alive]
             count = alive.size
@@ -108,8 +108,8 @@ def cut(
         least = float(total[k])
         sloping = bool(sloped_total[k] < flat_total[k])
         origin[stop] = (int(starts[k]), sloping, float(sloped[k] if sloping else flat[k]))
-        doomed = np.flatnonzero(total - margin >= least)
-        expiry[doomed] = np.minimum(expiry[doomed], stop + minimum)
+        dear = total >= least + margin
+        expiry[:ready][dear] = np.minimum(expiry[:ready][dear], stop + minimum)
         starts[count], costs[count], expiry[count] = stop, least, n + 1
         count += 1
     pieces: list[Piece] = []
@@ -137,23 +137,29 @@ def least_costs(
     """
     count, n = rows.shape
     x = np.arange(n + 1, dtype=float)
-    sums = np.zeros((3, count, n + 1))
-    for k, values in enumerate((rows, rows * (x[1:] - 0.5), rows * rows)):
-        np.cumsum(values, axis=1, out=sums[k, :, 1:])
-    costs = np.full((count, n + 1), np.inf)
-    costs[:, 0] = 0.0
+    columns = np.ascontiguousarray(rows.T)  # one series a column: the pieces that end together lie together
+    sums = np.zeros((3, n + 1, count))
+    for k, values in enumerate((columns, columns * (x[1:, None] - 0.5), columns * columns)):
+        np.cumsum(values, axis=0, out=sums[k, 1:])
+    costs = np.full((n + 1, count), np.inf)
+    costs[0] = 0.0
+    first_sum, moment, squares = sums
     for stop in range(min(minimum, n), n + 1):
-        first, last = max(stop - longest, 0), max(stop - minimum, 0)
-        own = slice(first, last + 1)
-        size = stop - x[own]
-        y, xy, yy = sums[:, :, stop, None] - sums[:, :, own]
-        flat = yy - y * y / size
-        along = xy - (x[own] + stop) / 2 * y
-        across = size * (size * size - 1) / 12
-        sloped = flat - along * along / np.maximum(across, 1e-12)
-        total = costs[:, own] + np.minimum(flat + flat_penalty, sloped + slope_penalty)
-        costs[:, stop] = total.min(axis=1)
-    return costs[:, n]
+        own = slice(max(stop - longest, 0), max(stop - minimum, 0) + 1)
+        size = (stop - x[own])[:, None]
+        y = first_sum[stop] - first_sum[own]
+        along = moment[stop] - moment[own] - ((x[own, None] + stop) / 2) * y
+        y *= y
+        y /= size
+        flat = squares[stop] - squares[own]
+        flat -= y
+        along *= along
+        along /= np.maximum(size * (size * size - 1) / 12, 1e-12)
+        along -= slope_penalty - flat_penalty
+        flat -= np.maximum(along, 0.0)
+        flat += costs[own]
+        costs[stop] = flat.min(axis=0) + flat_penalty
+    return costs[n]
 
 
 def noise_variance(y: npt.ArrayLike) -> float:

@@ -6,15 +6,17 @@ count in the gross only where it says so.
 
 from __future__ import annotations
 
-import itertools
 import math
+from collections.abc import Mapping
 from dataclasses import dataclass
+from itertools import pairwise
 from typing import TYPE_CHECKING
 
 import numpy as np
 import numpy.typing as npt
 
-from logkit.model import Bed, Log
+from logkit.model import Bed, Log, SizeInterval
+from logkit.trends.geometry import net_to_gross
 from logkit.trends.series import bed_size, seed_of, size_class
 
 if TYPE_CHECKING:
@@ -171,11 +173,13 @@ def find_thickness(log: Log, cut_offs_mm: tuple[float, ...] = CUT_OFFS_MM) -> Th
     cut_offs_mm : grain sizes for net to gross, mm
     """
     beds = [bed for bed in log.real_beds if bed.thickness_m > 0]
+    sizes = {id(bed): bed_size(bed) for bed in beds}
+    classes = {id(bed): size_class(sizes[id(bed)]) for bed in beds}
     measured = [bed for bed in beds if bed.measured]
     groups: dict[str, list[float]] = {"all beds": []}
     for bed in measured:
         groups["all beds"].append(bed.thickness_m)
-        groups.setdefault(size_class(bed_size(bed)), []).append(bed.thickness_m)
+        groups.setdefault(classes[id(bed)], []).append(bed.thickness_m)
     arrays = {name: np.array(values) for name, values in groups.items() if values}
     minimum = sum(bed.minimum_thickness for bed in measured)
     notes = []
@@ -187,9 +191,9 @@ def find_thickness(log: Log, cut_offs_mm: tuple[float, ...] = CUT_OFFS_MM) -> Th
         )
     return Thickness(
         tuple(_class_row(name, values) for name, values in arrays.items()),
-        tuple(_net(log, beds, cut) for cut in cut_offs_mm) if beds else (),
+        _net_rows(log, beds, [sizes[id(bed)] for bed in beds], cut_offs_mm),
         tuple(c for name, values in arrays.items() for c in candidates(name, values)),
-        _amalgamation(log),
+        _amalgamation(log, classes),
         len(beds) - len(measured),
         minimum,
         tuple(notes),
@@ -203,33 +207,44 @@ def _class_row(name: str, values: Array) -> ClassThickness:
     )
 
 
-def _net(log: Log, beds: list[Bed], cut_off_mm: float) -> NetToGross:
-    net = low = high = 0.0
-    for bed in beds:
-        size = bed_size(bed)
-        if size is None:
-            high += bed.thickness_m
-            continue
-        net += bed.thickness_m * (size.middle_mm >= cut_off_mm)
-        low += bed.thickness_m * (size.low_mm >= cut_off_mm * (1 - 1e-9))
-        high += bed.thickness_m * (size.high_mm > cut_off_mm * (1 + 1e-9))
-    described = sum(bed.thickness_m for bed in beds)
+def _net_rows(
+    log: Log, beds: list[Bed], sizes: list[SizeInterval | None], cut_offs_mm: tuple[float, ...]
+) -> tuple[NetToGross, ...]:
+    """Net to gross at each cut-off; a bed without a size may be net and is not counted as such."""
+    if not beds:
+        return ()
+    thickness = np.array([bed.thickness_m for bed in beds])
+    low, middle, high = (
+        np.array([nothing if size is None else getattr(size, name) for size in sizes])
+        for name, nothing in (("low_mm", 0.0), ("middle_mm", 0.0), ("high_mm", math.inf))
+    )
+    described = float(thickness.sum())
     height = described + sum(max(bed.thickness_m, 0.0) for bed in log.beds if bed.is_gap)
-    return NetToGross(cut_off_mm, net, low, high, described, height, net / described, net / height)
+    rows = []
+    for cut in cut_offs_mm:
+        net = float(thickness[middle >= cut].sum())
+        rows.append(
+            NetToGross(
+                cut,
+                net,
+                float(thickness[low >= cut * (1 - 1e-9)].sum()),
+                float(thickness[high > cut * (1 + 1e-9)].sum()),
+                described,
+                height,
+                net_to_gross(net, described),
+                net_to_gross(net, height),
+            )
+        )
+    return tuple(rows)
 
 
-def _amalgamation(log: Log) -> Amalgamation:
+def _amalgamation(log: Log, classes: Mapping[int, str]) -> Amalgamation:
     contacts = amalgamated = 0
     for run in log.runs:
-        for below, bed in itertools.pairwise(run):
-            if _is_sand(bed):
-                contacts += 1
-                amalgamated += _is_sand(below)
+        sandy = [classes.get(id(bed), "unknown") not in ("mud", "unknown") for bed in run]
+        contacts += sum(sandy[1:])
+        amalgamated += sum(one and two for one, two in pairwise(sandy))
     return Amalgamation(contacts, amalgamated, amalgamated / contacts if contacts else None)
-
-
-def _is_sand(bed: Bed) -> bool:
-    return size_class(bed_size(bed)) not in ("mud", "unknown")
 
 
 def candidates(name: str, thickness_m: npt.ArrayLike) -> tuple[Candidate, ...]:
@@ -313,7 +328,15 @@ NAMES = {
 }
 
 
-def _cumulative(kind: str, rows: Array, parameters: Array) -> Array:
+def cumulative(kind: str, rows: Array, parameters: Array) -> Array:
+    """Share at or below each thickness of a fitted distribution.
+
+    Parameters
+    ----------
+    kind : key of `FITS`
+    rows : (m, n) thicknesses, m
+    parameters : (2, m) parameters in the order of `NAMES`
+    """
     first, second = parameters[0][:, None], parameters[1][:, None]
     if kind == "lognormal":
         from scipy.special import ndtr
@@ -339,7 +362,7 @@ def _draw(kind: str, parameters: Array, chances: Array) -> Array:
 def _distance(kind: str, rows: Array, parameters: Array) -> Array:
     """Kolmogorov-Smirnov distance of sorted rows from a fitted distribution."""
     n = rows.shape[1]
-    cumulative = _cumulative(kind, rows, parameters)
+    below = cumulative(kind, rows, parameters)
     steps = np.arange(n + 1) / n
-    result: Array = np.maximum(cumulative - steps[:-1], steps[1:] - cumulative).max(axis=1)
+    result: Array = np.maximum(below - steps[:-1], steps[1:] - below).max(axis=1)
     return result

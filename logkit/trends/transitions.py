@@ -18,6 +18,7 @@ from logkit.model import Bed, Log
 from logkit.trends.chains import chi_square, count_transitions, degrees_of_freedom, quasi_independent
 from logkit.trends.ranks import adjusted_p
 from logkit.trends.series import bed_size, size_class
+from logkit.vocabulary import vocabulary
 
 if TYPE_CHECKING:
     import pandas as pd
@@ -95,11 +96,20 @@ class Transitions:
         lines = [f"{head}: {verdict} (chi-square {self.chi_square:.1f}, {self.df} degrees of freedom, "
                  f"p {_small(self.p)})."]  # fmt: skip
         lines += [
-            f"{pair.above} lies on {pair.below} {'more' if pair.residual > 0 else 'less'} often than by "
+            f"{spoken(pair.above)} lies on {spoken(pair.below)} {'more' if pair.residual > 0 else 'less'} often than by "
             f"chance ({pair.count} times, {pair.expected:.1f} expected, adjusted p {_small(pair.p_adjusted)})."
             for pair in self.significant
         ]
         return [*lines, *self.notes]
+
+
+def spoken(state: str) -> str:
+    """A state as read out: its label in the vocabulary of lithologies or structures, else without underscores."""
+    for name in ("lithologies", "structures"):
+        terms = vocabulary(name)
+        if state in terms:
+            return terms[state].label
+    return state.replace("_", " ")
 
 
 def _small(p: float) -> str:
