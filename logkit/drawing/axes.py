@@ -140,7 +140,7 @@ class LogAxis:
 
 def round_series(low: float, high: float) -> list[float]:
     """The numbers 1, 2, 5 times powers of ten that cover a range, one beyond each end included."""
-    values = []
+    values: list[float] = []
     for power in range(math.floor(math.log10(low)) - 1, math.ceil(math.log10(high)) + 2):
         values.extend(float(f"{lead}e{power}") for lead in (1, 2, 5))
     return values

@@ -7,22 +7,34 @@ from __future__ import annotations
 
 import math
 from collections.abc import Sequence
+from dataclasses import dataclass, replace
 from pathlib import Path as FilePath
 from typing import Any
 
-from logkit.drawing import frame, legend, pages, titles
+from logkit.drawing import frame, pages, titles
 from logkit.drawing.drawing import Drawing
 from logkit.drawing.layout import lay_out
+from logkit.drawing.legend import Legend, measure_legend
 from logkit.drawing.scene import Scene, Tally, View
-from logkit.drawing.shapes import Group, Shape, Sheet, Text
+from logkit.drawing.shapes import Gradient, Group, Shape, Sheet, Text
 from logkit.drawing.style import Style, load_style
 from logkit.drawing.tables import note_sheets
 from logkit.drawing.tracks import TRACKS
 from logkit.errors import ArgumentError
 from logkit.model import Log
 
-BEHIND = ("velocity", "depth")
-"""Tracks whose blanks wipe the guides; drawn before the others."""
+WIPING = ("velocity", "depth")
+"""Tracks whose blanks wipe the guides."""
+
+
+@dataclass(frozen=True, slots=True)
+class _Body:
+    """What stands on one sheet between title and caution; `end` is its lower edge, mm."""
+
+    view: View | None
+    shapes: tuple[Shape, ...]
+    gradients: tuple[Gradient, ...]
+    end: float
 
 
 def draw_column(
@@ -116,6 +128,7 @@ class _Column:
         self.cut_gaps = cut_gaps
         self.tally = Tally()
         self.scale_words = titles.scale_words(scene, fitted)
+        self.summary = titles.summary(scene)
         self.width, self.page_height = scene.style.page_size_mm()
         self.top = scene.style.page.section_top
 
@@ -123,11 +136,8 @@ class _Column:
         """All sheets."""
         bodies = [self._body(view) for view in self._views()]
         closing = titles.closing_lines(self.scene, self.tally, self.width)
-        closing_mm = titles.closing_height(self.scene, closing)
-        marks, legend_mm = legend.legend(self.scene, self.tally, self.width)
-        if not self.scene.style.page.legend or not marks:
-            marks, legend_mm = [], 0.0
-        sheets = self._place(bodies, marks, legend_mm, closing, closing_mm)
+        key = measure_legend(self.scene, self.tally, self.width) if self.scene.style.page.legend else None
+        sheets = self._place(bodies, key, closing)
         title = self.scene.log.header.title or self.scene.log.name
         counts = tuple(sorted(self.tally.left_out.items()))
         return Drawing(tuple(sheets), title, self.scene.scale, counts)
@@ -144,7 +154,7 @@ class _Column:
         )
         views = []
         for number, part in enumerate(parts, 1):
-            view = pages.make_view(scene.beds, part, self.top, scene.scale, self.cut_gaps, number, len(parts))
+            view = pages.make_view(scene, part, self.top, self.cut_gaps, number, len(parts))
             views.append(view)
         return views
 
@@ -153,67 +163,51 @@ class _Column:
         reserve = titles.closing_height(self.scene, ["", "", "", ""])
         return frame.LOWER_AXIS_MM + 3.0 + reserve + self.scene.style.page.margin
 
-    def _body(self, view: View) -> tuple[View, list[Shape], tuple]:
+    def _body(self, view: View) -> _Body:
         scene, tally = self.scene, self.tally
         tally.gradients = []
         shapes: list[Shape] = [Group(tuple(frame.guides(scene, view)), id="guides", layer="guides")]
-        names = [name for name in scene.columns if name in BEHIND]
-        names += [name for name in scene.columns if name not in BEHIND]
-        drawn: dict[str, list[Shape]] = {name: TRACKS[name].draw(scene, view, tally) for name in names}
-        order = ["texture", *(name for name in scene.columns if name != "texture")]
-        for name in order:
-            if drawn.get(name):
+        # blanks in the flow columns wipe the guides, so these come before whatever crosses them
+        names = sorted(scene.columns, key=lambda name: name not in WIPING)
+        drawn = {name: TRACKS[name].draw(scene, view, tally) for name in names}
+        for name in sorted(scene.columns, key=lambda name: (name not in WIPING, name != "texture")):
+            if drawn[name]:
                 shapes.append(Group(tuple(drawn[name]), id=f"track-{name}", layer=name))
         shapes.append(Group(tuple(frame.axes(scene, view)), id="axes", layer="axes"))
-        return view, shapes, tuple(tally.gradients)
+        bar = titles.scale_bar(scene, scene.style.page.margin, view.position.y_base + 4.0, 18.0)
+        shapes.append(Group(tuple(bar), id="scale-bar", layer="scale bar"))
+        return _Body(
+            view, tuple(shapes), tuple(tally.gradients), view.position.y_base + frame.LOWER_AXIS_MM + 2.0
+        )
 
-    def _place(
-        self,
-        bodies: list[tuple[View, list[Shape], tuple]],
-        marks: list[Shape],
-        legend_mm: float,
-        closing: list[str],
-        closing_mm: float,
-    ) -> list[Sheet]:
+    def _place(self, bodies: list[_Body], key: Legend | None, closing: list[str]) -> list[Sheet]:
         """Add titles, closing lines and the legend; more sheets where the last has no room for it."""
         style = self.scene.style
-        margin = style.page.margin
+        bodies = bodies or [_Body(None, (), (), style.page.heads)]
+        margin = style.page.margin + titles.closing_height(self.scene, closing)
+        if key is not None:
+            end = bodies[-1].end + key.height
+            if self.page_height is not None and end + margin > self.page_height:
+                bodies = [*bodies, _Body(None, (), (), style.page.heads - 4.0)]
+            last = bodies[-1]
+            bodies[-1] = replace(last, shapes=(*last.shapes, key.draw(last.end)), end=last.end + key.height)
         tables = note_sheets(self.scene, self.tally, self.width, self.page_height)
-        last = bodies[-1][0] if bodies else None
-        end = last.position.y_base + frame.LOWER_AXIS_MM + 2.0 if last else self.top
-        fits = self.page_height is None or end + legend_mm + closing_mm + margin <= self.page_height
-        lone_legend = bool(marks) and not fits
-        total = max(1, len(bodies)) + lone_legend + len(tables)
+        bodies += [_Body(None, tuple(shapes), (), end) for shapes, end in tables]
         sheets = []
-        for number, (view, shapes, gradients) in enumerate(bodies or [(None, [], ())], 1):
-            below = view.position.y_base + frame.LOWER_AXIS_MM + 2.0 if view else self.top
-            content = [*self._head(number, total, view), *shapes]
-            if view is not None:
-                content.extend(titles.scale_bar(self.scene, margin, view.position.y_base + 4.0, 18.0))
-            final = number == len(bodies) or not bodies
-            if final and marks and fits:
-                content.append(legend.moved(marks, below))
-                below += legend_mm
-            height = self.page_height or below + closing_mm + margin
-            content.append(self._closing(closing, height - margin - closing_mm + 1.0, number, total))
-            sheets.append(self._sheet(content, height, gradients, number, total))
-        if lone_legend:
-            content = [*self._head(len(sheets) + 1, total, None), legend.moved(marks, style.page.heads)]
-            height = self.page_height or style.page.heads + legend_mm + closing_mm + margin
-            content.append(self._closing(closing, height - margin - closing_mm + 1.0, len(sheets) + 1, total))
-            sheets.append(self._sheet(content, height, (), len(sheets) + 1, total))
-        for shapes in tables:
-            number = len(sheets) + 1
-            height = self.page_height or 297.0
-            content = [*self._head(number, total, None), *shapes]
-            content.append(self._closing(closing, height - margin - closing_mm + 1.0, number, total))
-            sheets.append(self._sheet(content, height, (), number, total))
+        for number, body in enumerate(bodies, 1):
+            height = self.page_height or body.end + margin
+            shapes = (
+                *self._head(number, len(bodies), body.view),
+                *body.shapes,
+                self._closing(closing, height - margin + 1.0),
+            )
+            sheets.append(self._sheet(shapes, height, body.gradients, number, len(bodies)))
         return sheets
 
     def _head(self, number: int, total: int, view: View | None) -> list[Shape]:
         scene, style = self.scene, self.scene.style
         shapes: list[Shape] = titles.title_block(scene, self.width, self.scale_words)
-        shapes.extend(titles.summary_block(scene, self.width))
+        shapes.extend(titles.summary_block(scene, self.summary, self.width))
         if view is not None:
             shapes.extend(frame.heads(scene, style.page.heads))
         words = titles.sheet_words(view, number, total, scene.downward)
@@ -223,24 +217,23 @@ class _Column:
             shapes.append(Text(at, words, size, style.colours.ink2, anchor="end"))
         return [Group(tuple(shapes), id="title", layer="title")]
 
-    def _closing(self, lines: list[str], y: float, number: int, total: int) -> Group:
-        shapes = titles.closing_block(self.scene, lines, y, self.width, number, total)
+    def _closing(self, lines: list[str], y: float) -> Group:
+        shapes = titles.closing_block(self.scene, lines, y, self.width)
         return Group(tuple(shapes), id="caution", layer="caution")
 
-    def _sheet(self, shapes: list[Shape], height: float, gradients: tuple, number: int, total: int) -> Sheet:
+    def _sheet(
+        self,
+        shapes: tuple[Shape, ...],
+        height: float,
+        gradients: tuple[Gradient, ...],
+        number: int,
+        total: int,
+    ) -> Sheet:
         scene = self.scene
         title = scene.log.header.title or scene.log.name
         if total > 1:
             title = f"{title}, sheet {number} of {total}"
-        description = f"Column at {self.scale_words}. {titles.summary(scene)}"
+        words = f"Column at {self.scale_words}. {self.summary}"
         return Sheet(
-            self.width,
-            height,
-            tuple(shapes),
-            gradients,
-            title,
-            description,
-            number,
-            total,
-            scene.style.colours.paper,
+            self.width, height, shapes, gradients, title, words, number, total, scene.style.colours.paper
         )

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
-from logkit.drawing.axes import LogAxis
+from logkit.drawing.axes import LogAxis, PhiAxis
 from logkit.drawing.metrics import MM_PER_POINT, shorten, width_mm
 from logkit.drawing.scene import Column, Scene, View
 from logkit.drawing.shapes import Group, Paint, Path, Segment, Shape, Text, polyline
@@ -17,8 +17,23 @@ AXIS_GAP = 1.6
 LOWER_AXIS_MM = 8.5
 """Height of the axes below the section, labels included."""
 
-SIZE_CLASSES = (("mud", 6.0), ("vf", 3.5), ("f", 2.5), ("m", 1.5), ("c", 0.5), ("vc", -0.5), ("gravel", -4.0))
-SIZE_LABELS = (("0.06", 4.0), ("0.25", 2.0), ("1", 0.0), ("2", -1.0), ("16", -4.0), ("128", -7.0))
+SIZE_CLASSES: tuple[tuple[str, float], ...] = (
+    ("mud", 6.0),
+    ("vf", 3.5),
+    ("f", 2.5),
+    ("m", 1.5),
+    ("c", 0.5),
+    ("vc", -0.5),
+    ("gravel", -4.0),
+)
+SIZE_LABELS: tuple[tuple[str, float], ...] = (
+    ("0.06", 4.0),
+    ("0.25", 2.0),
+    ("1", 0.0),
+    ("2", -1.0),
+    ("16", -4.0),
+    ("128", -7.0),
+)
 LONG_TICKS = (8, 4, -1, -7)
 
 
@@ -119,9 +134,9 @@ def _size_axis(scene: Scene, y: float, side: int) -> list[Shape]:
     ink, size = style.colours.ink, style.fonts.label
     line_height = 1.25 * size * MM_PER_POINT
     steps: list[Segment] = list(polyline(((axis.x0, y), (axis.x1, y))))
-    for phi in range(-7, 9):
-        length = 2.2 if phi in LONG_TICKS else 1.2
-        steps.extend(polyline(((axis.x(phi), y), (axis.x(phi), y + side * length))))
+    for tick in range(-7, 9):
+        length = 2.2 if tick in LONG_TICKS else 1.2
+        steps.extend(polyline(((axis.x(tick), y), (axis.x(tick), y + side * length))))
     em = size * MM_PER_POINT
     first = y - 1.7 if side < 0 else y + 1.6 + 0.74 * em
     second = first - line_height if side < 0 else first + line_height
@@ -147,10 +162,10 @@ def _size_axis(scene: Scene, y: float, side: int) -> list[Shape]:
     ]
 
 
-def _room(axis: object, phi: float) -> float:
+def _room(axis: PhiAxis, phi: float) -> float:
     """Width of the class that a word stands in, mm."""
     low, high = (8.0, 4.0) if phi > 4 else (-1.0, -7.0) if phi < -1 else (phi + 0.5, phi - 0.5)
-    return axis.x(high) - axis.x(low)  # type: ignore[attr-defined, no-any-return]
+    return axis.x(high) - axis.x(low)
 
 
 def guides(scene: Scene, view: View) -> list[Shape]:

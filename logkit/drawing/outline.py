@@ -5,11 +5,12 @@ Geometry only; what is painted inside and along it is decided in `tracks.texture
 
 from __future__ import annotations
 
+import itertools
 import random
 from dataclasses import dataclass
 
-from logkit.drawing.axes import PHI_SAND_COARSE, PHI_SAND_FINE, PhiAxis
-from logkit.drawing.scene import MeasuredBed, View
+from logkit.drawing.axes import PHI_SAND_COARSE, PHI_SAND_FINE, PhiAxis, PositionScale
+from logkit.drawing.scene import MeasuredBed
 from logkit.drawing.shapes import Point, Segment
 from logkit.drawing.style import TextureStyle
 
@@ -90,24 +91,29 @@ def base_path(curve: Curve) -> tuple[Segment, ...]:
 
 
 def bed_outline(
-    item: MeasuredBed, span: tuple[float, float], view: View, axis: PhiAxis, scale: float, style: TextureStyle
+    item: MeasuredBed,
+    span: tuple[float, float],
+    position: PositionScale,
+    axis: PhiAxis,
+    scale: float,
+    style: TextureStyle,
 ) -> Outline:
     """Outline of a bed on a sheet.
 
     Parameters
     ----------
     item, span : the bed and its (y of base, y of top)
-    view : the sheet's stretch of the section
+    position : position in the section to y
     axis : grain-size axis
     scale : metres in the section a metre on paper
     style : least relief of an erosive base on paper and the widths of its scours
     """
     y_base, y_top = span
-    sizes = _sizes(item, view)
+    sizes = _sizes(item, position)
     profile = tuple((axis.x(phi), y) for y, phi in sizes)
     right = profile[0][0]
     contact = item.bed.contact
-    kind = contact.kind if contact and item.bed.base_m >= view.position.base_m else ""
+    kind = contact.kind if contact and item.bed.base_m >= position.base_m else ""
     tall = y_base - y_top
     if kind in _SHAPED and tall >= 1.0 and right - axis.x0 > 3:
         logged = contact.relief_m if contact and contact.relief_m else 0.0
@@ -117,14 +123,14 @@ def bed_outline(
     return Outline(axis.x0, y_base, y_top, profile, sizes, ((axis.x0, y_base), ((right, y_base),)))
 
 
-def _sizes(item: MeasuredBed, view: View) -> tuple[Point, ...]:
+def _sizes(item: MeasuredBed, position: PositionScale) -> tuple[Point, ...]:
     """(y, phi) from base to top, with a knot where the axis changes its rate."""
-    low = max(item.bed.base_m, view.position.base_m)
-    high = min(item.bed.top_m, view.position.top_m)
+    low = max(item.bed.base_m, position.base_m)
+    high = min(item.bed.top_m, position.top_m)
     knots = item.knots
     if len(knots) == 2 and knots[0][1] == knots[1][1]:
         phi = knots[0][1]
-        return ((view.position.y(low), phi), (view.position.y(high), phi))
+        return ((position.y(low), phi), (position.y(high), phi))
     inner = [(m, phi) for m, phi in knots if low < m < high]
     points = [(low, item.phi_at(low)), *inner, (high, item.phi_at(high))]
     if low == item.bed.base_m:
@@ -132,12 +138,12 @@ def _sizes(item: MeasuredBed, view: View) -> tuple[Point, ...]:
     if high == item.bed.top_m:
         points[-1] = (high, knots[-1][1])
     full: list[tuple[float, float]] = [points[0]]
-    for (m_a, a), (m_b, b) in zip(points, points[1:], strict=False):
+    for (m_a, a), (m_b, b) in itertools.pairwise(points):
         crossings = [limit for limit in (PHI_SAND_FINE, PHI_SAND_COARSE) if min(a, b) < limit < max(a, b)]
         for limit in sorted(crossings, reverse=a > b):
             full.append((m_a + (m_b - m_a) * (limit - a) / (b - a), limit))
         full.append((m_b, b))
-    return tuple((view.position.y(m), phi) for m, phi in full)
+    return tuple((position.y(m), phi) for m, phi in full)
 
 
 def _scours(
@@ -147,7 +153,7 @@ def _scours(
     edges = _edges(x0, x1, widths, rng)
     steps = []
     level = y + 0.15 * relief
-    for index, (a, b) in enumerate(zip(edges, edges[1:], strict=False)):
+    for index, (a, b) in enumerate(itertools.pairwise(edges)):
         depth = relief * (1.0 if index == 0 else rng.uniform(0.35, 0.75))
         end = y if b == x1 else y + rng.uniform(-0.05, 0.22) * relief
         lean = rng.uniform(0.18, 0.32)
@@ -164,7 +170,7 @@ def _waves(
     edges = _edges(x0, x1, widths, rng)
     steps = []
     side = 1.0
-    for a, b in zip(edges, edges[1:], strict=False):
+    for a, b in itertools.pairwise(edges):
         swing = side * relief * rng.uniform(0.5, 0.7)
         w = b - a
         steps.append((a + 0.35 * w, y + swing, a + 0.65 * w, y + swing, b, y))
@@ -178,7 +184,7 @@ def _loads(
     """A loaded base: bulges that sank into the bed beneath, with narrow flames of it between them."""
     edges = _edges(x0, x1, tuple(0.6 * w for w in widths), rng)
     steps = []
-    for a, b in zip(edges, edges[1:], strict=False):
+    for a, b in itertools.pairwise(edges):
         depth = relief * rng.uniform(0.8, 1.2)
         w = b - a
         steps.append(

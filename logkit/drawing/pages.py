@@ -8,7 +8,8 @@ from __future__ import annotations
 from collections.abc import Sequence
 
 from logkit.drawing.axes import Piece, PositionScale
-from logkit.drawing.scene import MeasuredBed, View
+from logkit.drawing.outline import bed_outline
+from logkit.drawing.scene import MeasuredBed, Scene, View
 
 CUT_GAP_M = 1.5
 """Only gaps taller than this are ever cut."""
@@ -81,15 +82,22 @@ def is_cut(item: MeasuredBed, scale: float) -> bool:
 
 
 def make_view(
-    beds: Sequence[MeasuredBed],
+    scene: Scene,
     part: tuple[float, float],
     y_top: float,
-    scale: float,
-    cut_gaps: bool,
-    number: int,
-    of: int,
+    cut_gaps: bool = False,
+    number: int = 1,
+    of: int = 1,
 ) -> View:
-    """The view of a stretch whose upper edge lies at `y_top` on the page."""
+    """The view of a stretch of the section, with the outlines of its beds.
+
+    Parameters
+    ----------
+    part : base and top of the stretch, m
+    y_top : upper edge on the page, mm
+    number, of : which of how many sheets with a column this is
+    """
+    beds, scale = scene.beds, scene.scale
     low, high = part
     shown = tuple(item for item in beds if item.bed.top_m > low and item.bed.base_m < high)
     pieces: list[tuple[float, float, float, bool]] = []
@@ -111,7 +119,14 @@ def make_view(
     spans = tuple(
         (position.y(max(item.bed.base_m, low)), position.y(min(item.bed.top_m, high))) for item in shown
     )
-    return View(position, shown, spans, number, of)
+    outlines = {}
+    if scene.phi is not None:
+        outlines = {
+            item.index: bed_outline(item, span, position, scene.phi, scale, scene.style.texture)
+            for item, span in zip(shown, spans, strict=True)
+            if not item.bed.is_gap
+        }
+    return View(position, shown, spans, number, of, outlines)
 
 
 def _ordered(first: float, second: float) -> tuple[float, float]:

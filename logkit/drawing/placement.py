@@ -5,6 +5,7 @@ Knows positions and sizes only; what a label says and how its leader looks is up
 
 from __future__ import annotations
 
+import itertools
 from collections.abc import Sequence
 
 
@@ -32,7 +33,7 @@ def spread(
     if not wanted:
         return []
     offsets = [0.0]
-    for first, second in zip(heights, heights[1:], strict=False):
+    for first, second in itertools.pairwise(heights):
         offsets.append(offsets[-1] + (first + second) / 2 + gap)
     least = low + heights[0] / 2
     most = high - heights[-1] / 2 - offsets[-1]

@@ -5,6 +5,7 @@ from __future__ import annotations
 from functools import cache
 from importlib.util import find_spec
 from pathlib import Path
+from typing import Any
 
 from logkit.errors import LogkitError
 
@@ -60,7 +61,8 @@ def _compile(
     quoted = title.replace("\\", "\\\\").replace('"', '\\"')
     head = f'#set document(title: "{quoted}", date: none)\n' if title else "#set document(date: none)\n"
     files["main"] = (head + "\n".join(pages)).encode("utf-8")
-    result = typst.compile(
+    compile_document: Any = typst.compile  # its type hints do not know a dictionary of files
+    result = compile_document(
         files,
         format=kind,
         ppi=dots_per_inch,

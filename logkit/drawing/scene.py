@@ -6,19 +6,23 @@ every track reads; a `Tally` collects what was used (for the legend) and what ha
 
 from __future__ import annotations
 
+import itertools
 import zlib
 from bisect import bisect_right
 from collections import Counter
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field
 from math import log2
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 from logkit.drawing.axes import LogAxis, PhiAxis, PositionScale
 from logkit.drawing.shapes import Gradient
 from logkit.drawing.style import Style
-from logkit.model import Bed, Grading, Log, Package, PhaseEstimate
+from logkit.model import Bed, Grading, Log, Package, PhaseEstimate, Structure
 from logkit.vocabulary.terms import vocabulary
+
+if TYPE_CHECKING:
+    from logkit.drawing.outline import Outline
 
 UNKNOWN_PHI = 4.0
 """Width at which a bed without size and lithology is drawn, as an open dashed outline."""
@@ -69,7 +73,7 @@ class MeasuredBed:
     def phi_at(self, position_m: float) -> float:
         """Grain size at a position, phi."""
         knots = self.knots
-        for (low, a), (high, b) in zip(knots, knots[1:], strict=False):
+        for (low, a), (high, b) in itertools.pairwise(knots):
             if position_m <= high:
                 return a if high == low else a + (b - a) * max(0.0, position_m - low) / (high - low)
         return knots[-1][1]
@@ -115,7 +119,7 @@ class Scene:
     gradings: Mapping[str, Grading] = field(default_factory=dict)
     packages: tuple[Package, ...] = ()
     currents: tuple[Any, ...] = ()
-    azimuths: Mapping[int, tuple[tuple[float, str], ...]] = field(default_factory=dict)
+    azimuths: Mapping[int, tuple[float, str]] = field(default_factory=dict)
     curves: tuple[tuple[str, str, Sequence[float], Sequence[float]], ...] = ()
 
     @property
@@ -134,6 +138,7 @@ class View:
     beds : beds that show, upward
     spans : (y of base, y of top) of each of them as far as it is on this sheet, mm
     number, of : sheet number among the sheets with a column
+    outlines : outline of each real bed on the page, by the bed's index
     """
 
     position: PositionScale
@@ -141,6 +146,7 @@ class View:
     spans: tuple[tuple[float, float], ...]
     number: int = 1
     of: int = 1
+    outlines: Mapping[int, Outline] = field(default_factory=dict)
 
     def items(self) -> zip[tuple[MeasuredBed, tuple[float, float]]]:
         """Beds with their (y of base, y of top), upward."""
@@ -250,10 +256,7 @@ def _own_knots(bed: Bed) -> tuple[Knots, bool]:
         return ((bed.base_m, states[0][1]), *inner, (bed.top_m, states[-1][1])), True
     lithologies = vocabulary("lithologies")
     usual = lithologies[bed.lithology].size_mm if bed.lithology in lithologies else None
-    if usual:
-        phi = -0.5 * log2(usual[0] * usual[1])
-    else:
-        phi = UNKNOWN_PHI
+    phi = -0.5 * log2(usual[0] * usual[1]) if usual else UNKNOWN_PHI
     return ((bed.base_m, phi), (bed.top_m, phi)), False
 
 
@@ -288,7 +291,8 @@ def half_zone_m(bed: Bed, below: Bed) -> float:
 def _layers(bed: Bed, estimates: Sequence[PhaseEstimate]) -> tuple[tuple[Layer, ...], tuple[str, ...]]:
     """Filling structures with their extent, and the objects."""
     known = vocabulary("structures")
-    filling, objects = [], []
+    filling: list[Structure] = []
+    objects: list[Structure] = []
     for structure in bed.structures:
         group = known[structure.term].group if structure.term in known else ""
         (filling if group in FILLING_GROUPS else objects).append(structure)

@@ -1,12 +1,11 @@
 """Shapes to SVG text. The only module that knows SVG: attribute names, clip paths, gradients, rounding.
 
-Numbers are rounded to 0.01 mm and checked to be finite; user text goes through the XML serialiser, so markup in
-it stays text. Same shapes, same bytes.
+One unit is 0.01 mm, so that all coordinates are whole numbers; they are checked to be finite. User text goes through
+the XML serialiser, so markup in it stays text. Same shapes, same bytes.
 """
 
 from __future__ import annotations
 
-import math
 from collections.abc import Iterable
 from typing import Any
 from xml.etree import ElementTree
@@ -37,54 +36,72 @@ class _Tree(BaseElement):
         return self._root
 
 
-def number(value: float) -> str:
-    """A coordinate in mm, rounded to 0.01.
+def units(length: float) -> int:
+    """A length in mm as a whole number of the drawing's units, 0.01 mm.
 
     Raises
     ------
-    LogkitError : the value is not finite (a fault of the layout, never written to a file)
+    LogkitError : the length is not finite (a fault of the layout, never written to a file)
     """
-    if not math.isfinite(value):
+    try:
+        return round(length * 100)
+    except (ValueError, OverflowError):
         raise LogkitError(
             "The drawing holds a coordinate that is not a finite number.", "Please report this."
-        )
-    text = f"{value:.2f}".rstrip("0").rstrip(".")
-    return "0" if text in ("-0", "") else text
+        ) from None
 
 
 def path_data(segments: Iterable[Segment]) -> str:
-    """The `d` attribute of a path."""
+    """The `d` attribute of a path, written as steps from point to point because that is shortest.
+
+    Steps are differences of rounded positions, so that rounding does not add up.
+    """
     parts: list[str] = []
-    for command, values in segments:
-        parts.append(command)
-        for index, value in enumerate(values):
-            text = number(value)
-            parts.append(text if index == 0 or text[0] == "-" else " " + text)
+    x = y = x_start = y_start = 0
+    last = ""
+    try:
+        for command, values in segments:
+            if command == "Z":
+                parts.append("z")
+                x, y, last = x_start, y_start, "z"
+                continue
+            numbers = [round(value * 100) for value in values]
+            x_end, y_end = numbers[-2], numbers[-1]
+            if command == "L":
+                dx, dy = x_end - x, y_end - y
+                if dy == 0:
+                    parts.append(f"h{dx}")
+                    last = "h"
+                elif dx == 0:
+                    parts.append(f"v{dy}")
+                    last = "v"
+                else:
+                    lead = "l" if last != "l" else "" if dx < 0 else " "
+                    parts.append(f"{lead}{dx}{dy}" if dy < 0 else f"{lead}{dx} {dy}")
+                    last = "l"
+            elif command == "M":
+                parts.append(f"M{x_end} {y_end}" if not parts else f"m{x_end - x} {y_end - y}")
+                x_start, y_start, last = x_end, y_end, "m"
+            else:
+                steps = [n - (y if i % 2 else x) for i, n in enumerate(numbers)]
+                name = command.lower()
+                parts.append((name if last != name else " ") + " ".join(map(str, steps)).replace(" -", "-"))
+                last = name
+            x, y = x_end, y_end
+    except (ValueError, OverflowError):
+        units(float("nan"))
     return "".join(parts)
 
 
 def dots_data(points: tuple[tuple[float, float], ...]) -> str:
-    """Zero-length strokes at points, written as steps from dot to dot because that is shortest.
-
-    Coordinates are kept in hundredths of a millimetre, so that rounding does not add up.
-    """
+    """Zero-length strokes at points, as steps from dot to dot."""
     parts: list[str] = []
-    x_last = y_last = 0
-    for x, y in points:
-        x_now, y_now = round(x * 100), round(y * 100)
-        dx, dy = _hundredths(x_now - x_last), _hundredths(y_now - y_last)
-        parts.append(f"m{dx}{dy if dy[0] == '-' else ' ' + dy}h0")
-        x_last, y_last = x_now, y_now
+    x = y = 0
+    for x_end, y_end in ((units(a), units(b)) for a, b in points):
+        dx, dy = x_end - x, y_end - y
+        parts.append(f"m{dx}{dy}h0" if dy < 0 else f"m{dx} {dy}h0")
+        x, y = x_end, y_end
     return "".join(parts)
-
-
-def _hundredths(value: int) -> str:
-    sign, value = ("-", -value) if value < 0 else ("", value)
-    whole, rest = divmod(value, 100)
-    if not rest:
-        return f"{sign}{whole}"
-    decimals = f"{rest:02d}".rstrip("0")
-    return f"{sign}{whole or ''}.{decimals}"
 
 
 def sheet_svg(sheet: Sheet) -> str:
@@ -96,11 +113,14 @@ def sheet_svg(sheet: Sheet) -> str:
 
     Returns
     -------
-    the document, sizes in mm with a viewBox in mm, text as text
+    the document, page size in mm with a viewBox in 0.01 mm, text as text
     """
-    width, height = number(sheet.width), number(sheet.height)
+    width, height = str(units(sheet.width)), str(units(sheet.height))
     drawing = svgwrite.Drawing(
-        size=(f"{width}mm", f"{height}mm"), viewBox=f"0 0 {width} {height}", debug=False, profile="full"
+        size=(f"{sheet.width:.6g}mm", f"{sheet.height:.6g}mm"),
+        viewBox=f"0 0 {width} {height}",
+        debug=False,
+        profile="full",
     )
     drawing.attribs.update({"font-family": FONT, "role": "img"})
     drawing.elements.clear()  # the empty <defs> svgwrite starts with
@@ -137,12 +157,12 @@ class _Writer:
             if shape.points:
                 _sub(parent, "path", {
                     "d": dots_data(shape.points), "stroke": shape.colour,
-                    "stroke-width": number(shape.diameter), "stroke-linecap": "round", "fill": "none",
+                    "stroke-width": str(units(shape.diameter)), "stroke-linecap": "round", "fill": "none",
                 })  # fmt: skip
         elif isinstance(shape, Circle):
             x, y = shape.centre
             _sub(parent, "circle", {
-                "cx": number(x), "cy": number(y), "r": number(shape.radius), **self._paint(shape.paint)
+                "cx": str(units(x)), "cy": str(units(y)), "r": str(units(shape.radius)), **self._paint(shape.paint)
             })  # fmt: skip
         else:
             self._group(parent, shape, shared or {})
@@ -178,12 +198,12 @@ class _Writer:
 
     def _text(self, parent: _Element, text: Text, shared: dict[str, str]) -> None:
         x, y = text.at
-        attributes = {"x": number(x), "y": number(y)}
+        attributes = {"x": str(units(x)), "y": str(units(y))}
         for name, value in _full_style(text).items():
             if shared.get(name, _PLAIN.get(name)) != value:
                 attributes[name] = value
         if text.turn:
-            attributes["transform"] = f"rotate({number(text.turn)} {number(x)} {number(y)})"
+            attributes["transform"] = f"rotate({text.turn:g} {units(x)} {units(y)})"
         _sub(parent, "text", attributes).text = xml_text(text.text)
 
     def _paint(self, paint: Any) -> dict[str, str]:
@@ -193,15 +213,15 @@ class _Writer:
         attributes = {"fill": fill}
         if paint.stroke:
             attributes["stroke"] = paint.stroke
-            attributes["stroke-width"] = number(paint.width) if paint.width >= 0.1 else f"{paint.width:.3g}"
+            attributes["stroke-width"] = f"{paint.width * 100:.3g}"
             if paint.dash:
-                attributes["stroke-dasharray"] = " ".join(number(v) for v in paint.dash)
+                attributes["stroke-dasharray"] = " ".join(f"{v * 100:.3g}" for v in paint.dash)
             if paint.cap == "round":
                 attributes["stroke-linecap"] = "round"
             if paint.join == "round":
                 attributes["stroke-linejoin"] = "round"
         if paint.opacity != 1.0:
-            attributes["opacity"] = number(paint.opacity)
+            attributes["opacity"] = f"{paint.opacity:.3g}"
         return attributes
 
     def gradient(self, parent: _Element, name: str, stops: tuple[tuple[float, str], ...]) -> None:
@@ -209,7 +229,7 @@ class _Writer:
         first, last = stops[0][0], stops[-1][0]
         element = _sub(parent, "linearGradient", {
             "id": name, "gradientUnits": "userSpaceOnUse", "x1": "0", "x2": "0",
-            "y1": number(first), "y2": number(last),
+            "y1": str(units(first)), "y2": str(units(last)),
         })  # fmt: skip
         for y, colour in stops:
             share = (y - first) / (last - first) if last > first else 0.0
@@ -222,7 +242,7 @@ _PLAIN = {"text-anchor": "start", "font-weight": "normal", "font-style": "normal
 
 def _full_style(text: Text) -> dict[str, str]:
     return {
-        "font-size": f"{text.size * MM_PER_POINT:.3f}".rstrip("0").rstrip("."),
+        "font-size": f"{text.size * MM_PER_POINT * 100:.4g}",
         "fill": text.colour,
         "text-anchor": text.anchor,
         "font-weight": "bold" if text.bold else "normal",

@@ -10,8 +10,10 @@ LEAST_COLUMN_MM = 58.0
 NAME_MM = 10.0
 
 
-def note_sheets(scene: Scene, tally: Tally, width: float, page_height: float | None) -> list[list[Shape]]:
-    """Shapes of each sheet of the note table; none when every note stands beside the column."""
+def note_sheets(
+    scene: Scene, tally: Tally, width: float, page_height: float | None
+) -> list[tuple[list[Shape], float]]:
+    """Shapes and lower edge, mm, of each sheet of the note table; none when every note stands beside the column."""
     if not tally.moved_notes:
         return []
     style = scene.style
@@ -50,4 +52,4 @@ def note_sheets(scene: Scene, tally: Tally, width: float, page_height: float | N
             sheets[-1].append(Group(tuple(drawn)))
             y += line
         y += style.notes.gap
-    return sheets
+    return [(shapes, bottom) for shapes in sheets]

@@ -44,7 +44,7 @@ def title_block(scene: Scene, width: float, scale_words: str) -> list[Shape]:
     free = right - left - widest - 4
     title = shorten(
         header.title or scene.log.name,
-        right - left - (widest + 4 if free < 40 else widest + 4),
+        free,
         fonts.title,
         True,
     )
@@ -123,16 +123,16 @@ def summary(scene: Scene) -> str:
     return ". ".join(words) + "."
 
 
-def summary_block(scene: Scene, width: float) -> list[Shape]:
+def summary_block(scene: Scene, words: str, width: float) -> list[Shape]:
     """The summary line, broken into two where the page is narrow."""
     style = scene.style
     size = style.fonts.subtitle
-    lines = wrap(summary(scene), width - 2 * style.page.margin, size)
+    lines = wrap(words, width - 2 * style.page.margin, size)
     pitch = 1.25 * size * MM_PER_POINT
     room = max(1, int((style.page.heads - style.page.summary) / pitch))
     if len(lines) > room:
         size = style.fonts.label
-        lines = wrap(summary(scene), width - 2 * style.page.margin, size)
+        lines = wrap(words, width - 2 * style.page.margin, size)
         pitch = 1.2 * size * MM_PER_POINT
     return [
         Text((style.page.margin, style.page.summary + number * pitch), line, size, style.colours.ink2)
@@ -203,10 +203,8 @@ def closing_height(scene: Scene, lines: list[str]) -> float:
     return 4.2 + len(lines) * 1.25 * scene.style.fonts.caution * MM_PER_POINT
 
 
-def closing_block(
-    scene: Scene, lines: list[str], y: float, width: float, sheet: int, sheets: int
-) -> list[Shape]:
-    """Rule, caution lines and the sheet number; `y` is the upper edge."""
+def closing_block(scene: Scene, lines: list[str], y: float, width: float) -> list[Shape]:
+    """Rule and caution lines; `y` is the upper edge."""
     style = scene.style
     page, size, colours = style.page, style.fonts.caution, style.colours
     pitch = 1.25 * size * MM_PER_POINT

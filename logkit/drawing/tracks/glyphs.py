@@ -7,13 +7,11 @@ from logkit.drawing.scene import Scene, Tally, View
 from logkit.drawing.shapes import Group, Shape
 
 GLYPH_WIDTH, GLYPH_HEIGHT = 4.6, 2.6
-LONE = "massive"
-"""Glyph of a bed in which a structure was looked for and none seen."""
 
 
 def draw_glyphs(scene: Scene, view: View, tally: Tally) -> list[Shape]:
     """One glyph for each layer, those of objects above; left out where the bed is too thin."""
-    column, style = scene.columns["glyphs"], scene.style
+    column = scene.columns["glyphs"]
     shapes: list[Shape] = []
     for item, span in view.items():
         if item.bed.is_gap:

@@ -2,12 +2,13 @@
 
 from __future__ import annotations
 
+from bisect import bisect_right
+
 from logkit.drawing.metrics import MM_PER_POINT, clean, width_mm
 from logkit.drawing.outline import Outline
 from logkit.drawing.placement import keep_clear
 from logkit.drawing.scene import Scene, Tally, View
 from logkit.drawing.shapes import Group, Paint, Path, Segment, Shape, Text, polyline
-from logkit.drawing.tracks.texture import outlines_of
 
 PITCH_MM = 2.6
 
@@ -41,7 +42,7 @@ def draw(scene: Scene, view: View, tally: Tally) -> list[Shape]:
 
 def placed_labels(scene: Scene, view: View) -> dict[int, tuple[float, float, str, bool]]:
     """(x, y, text, is marker) of the labels that find room, by the bed's index."""
-    outlines = outlines_of(scene, view)
+    outlines = view.outlines
     candidates = []
     for item, (y_base, y_top) in reversed(list(view.items())):
         bed = item.bed
@@ -51,18 +52,21 @@ def placed_labels(scene: Scene, view: View) -> dict[int, tuple[float, float, str
     kept = keep_clear([c[1] for c in candidates], [PITCH_MM] * len(candidates))
     right = scene.columns["texture"].x1
     reach = sorted(outlines.values(), key=lambda outline: outline.y_top)
+    tops = [outline.y_top for outline in reach]
     placed = {}
     for number in kept:
         index, y, text, marker = candidates[number]
         own = outlines[index]
-        x = max(own.x_at(y), _widest(reach, y)) + 0.4
+        x = max(own.x_at(y), _widest(reach, tops, y)) + 0.4
         width = width_mm(text, scene.style.fonts.label, marker)
         if x + 2.3 + width <= right + 1.0 and own.x_at(y) + 3.5 >= x:
             placed[index] = (x, y, text, marker)
     return placed
 
 
-def _widest(outlines: list[Outline], y: float) -> float:
-    """Widest reach of the profiles that a label at this height could meet."""
+def _widest(outlines: list[Outline], tops: list[float], y: float) -> float:
+    """Widest reach of the profiles that a label at this height could meet; outlines run downward."""
     low, high = y - PITCH_MM / 2, y + PITCH_MM / 2
-    return max((o.x0 + o.width for o in outlines if o.y_top < high and o.y_base > low), default=0.0)
+    first = max(0, bisect_right(tops, low) - 1)
+    last = bisect_right(tops, high)
+    return max((o.x0 + o.width for o in outlines[first:last] if o.y_base > low), default=0.0)

@@ -71,7 +71,8 @@ def draw(scene: Scene, view: View, tally: Tally) -> list[Shape]:
     """Place as many notes as fit; the others, lowest priority and thinnest bed first, go to the note table."""
     style = scene.style
     labelled = set(placed_labels(scene, view)) if "texture" in scene.columns else set()
-    notes = _collect(scene, view, labelled)
+    name_mm = name_width(scene)
+    notes = _collect(scene, view, labelled, name_mm)
     if not notes:
         return []
     low, high = view.position.y_top - 2.0, view.position.y_base + 2.0
@@ -87,7 +88,7 @@ def draw(scene: Scene, view: View, tally: Tally) -> list[Shape]:
     shapes: list[Shape] = []
     leaders: list[Segment] = []
     for note, y in zip(kept, centres or [], strict=True):
-        shapes.extend(_note(scene, note, y, line, leaders))
+        shapes.extend(_note(scene, note, y, line, name_mm, leaders))
     if leaders:
         shapes.append(Path(tuple(leaders), Paint(stroke=style.colours.ink2, width=style.lines.hairline)))
     if moved:
@@ -95,12 +96,13 @@ def draw(scene: Scene, view: View, tally: Tally) -> list[Shape]:
     return shapes
 
 
-def _collect(scene: Scene, view: View, labelled: set[int]) -> list[Note]:
+def _collect(scene: Scene, view: View, labelled: set[int], name_mm: float) -> list[Note]:
     """Notes of a sheet from the top down; a bed that goes on over the sheet's edge keeps its note where it begins."""
     style = scene.style
     size = style.fonts.note
     line = style.notes.line_height * size * MM_PER_POINT
-    width = _text_width(scene)
+    column = scene.columns["notes"]
+    width = column.x1 - column.x0 - BRACKET_TO_TEXT - name_mm - 1.6
     found = []
     for item, span in reversed(list(view.items())):
         if not view.shows(item.bed.base_m) and item is not view.beds[0]:
@@ -113,11 +115,6 @@ def _collect(scene: Scene, view: View, labelled: set[int]) -> list[Note]:
         lines = wrap(text, width, size)
         found.append(Note(item, text, priority, lines, span, len(lines) * line))
     return found
-
-
-def _text_width(scene: Scene) -> float:
-    column = scene.columns["notes"]
-    return column.x1 - column.x0 - BRACKET_TO_TEXT - name_width(scene) - 1.6
 
 
 def name_width(scene: Scene) -> float:
@@ -142,7 +139,9 @@ def _choose(notes: list[Note], room: float, gap: float) -> list[Note]:
     return [note for note in notes if id(note) in kept]
 
 
-def _note(scene: Scene, note: Note, y: float, line: float, leaders: list[Segment]) -> list[Shape]:
+def _note(
+    scene: Scene, note: Note, y: float, line: float, name_mm: float, leaders: list[Segment]
+) -> list[Shape]:
     style, column = scene.style, scene.columns["notes"]
     size = style.fonts.note
     x = column.x0
@@ -152,11 +151,11 @@ def _note(scene: Scene, note: Note, y: float, line: float, leaders: list[Segment
     leaders.extend(polyline(((x, y_top + inset), (x, y_base - inset))))
     first = y - note.height / 2 + 0.5 * line
     leaders.extend(polyline(((x, middle), (x + 0.7, middle), (x + 1.6, first), (x + 2.5, first))))
-    name_x = x + BRACKET_TO_TEXT + name_width(scene)
+    name_x = x + BRACKET_TO_TEXT + name_mm
     text_x = name_x + 1.6
     drop = 0.36 * size * MM_PER_POINT
     strong = style.colours.conflict if note.priority == 3 else style.colours.ink
-    name = shorten(note.item.bed.name, name_width(scene), size, True)
+    name = shorten(note.item.bed.name, name_mm, size, True)
     texts: list[Shape] = [Text((name_x, first + drop), name, size, strong, bold=True, anchor="end")]
     words: list[Shape] = []
     for number, words_line in enumerate(note.lines):

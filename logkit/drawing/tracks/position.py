@@ -106,7 +106,7 @@ def _subdivisions(major: float, rate: float) -> tuple[float, float]:
     """Steps of middle and small ticks: at least 1.4 mm apart on paper."""
     lead = round(major / 10 ** math.floor(math.log10(major) + 1e-9))
     minor = major / 2 if lead in (1, 2) else major / 5
-    least = major / 10 if lead in (1, 2) else major / 10
+    least = major / 10
     if least * rate < 1.4:
         least = minor
     if minor * rate < 1.4:

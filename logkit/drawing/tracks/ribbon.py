@@ -173,7 +173,6 @@ def _bound(
     scene: Scene, axis: LogAxis, estimate: PhaseEstimate, span: tuple[float, float], tally: Tally
 ) -> list[Shape]:
     """A bar at the limit and an arrow to the side on which the velocity lies."""
-    style = scene.style
     limit = estimate.limit_velocity_m_s
     if limit is None:
         return []
@@ -296,7 +295,8 @@ def _reason(
         tally.marks.add("short dash")
         dash = polyline(((column.x0 + 0.8, middle), (column.x0 + 2.6, middle)))
         return [Path(dash, Paint(stroke=style.colours.ink2, width=style.lines.link))]
-    left, right = column.x0 + 0.8, column.x1 - 0.2
+    # the depth column is blank as well: a reason may run on into it
+    left, right = column.x0 + 0.8, scene.columns.get("depth", column).x1 - 0.2
     crossed = _crossed(dotted, middle)
     slots = [(left, right)]
     if crossed is not None:

@@ -8,7 +8,7 @@ from __future__ import annotations
 from logkit.drawing.ground import LineSegment
 from logkit.drawing.metrics import shorten
 from logkit.drawing.motifs import structure_lines
-from logkit.drawing.outline import Outline, base_path, bed_outline
+from logkit.drawing.outline import Outline, base_path
 from logkit.drawing.palette import fill
 from logkit.drawing.scene import MeasuredBed, Scene, Tally, View, structure_label
 from logkit.drawing.shapes import Gradient, Group, Paint, Path, Segment, Shape, Text, polyline
@@ -22,7 +22,7 @@ DASH = (1.2, 0.8)
 def draw(scene: Scene, view: View, tally: Tally) -> list[Shape]:
     """Beds from the lowest to the highest, so that a scoured base covers what it cut into."""
     style = scene.style
-    outlines = outlines_of(scene, view)
+    outlines = view.outlines
     beds: list[Shape] = []
     breaks: list[Segment] = []
     for place, (item, span) in enumerate(view.items()):
@@ -42,17 +42,6 @@ def draw(scene: Scene, view: View, tally: Tally) -> list[Shape]:
     shapes.append(Group(tuple(beds), id="beds", layer="beds"))
     shapes.extend(_spine(scene, view))
     return shapes
-
-
-def outlines_of(scene: Scene, view: View) -> dict[int, Outline]:
-    """Outlines of the real beds on a sheet, by index."""
-    if scene.phi is None:
-        return {}
-    return {
-        item.index: bed_outline(item, span, view, scene.phi, scene.scale, scene.style.texture)
-        for item, span in view.items()
-        if not item.bed.is_gap
-    }
 
 
 def bed_words(item: MeasuredBed) -> str:
