@@ -12,7 +12,7 @@ from logkit.errors import nearest
 from logkit.vocabulary.ambiguity import Ambiguity, ambiguities
 from logkit.vocabulary.loading import load_toml
 from logkit.vocabulary.terms import Term, vocabulary
-from logkit.vocabulary.words import normal, tokens, word
+from logkit.vocabulary.words import Token, normal, tokens, word
 
 
 @dataclass(frozen=True, slots=True)
@@ -21,7 +21,7 @@ class Piece:
 
     Attributes
     ----------
-    written : the words as written, joined by one space
+    written : the words as written
     vocabulary, term : what it stands for; "" and None for words that are not known
     ambiguity : its readings when it means more than one thing
     filler : True for a word that changes nothing ("with", "some")
@@ -54,13 +54,12 @@ class Lexicon:
         at = 0
         while at < len(parts):
             for length in range(min(self._longest, len(parts) - at), 0, -1):
-                piece = self._known(parts[at : at + length])
+                piece = self._known(parts[at : at + length], text)
                 if piece:
                     break
             else:
                 length = 1
-                written, form = parts[at]
-                piece = Piece(written, filler=all(w in fillers() for w in form))
+                piece = Piece(parts[at].written, filler=all(w in fillers() for w in parts[at].form))
             pieces.append(piece)
             at += length
         return tuple(pieces)
@@ -70,10 +69,10 @@ class Lexicon:
         match = nearest(normal(text), self._index)
         return self._index[match][1].label if match else None
 
-    def _known(self, parts: tuple[tuple[str, tuple[str, ...]], ...]) -> Piece | None:
-        written = " ".join(part for part, _ in parts)
-        doubtful = self._ambiguous.get(written.casefold())
-        key = " ".join(w for _, form in parts for w in form)
+    def _known(self, parts: tuple[Token, ...], text: str) -> Piece | None:
+        written = text[parts[0].start : parts[-1].end]
+        doubtful = self._ambiguous.get(" ".join(part.written for part in parts).casefold())
+        key = " ".join(w for part in parts for w in part.form)
         name, term = self._index.get(key, ("", None))
         if doubtful:
             if self.names[0] not in doubtful.clear_in:

@@ -175,7 +175,7 @@ def _term(id: str, entry: Any, extra: tuple[str, ...], file: DataFile) -> Term:
     for name in ("label", "source"):
         if not entry.get(name):
             raise file.fail(f"{id}: {name} is missing.", id)
-    values = {k: tuple(v) if isinstance(v, list) else v for k, v in entry.items()}
+    values: dict[str, Any] = {k: tuple(v) if isinstance(v, list) else v for k, v in entry.items()}
     return Term(id=id, **values)
 
 

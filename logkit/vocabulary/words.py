@@ -8,10 +8,20 @@ from __future__ import annotations
 
 import re
 from functools import cache, lru_cache
+from typing import NamedTuple
 
 from logkit.vocabulary.loading import load_toml
 
 _PARTS = re.compile(r"//|[^\W_]+(?:'[^\W_]+)?|[&?%+]", re.UNICODE)
+
+
+class Token(NamedTuple):
+    """A word as written, the words it is compared as, and its place in the text."""
+
+    written: str
+    form: tuple[str, ...]
+    start: int
+    end: int
 
 
 @cache
@@ -48,20 +58,15 @@ def _singular(text: str) -> str:
 
 
 @lru_cache(maxsize=16384)
-def tokens(text: str) -> tuple[tuple[str, tuple[str, ...]], ...]:
-    """Written words of a text, each with its compared form.
-
-    Returns
-    -------
-    Pairs (word as written, compared words), in order.
-    """
-    return tuple((part, word(part)) for part in _PARTS.findall(text))
+def tokens(text: str) -> tuple[Token, ...]:
+    """Written words of a text, each with its compared form and its place, in order."""
+    return tuple(Token(m[0], word(m[0]), m.start(), m.end()) for m in _PARTS.finditer(text))
 
 
 @lru_cache(maxsize=16384)
 def normal(text: str) -> str:
     """The compared form of a phrase: words joined by one space, `and` and marks left out."""
-    return " ".join(w for _, form in tokens(text) for w in form if w not in _LEFT_OUT)
+    return " ".join(w for token in tokens(text) for w in token.form if w not in _LEFT_OUT)
 
 
 _LEFT_OUT = frozenset("?%+")

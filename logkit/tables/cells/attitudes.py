@@ -14,8 +14,8 @@ from logkit.tables.cells.dates import date_remark
 from logkit.tables.cells.lengths import number
 from logkit.tables.cells.reading import CACHE_SIZE, Reading, Remark, clean, error, question, quoted
 
-COMPASS = {name: index * 22.5 for index, name in enumerate(
-    "N NNE NE ENE E ESE SE SSE S SSW SW WSW W WNW NW NNW".split())}  # fmt: skip
+COMPASS = {name: index * 22.5 for index, name in enumerate((
+    "N", "NNE", "NE", "ENE", "E", "ESE", "SE", "SSE", "S", "SSW", "SW", "WSW", "W", "WNW", "NW", "NNW"))}  # fmt: skip
 """Compass point -> degrees."""
 
 _POINT = "|".join(sorted(COMPASS, key=lambda p: -len(p)))
@@ -113,7 +113,12 @@ def _read(match: re.Match[str], azimuth_second: bool | None, remarks: list[Remar
 
 
 def _checked(
-    nature: Nature, azimuth: str, dip: str | None, match: re.Match[str], remarks: list[Remark], sure: bool = True
+    nature: Nature,
+    azimuth: str,
+    dip: str | None,
+    match: re.Match[str],
+    remarks: list[Remark],
+    sure: bool = True,
 ) -> list[Attitude]:
     bearing, angle = number(azimuth)[0], number(dip)[0] if dip else None
     if bearing is None or not 0 <= bearing <= 360:
@@ -124,7 +129,9 @@ def _checked(
         return []
     if dip is not None and (angle is None or not 0 <= angle <= 90):
         remarks.append(
-            error("currents.dip", f"{quoted(match[0])}: a dip lies between 0 and 90 degrees", "correct the dip")
+            error(
+                "currents.dip", f"{quoted(match[0])}: a dip lies between 0 and 90 degrees", "correct the dip"
+            )
         )
         return []
     return [Attitude(nature, bearing % 360, angle, match.start(), match.end(), sure)]
@@ -175,7 +182,9 @@ def _strike(match: re.Match[str], remarks: list[Remark]) -> list[Attitude]:
             remarks.append(error("currents.azimuth", f"{quoted(match[0])}: a quadrant bearing ends at 90 degrees",
                                  "correct the bearing"))  # fmt: skip
             return []
-        strike = {"NE": angle, "NW": -angle, "SE": 180 - angle, "SW": 180 + angle}[match["q1"] + match["q2"]] % 360
+        strike = {"NE": angle, "NW": -angle, "SE": 180 - angle, "SW": 180 + angle}[
+            match["q1"] + match["q2"]
+        ] % 360
         if not match["qdip"]:
             return [Attitude("azimuth", strike, None, match.start(), match.end())]
         dip, side = match["qdip"], match["qdir"]

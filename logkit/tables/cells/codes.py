@@ -80,7 +80,9 @@ def _divisions(written: str, letters: str, doubt: bool) -> CodeWord:
     structures = tuple(s for code in codes for s in _structures(code, written, sure=not doubt))
     remarks: tuple[Remark, ...] = ()
     if len(chosen) > 1:
-        remarks = (note("codes.divisions", f"{written!r}: {len(chosen)} divisions without their thicknesses"),)
+        remarks = (
+            note("codes.divisions", f"{written!r}: {len(chosen)} divisions without their thicknesses"),
+        )
     if chosen != sorted(chosen):
         remarks = (
             question("codes.order", f"the divisions of {written!r} are not in their usual order upward",

@@ -18,17 +18,29 @@ from logkit.vocabulary import lexicon, vocabulary
 _NUM = r"\d+(?:[.,]\d+)?|[.,]\d+"
 _UNIT = r"mm|cm|metres?|m|ft|feet|inch(?:es)?|in|'|\""
 _RELIEF = re.compile(
-    rf"\b(?:relief|rel\.?|scoured?|scours?|ero\w*|incised|cuts?(?:\s+down)?|amplitude|depth)\s*(?:of|to|up to|depth|:|=|~|by)?\s*"
+    rf"\b(?:relief|rel\.?|scoured?|scours?|ero\w*|incised|cuts?(?:\s+down)?|amplitude|depth)\s*"
+    rf"(?:of|to|up to|depth|:|=|~|by)?\s*"
     rf"(?:(?:{_NUM})\s*-\s*)?(?P<value>{_NUM})\s*(?P<unit>{_UNIT})?(?![A-Za-z])",
     re.I,
 )
-_AFTER = re.compile(rf"(?P<value>{_NUM})\s*(?P<unit>{_UNIT})?\s*(?:of\s+)?(?P<word>relief|scour|zone|transition)\b", re.I)
+_AFTER = re.compile(
+    rf"(?P<value>{_NUM})\s*(?P<unit>{_UNIT})?\s*(?:of\s+)?(?P<word>relief|scour|zone|transition)\b", re.I
+)
 _ZONE = re.compile(
-    rf"\b(?:over|across|within|zone|grad\w*|transition\w*)\s*(?:of|:|=|~|over)?\s*(?P<value>{_NUM})\s*(?P<unit>{_UNIT})?(?![A-Za-z])",
+    rf"\b(?:over|across|within|zone|grad\w*|transition\w*)\s*(?:of|:|=|~|over)?\s*"
+    rf"(?P<value>{_NUM})\s*(?P<unit>{_UNIT})?(?![A-Za-z])",
     re.I,
 )
+_MEASURE_WORDS = frozenset(
+    ("relief", "rel", "over", "across", "within", "zone", "amplitude", "depth", "down", "up", "of")
+)
 _PRECEDENCE = ("faulted", "erosive", "loaded", "gradational", "undulose", "sharp", "not_seen", "unknown")
-_STRUCTURE_KIND = {"load_casts": "loaded", "flames": "loaded", "ball_and_pillow": "loaded", "scour_fill": "erosive"}
+_STRUCTURE_KIND = {
+    "load_casts": "loaded",
+    "flames": "loaded",
+    "ball_and_pillow": "loaded",
+    "scour_fill": "erosive",
+}
 
 
 @dataclass(frozen=True, slots=True)
@@ -72,7 +84,7 @@ def read_contact_cell(text: str, unit: str | None = None) -> Reading[ContactCell
     remarks.extend(words.remarks)
     contact = _contact(words, relief, zone, remarks)
     structures = _structures(words, currents)
-    left = unread(words.unknown)
+    left = unread(w for w in words.unknown if w.casefold() not in _MEASURE_WORDS)
     if contact is None and not structures and not currents:
         near = vocabulary("contacts").nearest(plain)
         labels = tuple(term.label for term in vocabulary("contacts").values())
@@ -87,9 +99,7 @@ def read_contact_cell(text: str, unit: str | None = None) -> Reading[ContactCell
     return Reading(ContactCell(contact, currents, structures), tuple(remarks))
 
 
-def _measures(
-    text: str, unit: str | None, remarks: list[Remark]
-) -> tuple[float | None, float | None, str]:
+def _measures(text: str, unit: str | None, remarks: list[Remark]) -> tuple[float | None, float | None, str]:
     relief = zone = None
     match = _AFTER.search(text)
     if match:

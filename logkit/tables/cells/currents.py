@@ -76,7 +76,9 @@ def take_currents(text: str, hint: str, remarks: list[Remark]) -> tuple[str, tup
     found: list[CurrentReading] = []
     for match in reversed(list(_NAMED_BEARING.finditer(text))):
         attitudes = find_attitudes(match["bearings"], remarks)
-        found[:0] = _named(match[0], _shifted(attitudes, match.start("bearings") - match.start()), hint, remarks)
+        found[:0] = _named(
+            match[0], _shifted(attitudes, match.start("bearings") - match.start()), hint, remarks
+        )
         text = f"{text[: match.start('bearings')]} {text[match.end('bearings') :]}"
     attitudes = find_attitudes(text, remarks, pairs_only=True)
     for attitude in reversed(attitudes):
@@ -88,9 +90,7 @@ def take_currents(text: str, hint: str, remarks: list[Remark]) -> tuple[str, tup
 
 
 def _shifted(attitudes: list[Attitude], by: int) -> list[Attitude]:
-    return [
-        Attitude(a.nature, a.azimuth_deg, a.dip_deg, a.start + by, a.end + by, a.sure) for a in attitudes
-    ]
+    return [Attitude(a.nature, a.azimuth_deg, a.dip_deg, a.start + by, a.end + by, a.sure) for a in attitudes]
 
 
 def _named(
@@ -114,7 +114,11 @@ def _named(
                 elif any(c.isalpha() for c in piece.written) and piece.written.upper() not in COMPASS:
                     unknown.append(piece.written)
         reversed_sense = bool(_FROM.search(before))
-        unknown = [w for w in unknown if w.casefold() not in ("from", "axi", "axis", "axes", "axial", "line", "trend")]
+        unknown = [
+            w
+            for w in unknown
+            if w.casefold() not in ("from", "axi", "axis", "axes", "axial", "line", "trend")
+        ]
         after = text[attitude.end : attitude.end + 1]
         reading = _reading(attitude, current, text, bool(_AXIS.search(before)), not doubt and after != "?")
         readings.append(reading)

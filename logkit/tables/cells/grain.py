@@ -45,18 +45,21 @@ _FINING = re.compile(
     r"\b(?:fining|fines)[\s-]*up(?:wards?)?\b|\bfining\b|\bnormal(?:ly)? grad(?:ed|ing)\b", re.I
 )
 _COARSENING = re.compile(
-    r"\b(?:coarsening|coarsens)[\s-]*up(?:wards?)?\b|\bcoarsening\b|\b(?:inverse(?:ly)?|reverse(?:ly)?) grad(?:ed|ing)\b",
+    r"\b(?:coarsening|coarsens)[\s-]*up(?:wards?)?\b|\bcoarsening\b"
+    r"|\b(?:inverse(?:ly)?|reverse(?:ly)?) grad(?:ed|ing)\b",
     re.I,
 )
 _BASE_TOP = (
     re.compile(r"^(?:at\s+)?base[:\s]+(?P<base>.+?)[\s,;]+(?:at\s+)?top[:\s]+(?P<top>.+)$", re.I),
     re.compile(
-        r"^(?P<base>.+?)\s*\(?\s*(?:at\s+)?(?:the\s+)?base\s*\)?[\s,;]+(?P<top>.+?)\s*\(?\s*(?:at\s+)?(?:the\s+)?top\s*\)?$",
+        r"^(?P<base>.+?)\s*\(?\s*(?:at\s+)?(?:the\s+)?base\s*\)?[\s,;]+"
+        r"(?P<top>.+?)\s*\(?\s*(?:at\s+)?(?:the\s+)?top\s*\)?$",
         re.I,
-    ),  # fmt: skip
+    ),
 )
 _SORTING = re.compile(
-    r"(?<!\w)(?P<word>(?:(?:extremely|ext|very|vry|v|moderately|moderate|mod|m|mw|poorly|poor|p|well|w|vw|vp|ep|vpoorly|vwell)"
+    r"(?<!\w)(?P<word>(?:(?:extremely|ext|very|vry|v|moderately|moderate|mod|m|mw|poorly|poor|p"
+    r"|well|w|vw|vp|ep|vpoorly|vwell)"
     r"[\s.\-]*){1,3})(?:srtd|srt|sorted|sorting|std|sort)\b\.?",
     re.I,
 )

@@ -13,13 +13,18 @@ _NUM = r"(?:\d+(?:\.\d+)?|\.\d+)"
 _UNIT = r"mm|cm|m|µm|um|in"
 _LARGEST = re.compile(
     rf"""(?<!\w)(?P<word>MPS|D\s?max|max(?:imum)?\.?(?:\s+(?:clasts?|size|grain\s*size|particle\s*size))?
-        |largest(?:\s+clasts?)?|(?:clasts?|pbls?|pebbles?|cobbles?|cbls?)\s+(?:up\s+)?to|up\s+to(?=\s*~?\s*[\d.]+\s*(?:mm|cm|m)\b))
+        |largest(?:\s+clasts?)?|(?:clasts?|pbls?|pebbles?|cobbles?|cbls?)\s+(?:up\s+)?to
+        |up\s+to(?=\s*~?\s*[\d.]+\s*(?:mm|cm|m)\b))
         \s*(?:\(?\s*(?:n\s*=\s*)?(?P<n>5|10)\s*\)\s*)?[:=~≤<]*\s*
         (?P<numbers>{_NUM}(?:\s*[,;/&+x]\s*{_NUM}|\s+{_NUM})*)\s*(?P<unit>{_UNIT})?(?![A-Za-z0-9])
         (?:\s*\(?(?P<axis>[abc])[\s-]?ax(?:is|es)?\)?)?""",
     re.X | re.I,
-)  # fmt: skip
-_MEDIAN = re.compile(rf"(?<!\w)D\s?_?50\s*[:=~≈]*\s*(?P<number>\d+(?:[.,]\d+)?|\.\d+)\s*(?P<unit>{_UNIT}|phi|φ)?(?![A-Za-z0-9])", re.I)  # fmt: skip
+)
+_MEDIAN = re.compile(
+    rf"(?<!\w)D\s?_?50\s*[:=~≈]*\s*(?P<number>\d+(?:[.,]\d+)?|\.\d+)"
+    rf"\s*(?P<unit>{_UNIT}|phi|φ)?(?![A-Za-z0-9])",
+    re.I,
+)
 _SPLIT = re.compile(r"\s*[,;/&+x]\s*|\s+")
 
 

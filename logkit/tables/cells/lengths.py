@@ -21,7 +21,8 @@ UNIT_WORDS: dict[str, str] = {
     "centimetre": "cm", "centimetres": "cm", "centimeter": "cm", "centimeters": "cm", "mm": "mm", "mms": "mm",
     "millimetre": "mm", "millimetres": "mm", "millimeter": "mm", "millimeters": "mm", "µm": "µm", "um": "µm",
     "micron": "µm", "microns": "µm", "micrometre": "µm", "micrometres": "µm", "micrometer": "µm",
-    "micrometers": "µm", "mu": "µm", "km": "km", "ft": "ft", "feet": "ft", "foot": "ft", "'": "ft", "in": "in", "ins": "in",
+    "micrometers": "µm", "mu": "µm", "km": "km", "ft": "ft", "feet": "ft", "foot": "ft", "'": "ft",
+    "in": "in", "ins": "in",
     "inch": "in", "inches": "in", '"': "in", "''": "in",
 }  # fmt: skip
 """Words for a length unit -> symbol in `logkit.units.METRES`."""
@@ -29,13 +30,19 @@ UNIT_WORDS: dict[str, str] = {
 NUMBER = r"[-+]?(?:\d+(?:[.,]\d+)*|[.,]\d+)(?:[eE][-+]?\d{1,3})?"
 """A number with a decimal point or comma, as a regular expression."""
 
-_APPROXIMATE = re.compile(r"^(?:~|≃|ca?\.?(?=\s|\d)|circa|approx(?:\.|imately)?|about|abt\.?|>=?|<=?|≥|≤|min\.?|max\.?)\s*", re.I)  # fmt: skip
+_APPROXIMATE = re.compile(
+    r"^(?:~|≃|ca?\.?(?=\s|\d)|circa|approx(?:\.|imately)?|about|abt\.?|>=?|<=?|≥|≤|min\.?|max\.?)\s*", re.I
+)
 _FEET_INCHES = re.compile(
     r"""^(?P<ft>-?\d+(?:[.,]\d+)?)\s*(?:'(?!')|ft\.?|feet|foot)\s*-?\s*
         (?:(?P<in>\d+(?:[.,]\d+)?)?\s*(?:(?P<num>\d+)/(?P<den>\d+))?\s*(?:"|''|in\.?|ins|inch|inches)?)$""",
     re.X | re.I,
 )
-_INCHES = re.compile(r"""^(?P<in>\d+(?:[.,]\d+)?)?\s*(?:(?P<num>\d+)/(?P<den>\d+))?\s*(?:"|''|in\.?|ins|inch|inches)$""", re.I)  # fmt: skip
+_INCHES = re.compile(
+    r"""^(?P<in>\d+(?:[.,]\d+)?)?\s*(?:(?P<num>\d+)/(?P<den>\d+))?
+        \s*(?:"|''|in\.?|ins|inch|inches)$""",
+    re.X | re.I,
+)
 _FRACTION = re.compile(r"^(?P<whole>\d+(?!\d*/))?\s*(?P<num>\d+)/(?P<den>\d+)\s*(?P<unit>[A-Za-zµ'\"]*)\.?$")
 _PLAIN = re.compile(rf"^(?P<number>{NUMBER})\s*(?P<unit>[A-Za-zµ]+|'+|\")?\.?$")
 _THOUSANDS = re.compile(r"^\d{1,3}(?:,\d{3})+\.\d+$|^\d{1,3}(?:\.\d{3})+,\d+$|^\d{1,3}(?:,\d{3}){2,}$")
@@ -203,8 +210,9 @@ def _comma_remark(digits: str, value: float, symbol: str, unit_written: bool) ->
         return question("length.comma_thousands", f"the comma in {quoted(digits)} may part decimals or thousands",
                         "write a decimal point", (f"{value:g} {symbol}", thousand))  # fmt: skip
     if not unit_written and symbol in _LARGER and abs(value) < 10:
-        return question("length.comma_unit", f"{quoted(digits)} has a decimal comma but no unit on a sheet in {symbol}",
-                        "write the unit into the cell", (f"{value:g} {symbol}", f"{value:g} {_LARGER[symbol]}"))  # fmt: skip
+        message = f"{quoted(digits)} has a decimal comma but no unit on a sheet in {symbol}"
+        choices = (f"{value:g} {symbol}", f"{value:g} {_LARGER[symbol]}")
+        return question("length.comma_unit", message, "write the unit into the cell", choices)
     return note("length.decimal_comma", f"{quoted(digits)} read with a decimal comma as {value:g} {symbol}")
 
 
@@ -236,7 +244,7 @@ def _flipped(low: Length, high: Length) -> tuple[Span, tuple[Remark, ...]]:
         in_metres = _metres_on_a_cm_sheet(low, high)
         if in_metres:
             return in_metres
-    if low.unit != high.unit or high.metres >= low.metres or low.unit_written and high.unit_written:
+    if low.unit != high.unit or high.metres >= low.metres or (low.unit_written and high.unit_written):
         return as_written, ()
     values = low.metres / METRES[low.unit], high.metres / METRES[high.unit]
     if low.unit in _LARGER:
@@ -272,11 +280,14 @@ def _metres_on_a_cm_sheet(low: Length, high: Length) -> tuple[Span, tuple[Remark
     values = low.metres * 100, high.metres * 100
     if not 0 < abs(values[1] - values[0]) < 1 or any(abs(v - round(v)) < 1e-9 for v in values):
         return None
-    pair = [Length(v, "m", False, part.comma, part.approximate) for v, part in zip(values, (low, high), strict=True)]  # fmt: skip
+    first, second = (
+        Length(v, "m", False, part.comma, part.approximate)
+        for v, part in zip(values, (low, high), strict=True)
+    )
     shown = f"{values[0]:.6g} to {values[1]:.6g}"
     asked = question("span.unit_decimals", f"{shown} has decimals on a sheet in cm: read as metres",
                      "write a unit behind each number", (f"{shown} m", f"{shown} cm"))  # fmt: skip
-    return Span(pair[0], pair[1]), (asked,)
+    return Span(first, second), (asked,)
 
 
 _UNITS_SHOWN = ("m", "cm", "mm", "ft", "in", "1'6\"")

@@ -8,13 +8,13 @@ from functools import lru_cache
 
 from logkit.model import GrainState, LargestClasts, Structure
 from logkit.tables.cells.dates import date_remark
-from logkit.tables.cells.grain import read_grain
-from logkit.tables.cells.largest import take_largest, take_median
+from logkit.tables.cells.grain import GrainCell, read_grain
 from logkit.tables.cells.reading import CACHE_SIZE, Reading, Remark, clean, error, question, quoted, too_long
-from logkit.tables.cells.sizes import parse_state
-from logkit.tables.cells.words import collect, unread
+from logkit.tables.cells.words import Collected, collect, unread
 from logkit.vocabulary import lexicon, vocabulary
 
+_SANDS = ("sandstone", "sand", "arkose", "lithic_sandstone", "greywacke", "pebbly_sandstone")
+_SIZE_LETTERS = ("m", "c", "ms", "cs")
 _EDGES = " .,;:()[]-"
 _GAP_NUMBERS = re.compile(r"[~]?\d+(?:[.,]\d+)?\s*(?:mm|cm|m|ft|feet|in|'|\")?(?![A-Za-z])", re.I)
 
@@ -60,33 +60,25 @@ def read_lithology(text: str, scale: str = "wentworth") -> Reading[RockCell]:
     known = lexicon("lithologies", "qualifiers", "structures", "fossils", "rounding")
     if whole and not known.scan(plain)[0].ambiguity:
         return Reading(RockCell(whole.id, sure="?" not in plain))
-    remarks: list[Remark] = []
-    rest, largest = take_largest(plain, remarks)
-    rest, d50 = take_median(rest, largest, remarks)
-    words = collect(rest, known)
-    remarks.extend(words.remarks)
+    words = collect(plain, known)
+    remarks: list[Remark] = list(words.remarks)
     rocks = words.terms.get("lithologies", [])
-    grain: tuple[GrainState, ...] = ()
-    leftover = " ".join(words.unknown)
-    if leftover and _has_size(leftover, scale):
-        beside = read_grain(_without_rocks(rest, [written for _, written, _ in rocks]), scale)
-        if beside.value:
-            grain = beside.value.states
-            remarks.extend(r for r in beside.remarks if r.code.startswith("grain."))
-            leftover = ""
+    sized = _sized(plain, len({term.id for term, written, _ in rocks if written not in _SIZE_LETTERS}), scale)
+    if sized and sized.value:
+        return _with_sizes(sized.value, sized.remarks, words, "?" not in plain)
     named = dict.fromkeys(term.id for term, _, _ in rocks)
     mixed = _interbedded(plain, tuple(named))
     _say_mixture(tuple(named), mixed, remarks)
-    if not named and not (grain or largest or words.terms):
+    if not named and not words.terms:
         return Reading(None, (*remarks, _unknown(plain)))
-    left = unread(leftover.split())
+    left = unread(words.unknown)
     if left:
         remarks.append(left)
     structures = tuple(Structure(t.id, w, sure=sure) for t, w, sure in words.terms.get("structures", ()))
     lithology = "heterolithic" if mixed else next(iter(named), "")
     return Reading(
-        RockCell(lithology, words.ids("qualifiers"), grain, structures, largest, d50,
-                 "?" not in plain and all(sure for _, _, sure in rocks)),
+        RockCell(lithology, words.ids("qualifiers"), (), structures,
+                 sure="?" not in plain and all(sure for _, _, sure in rocks)),
         tuple(remarks),
     )  # fmt: skip
 
@@ -110,14 +102,31 @@ def read_gap(text: str) -> Reading[str]:
     return Reading(None)
 
 
-def _has_size(words: str, scale: str) -> bool:
-    return parse_state(words, scale).size is not None
+def _sized(plain: str, rocks: int, scale: str) -> Reading[GrainCell] | None:
+    """The cell read as one with a size, when it names at most one rock and a size beside it."""
+    if rocks > 1 or len(plain.split()) < 2:
+        return None
+    reading = read_grain(plain, scale)
+    cell = reading.value
+    if cell is None or any(r.code == "grain.from_rock" for r in reading.remarks):
+        return reading if cell and (cell.largest or cell.d50_mm) else None
+    # a class that is itself the rock (`sandy silt`) is no size beside a rock, and a lone `m` may be anything
+    labels = [state.size.label for state in cell.states]
+    if all(vocabulary("lithologies").find(label) for label in labels):
+        return reading if cell.largest else None
+    lone = all(label in ("m", "c") for label in labels) and not re.search(
+        r"\b(?:med|crs|medium|coarse)", plain, re.I
+    )
+    return None if lone and cell.lithology not in _SANDS else reading
 
 
-def _without_rocks(text: str, rocks: list[str]) -> str:
-    for rock in rocks:
-        text = re.sub(rf"(?<!\w){re.escape(rock)}(?!\w)", " ", text, count=1)
-    return text
+def _with_sizes(
+    cell: GrainCell, remarks: tuple[Remark, ...], words: Collected, sure: bool
+) -> Reading[RockCell]:
+    """A lithology cell that holds a size: the size reader has sorted all its words."""
+    lithology = cell.lithology or words.first("lithologies")
+    rock = RockCell(lithology, cell.qualifiers, cell.states, cell.structures, cell.largest, cell.d50_mm, sure)
+    return Reading(rock, remarks)
 
 
 def _interbedded(text: str, rocks: tuple[str, ...]) -> bool:
@@ -140,6 +149,8 @@ def _say_mixture(rocks: tuple[str, ...], mixed: bool, remarks: list[Remark]) -> 
 def _unknown(plain: str) -> Remark:
     terms = vocabulary("lithologies")
     labels = tuple(term.label for term in terms.values())
-    near = terms.nearest(plain) or next((n for w in plain.split()[:6] if len(w) > 2 and (n := terms.nearest(w))), None)
+    near = terms.nearest(plain) or next(
+        (n for w in plain.split()[:6] if len(w) > 2 and (n := terms.nearest(w))), None
+    )
     return error("lithology.unknown", f"{quoted(plain)} is not a rock that is known",
                  "use a known rock, or move the words to the notes column", allowed=labels, nearest=near)  # fmt: skip

@@ -16,15 +16,22 @@ _UNIT = r"mm|cm|metres?|m|ft|feet|in(?:ches|ch)?|'|\""
 SETS = re.compile(
     rf"""(?:\b(?P<word>x?-?sets?|cosets?|set\s+(?:thk|thickness|height))\b\s*[:=~]?\s*|(?P<only>^))
         (?:(?:mean|av|avg|average|x̄)\.?\s*[:=]?\s*(?P<first_mean>{_NUM})\s*(?P<mean_unit>{_UNIT})?(?![A-Za-z])\s*[,;(]*\s*)?
-        (?:(?P<a>{_NUM})\s*(?P<a_unit>{_UNIT})?\s*(?:(?:-|to|…|\.\.)\s*(?P<b>{_NUM})\s*)?(?P<unit>{_UNIT})?(?![A-Za-z]))?
-        (?P<tail>(?:\s*[,;(]*\s*(?:n\s*=?\s*\d+|(?:mean|av|avg|average)\.?\s*[:=]?\s*(?:{_NUM})\s*(?:{_UNIT})?(?![A-Za-z])|x\s*\d+)\)?)*)""",
+        (?:(?P<a>{_NUM})\s*(?P<a_unit>{_UNIT})?\s*(?:(?:-|to|…|\.\.)\s*(?P<b>{_NUM})\s*)?(?P<unit>{_UNIT})?(?![A-Za-z])\)?)?
+        (?P<tail>(?:\s*[,;(]*\s*(?:n\s*=?\s*\d+|x\s*\d+
+            |(?:mean|av|avg|average)\.?\s*[:=]?\s*(?:{_NUM})\s*(?:{_UNIT})?(?![A-Za-z]))\)?)*)""",
     re.X | re.I,
 )
 _COUNT = re.compile(r"(?:\bn\s*=?\s*|\bx\s*)(\d+)", re.I)
 _MEAN = re.compile(rf"(?:mean|avg?|average)\.?\s*[:=]?\s*({_NUM})\s*({_UNIT})?", re.I)
-_WAVELENGTH = re.compile(rf"(?:λ|\b(?:lambda|wavelength|wl|spacing)\b)\s*[:=~]?\s*({_NUM})\s*({_UNIT})?(?![A-Za-z])", re.I)  # fmt: skip
-_HEIGHT = re.compile(rf"(?:η|\b(?:eta|ht|height|amplitude|ampl?|h)\b)\s*[:=~]?\s*({_NUM})\s*({_UNIT})?(?![A-Za-z])", re.I)  # fmt: skip
-_CLIMB = re.compile(r"\b(?:climb(?:ing)?(?:\s+(?:angle|at))?)\s*[:=~]?\s*(\d+(?:[.,]\d+)?)\s*(?:°|deg(?:rees)?\b)?", re.I)
+_VALUE = rf"\s*[:=~]?\s*({_NUM})\s*({_UNIT})?(?![A-Za-z])"
+_WAVELENGTH = re.compile(rf"(?:λ|\b(?:lambda|wavelength|wl|spacing)\b){_VALUE}", re.I)
+# the height of a set, a dune or a bar is not that of a ripple
+_HEIGHT = re.compile(
+    rf"(?<!set )(?<!dune )(?<!bar )(?:η|\b(?:eta|ht|height|amplitude|ampl?|h)\b){_VALUE}", re.I
+)
+_CLIMB = re.compile(
+    r"\b(?:climb(?:ing)?(?:\s+(?:angle|at))?)\s*[:=~]?\s*(\d+(?:[.,]\d+)?)\s*(?:°|deg(?:rees)?\b)?", re.I
+)
 
 
 @lru_cache(maxsize=CACHE_SIZE)
@@ -41,14 +48,15 @@ def read_sets(text: str, unit: str | None = None) -> Reading[SetThickness]:
         return Reading(None)
     remarks: list[Remark] = []
     rest, sets = take_sets(plain, unit, remarks, heading=False)
+    if any(r.level == "error" for r in remarks):
+        return Reading(None, tuple(remarks))
     if sets is None or any(c.isalnum() for c in rest):
         unknown = re.search(r"[A-Za-z]+", rest)
         near = nearest(unknown[0], UNIT_WORDS) if unknown else None
         return Reading(
             None,
-            (*(r for r in remarks if r.level == "error"),
-             error("sets.unreadable", f"{quoted(plain)} is not a set thickness",
-                   "write a thickness or a range with a count, for example 8-22 cm n=4", nearest=near)),
+            (error("sets.unreadable", f"{quoted(plain)} is not a set thickness",
+                   "write a thickness or a range with a count, for example 8-22 cm n=4", nearest=near),),
         )  # fmt: skip
     return Reading(sets, tuple(remarks))
 
@@ -76,7 +84,9 @@ def take_sets(
     if not values and mean_value:
         values = [mean_value]
     if not values:
-        remarks.append(error("sets.zero", f"{quoted(match[0])} has no thickness above zero", "write it with a unit"))
+        remarks.append(
+            error("sets.zero", f"{quoted(match[0])} has no thickness above zero", "write it with a unit")
+        )
         return _without(text, match), None
     low, high = min(values), max(values)
     if mean_value is not None and not low <= mean_value <= high:
@@ -112,7 +122,9 @@ def take_climb(text: str, remarks: list[Remark]) -> tuple[str, float | None]:
         return text, None
     angle = number(match[1])[0]
     if angle is None or not 0 <= angle < 90:
-        remarks.append(error("ripples.climb", f"{quoted(match[0])} is not a climb angle", "write 0 to 90 degrees"))
+        remarks.append(
+            error("ripples.climb", f"{quoted(match[0])} is not a climb angle", "write 0 to 90 degrees")
+        )
         return _without(text, match), None
     remarks.append(
         note("ripples.climb", f"climb angle {angle:g}°; a rate of fall-out needs the ripple height as well")

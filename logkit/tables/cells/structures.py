@@ -15,11 +15,11 @@ from logkit.model import Bioturbation, CurrentReading, SetThickness, Structure
 from logkit.tables.cells.codes import read_code_word
 from logkit.tables.cells.currents import take_currents
 from logkit.tables.cells.dates import date_remark
-from logkit.tables.cells.reading import CACHE_SIZE, Reading, Remark, clean, error, note, too_long
+from logkit.tables.cells.reading import CACHE_SIZE, Reading, Remark, clean, error, question, quoted, too_long
 from logkit.tables.cells.sets import take_climb, take_height, take_sets, take_wavelength
 from logkit.tables.cells.traces import take_bioturbation
 from logkit.tables.cells.words import Collected, collect, unread
-from logkit.vocabulary import CodeTable, code_table, lexicon, vocabulary
+from logkit.vocabulary import CodeTable, code_table, code_tables, lexicon, vocabulary
 
 _UPWARD = re.compile(
     r"\s*(?:→|->|=>|(?<![<])>+|↑)\s*|\s+(?:(?:passing|passes|grading|grades|graded|going)\s+(?:up(?:wards?)?\s*)?(?:in)?to"
@@ -28,8 +28,10 @@ _UPWARD = re.compile(
 )
 _CLAUSE = re.compile(r"\s*[,;]\s*")
 _EXTENT = re.compile(
-    r"[@\[(]\s*(?P<low>\d+(?:\.\d+)?(?:e-?\d+)?)\s*-\s*(?P<high>\d+(?:\.\d+)?(?:e-?\d+)?)\s*(?P<percent>%)?\s*(?:of bed)?[\])]?", re.I
-)  # fmt: skip
+    r"[@\[(]\s*(?P<low>\d+(?:\.\d+)?(?:e-?\d+)?)\s*-\s*(?P<high>\d+(?:\.\d+)?(?:e-?\d+)?)"
+    r"\s*(?P<percent>%)?\s*(?:of bed)?[\])]?",
+    re.I,
+)
 _PLACES = ((re.compile(r"\b(?:at|near|in)\s+(?:the\s+)?(?:base|bottom)\b|\bbasal\b", re.I), 0),
            (re.compile(r"\b(?:at|near|in)\s+(?:the\s+)?top\b|\bnear\s+top\b", re.I), 1))  # fmt: skip
 _LONGEST_LIST = 60
@@ -91,9 +93,9 @@ def read_structures(text: str, codes: str = "fluvial", unit: str | None = None) 
     remarks: list[Remark] = []
     rest, bioturbation = take_bioturbation(plain, remarks)
     rest, climb = take_climb(rest, remarks)
+    rest, sets = take_sets(rest, unit, remarks)
     rest, wavelength = take_wavelength(rest, unit, remarks)
     rest, height = take_height(rest, unit, remarks)
-    rest, sets = take_sets(rest, unit, remarks)
     rest, currents = take_currents(rest, "", remarks)
     found, words, upward, lithology = _structures(rest, table, remarks)
     if currents and found:
@@ -176,8 +178,12 @@ def _clause(
         rocks.update(code.lithologies)
     rest = " ".join(plain_words)
     if rest:
-        own = collect(rest, lexicon("structures", "lithologies", "qualifiers", "fossils"), sure="?" not in rest)
-        found.extend(Structure(t.id, written, sure=sure) for t, written, sure in own.terms.get("structures", ()))
+        own = collect(
+            rest, lexicon("structures", "lithologies", "qualifiers", "fossils"), sure="?" not in rest
+        )
+        found.extend(
+            Structure(t.id, written, sure=sure) for t, written, sure in own.terms.get("structures", ())
+        )
         for name, terms in own.terms.items():
             if name != "structures":
                 words.terms.setdefault(name, []).extend(terms)
@@ -199,7 +205,9 @@ def _on_structure(currents: tuple[CurrentReading, ...], structure: str) -> tuple
             reading,
             indicator=indicator.id,
             sense="axis" if indicator.sense == "axis" else reading.sense,
-            nature=reading.nature if reading.dip_deg is None else ("plane" if indicator.nature == "plane" else "line"),
+            nature=reading.nature
+            if reading.dip_deg is None
+            else ("plane" if indicator.nature == "plane" else "line"),
         )
         if reading.indicator == "unspecified"
         else reading
@@ -207,9 +215,7 @@ def _on_structure(currents: tuple[CurrentReading, ...], structure: str) -> tuple
     )
 
 
-def _say_unknown(
-    words: Collected, found: tuple[Structure, ...], remarks: list[Remark]
-) -> None:
+def _say_unknown(words: Collected, found: tuple[Structure, ...], remarks: list[Remark]) -> None:
     """Words nobody knows: an error when they stand alone or are close to a term, else a note."""
     unknown = [w for w in words.unknown if any(c.isalpha() for c in w) or len(w) > 1]
     if not unknown:
@@ -224,13 +230,18 @@ def _say_unknown(
             remarks.append(left)
         return
     if anything:
+        read = vocabulary("structures")[found[0].term].label if found else "left out"
         remarks.append(
-            note("structures.unknown_word", f"{phrase!r} is not a structure that is known; nearest: {near}",
-                 "correct the word, or move it to the notes column")
+            question("structures.unknown_word", f"{quoted(phrase)} is not a structure that is known",
+                     f"correct it to {near}, or move it to the notes column", (read, str(near)))
         )  # fmt: skip
         return
     allowed = tuple(term.label for term in vocabulary("structures").values())
+    elsewhere = [t.name for t in code_tables().values() if any(word in t.codes for word in unknown)]
+    remedy = "use a known term or code, or move the words to the notes column"
+    if elsewhere:
+        remedy = f"choose the table of codes it is from: {', '.join(elsewhere)}"
     remarks.append(
-        error("structures.unknown", f"{phrase!r} is not a structure that is known",
-              "use a known term or code, or move the words to the notes column", allowed=allowed, nearest=near)
+        error("structures.unknown", f"{quoted(phrase)} is not a structure that is known", remedy,
+              allowed=allowed, nearest=near)
     )  # fmt: skip

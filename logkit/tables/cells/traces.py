@@ -11,16 +11,36 @@ from logkit.tables.cells.dates import date_remark
 from logkit.tables.cells.lengths import number
 from logkit.tables.cells.reading import CACHE_SIZE, Reading, Remark, clean, error, note, question, quoted
 from logkit.vocabulary import lexicon
+from logkit.vocabulary.words import word
 
 _NUM = r"\d+(?:[.,]\d+)?"
 _GRADE = re.compile(
-    rf"""(?:(?P<scheme>\bTG|\bBI|\bB\.I\.|\bii|\bI\.?F\.?I\.?|\bbioturb(?:ation)?(?:\s+(?:index|grade))?|\bgrade)\s*[:=]?\s*
+    rf"""(?:(?P<scheme>\bTG|\bBI|\bB\.I\.|\bii|\bI\.?F\.?I\.?|\bbioturb(?:ation)?(?:\s+(?:index|grade))?|\bgrade)
+        \s*[:=]?\s*
         (?P<a>{_NUM})(?:\s*(?:-|to|/)\s*(?P<b>{_NUM}))?\s*(?P<percent>%)?)(?![A-Za-z0-9])""",
     re.X | re.I,
 )
 _BARE = re.compile(rf"^(?P<a>{_NUM})(?:\s*(?:-|to|/)\s*(?P<b>{_NUM}))?\s*(?P<percent>%)?(?![\d.])")
 _WORDS = {"none": 0.0, "absent": 0.0, "no bioturbation": 0.0, "not bioturbated": 0.0, "unbioturbated": 0.0,
-          "sparse": 1.0, "low": 2.0, "moderate": 3.0, "mod": 3.0, "high": 4.0, "intense": 5.0, "complete": 6.0}  # fmt: skip
+          "sparse": 1.0, "low": 2.0, "moderate": 3.0, "mod": 3.0, "high": 4.0, "intense": 5.0,
+          "complete": 6.0}  # fmt: skip
+_STATES = frozenset(
+    (
+        "fragment",
+        "debris",
+        "cast",
+        "mould",
+        "mold",
+        "impression",
+        "hash",
+        "trace",
+        "remain",
+        "broken",
+        "whole",
+        "articulated",
+        "burrow",
+    )
+)
 RANGES = {"taylor_goldring": (0.0, 6.0), "ichnofabric": (1.0, 6.0), "percent": (0.0, 100.0)}
 """Scheme -> lowest and highest grade."""
 
@@ -51,7 +71,7 @@ def read_bioturbation_cell(text: str) -> Reading[BioturbationCell]:
         named = read_fossils(rest)
         fossils = named.value or ()
         remarks.extend(named.remarks)
-    if grade is None and not any(r.level == "error" for r in remarks):
+    if grade is None and not fossils and not any(r.level == "error" for r in remarks):
         remarks.append(
             error("bioturbation.unreadable", f"{quoted(plain)} holds no bioturbation grade",
                   "write BI with a grade from 0 to 6, for example BI 2-3", allowed=("BI 0-6", "ii 1-6", "0-100 %"))
@@ -99,7 +119,9 @@ def _bare_grade(text: str, remarks: list[Remark]) -> tuple[str, Bioturbation | N
     value = _WORDS.get(text.casefold())
     if value is None:
         return text, None
-    remarks.append(note("bioturbation.word", f"{quoted(text)} read as grade {value:g} of Taylor and Goldring"))
+    remarks.append(
+        note("bioturbation.word", f"{quoted(text)} read as grade {value:g} of Taylor and Goldring")
+    )
     return "", Bioturbation(value, value, "taylor_goldring")
 
 
@@ -141,12 +163,16 @@ def read_fossils(text: str) -> Reading[tuple[str, ...]]:
                     )  # fmt: skip
                 else:
                     new.append(piece.written)
-            elif not piece.filler and any(c.isalpha() for c in piece.written):
+            elif not (piece.filler or word(piece.written)[0] in _STATES) and any(
+                c.isalpha() for c in piece.written
+            ):
                 new.append(piece.written)
         if new:
             words = " ".join(new)
             near = known.nearest(words)
             hint = f"; nearest known: {near}" if near else ""
-            remarks.append(note("fossils.as_written", f"{quoted(words)} is not in the list and is kept as written{hint}"))
+            remarks.append(
+                note("fossils.as_written", f"{quoted(words)} is not in the list and is kept as written{hint}")
+            )
             found.append(words[:80])
     return Reading(tuple(dict.fromkeys(found)) or None, tuple(remarks))
