@@ -84,6 +84,7 @@ def _well(plan: PanelPlan, column: WellColumn, number: int, tally: Tally) -> Gro
             layer = f"{name} {track}"
             shapes.append(Group(tuple(drawn[track]), id=f"well-{number}-{track}", layer=layer))
     shapes.append(Group(tuple(frame.axes(scene, view))))
+    shapes.extend(frame.heads(scene, plan.style.page.section_top - 2.5))
     shapes.append(Group(tuple(marks.own_scale(plan, column))))
     shapes.extend(_name(plan, column))
     title = f"{name}: {len(column.placed.log.real_beds)} beds"

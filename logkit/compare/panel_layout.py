@@ -26,11 +26,14 @@ Spacing = Literal["even", "distance"]
 PANEL_TRACKS = ("gamma", "texture", "velocity")
 """Tracks of each well, as far as it has anything for them."""
 
-WIDTHS_MM = {"texture": 32.0, "velocity": 28.0, "gamma": 14.0, "depth": 14.0, "glyphs": 6.0, "current": 11.0}
+WIDTHS_MM = {"texture": 37.0, "velocity": 28.0, "gamma": 14.0, "depth": 14.0, "glyphs": 6.0, "current": 11.0}
 """Room of a track on a panel; others keep the width of the style."""
 
 SCALE_ROOM_MM = 12.5
 """Room for a well's own depths left of its first track."""
+
+HEAD_ROOM_MM = 13.0
+"""Room between the names of the wells and the highest column for heads and axes."""
 
 CORRIDOR_MM = 24.0
 LEAST_CORRIDOR_MM = 14.0
@@ -133,7 +136,7 @@ def plan_panel(
     narrow = _narrowed(style)
     widths = [_width(narrow, names) for names in shown]
     lefts, per_mm = _places(wells, widths, spacing, style.page.margin + 10.0)
-    y_top = style.page.section_top + 6.0
+    y_top = style.page.section_top + HEAD_ROOM_MM
     columns = []
     for p, h, names, left, width in zip(wells, hung, shown, lefts, widths, strict=True):
         scene = lay_out(
