@@ -8,7 +8,6 @@ from logkit.tables.cells.attitudes import read_attitude
 from logkit.tables.cells.contact import ContactCell, read_contact, read_contact_cell
 from logkit.tables.cells.core import CoreNote, read_core_note
 from logkit.tables.cells.currents import read_currents
-from logkit.tables.cells.dates import is_date
 from logkit.tables.cells.grain import GrainCell, read_grain, read_largest, read_size, read_sorting
 from logkit.tables.cells.lengths import Length, Span, is_span, read_length, read_span
 from logkit.tables.cells.other import (
@@ -21,6 +20,7 @@ from logkit.tables.cells.other import (
 )
 from logkit.tables.cells.pattern import Pattern, PatternPart, is_pattern, read_pattern
 from logkit.tables.cells.reading import Reading, Remark
+from logkit.tables.cells.refused import is_date
 from logkit.tables.cells.rock import RockCell, read_gap, read_lithology
 from logkit.tables.cells.sets import read_sets
 from logkit.tables.cells.structures import StructuresCell, read_structures

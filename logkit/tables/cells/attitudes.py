@@ -10,9 +10,9 @@ from dataclasses import dataclass
 from functools import lru_cache
 from typing import Literal
 
-from logkit.tables.cells.dates import date_remark
 from logkit.tables.cells.lengths import number
 from logkit.tables.cells.reading import CACHE_SIZE, Reading, Remark, clean, error, question, quoted
+from logkit.tables.cells.refused import refusal
 
 COMPASS = {name: index * 22.5 for index, name in enumerate((
     "N", "NNE", "NE", "ENE", "E", "ESE", "SE", "SSE", "S", "SSW", "SW", "WSW", "W", "WNW", "NW", "NNW"))}  # fmt: skip
@@ -212,7 +212,7 @@ def read_attitude(text: str) -> Reading[tuple[float, float]]:
     plain = clean(text)
     if not plain:
         return Reading(None)
-    refused = date_remark(plain)
+    refused = refusal(plain)
     if refused:
         return Reading(None, (refused,))
     if plain.casefold() in ("horizontal", "flat", "flat-lying", "0", "none"):

@@ -8,9 +8,9 @@ from functools import lru_cache
 
 from logkit.model import Contact, CurrentReading, Structure
 from logkit.tables.cells.currents import take_currents
-from logkit.tables.cells.dates import date_remark
 from logkit.tables.cells.lengths import number, unit_symbol
 from logkit.tables.cells.reading import CACHE_SIZE, Reading, Remark, clean, error, note, question, quoted
+from logkit.tables.cells.refused import refusal
 from logkit.tables.cells.words import Collected, add_pieces, unread
 from logkit.units import METRES
 from logkit.vocabulary import lexicon, vocabulary
@@ -70,7 +70,7 @@ def read_contact_cell(text: str, unit: str | None = None) -> Reading[ContactCell
     plain = clean(text)
     if not plain:
         return Reading(None)
-    refused = date_remark(plain)
+    refused = refusal(plain)
     if refused:
         return Reading(None, (refused,))
     remarks: list[Remark] = []
@@ -88,9 +88,9 @@ def read_contact_cell(text: str, unit: str | None = None) -> Reading[ContactCell
     if contact is None and not structures and not currents:
         near = vocabulary("contacts").nearest(plain)
         labels = tuple(term.label for term in vocabulary("contacts").values())
-        refusal = error("contact.unknown", f"{quoted(plain)} is not a kind of contact", "use one of the kinds",
+        problem = error("contact.unknown", f"{quoted(plain)} is not a kind of contact", "use one of the kinds",
                         allowed=labels, nearest=near)  # fmt: skip
-        return Reading(None, (*remarks, refusal))
+        return Reading(None, (*remarks, problem))
     if left:
         remarks.append(left)
     if currents:

@@ -6,9 +6,9 @@ import re
 from dataclasses import dataclass
 from functools import lru_cache
 
-from logkit.tables.cells.dates import date_remark
 from logkit.tables.cells.lengths import Span, is_span, read_length, read_span
-from logkit.tables.cells.reading import CACHE_SIZE, Reading, Remark, clean, error, note, too_long
+from logkit.tables.cells.reading import CACHE_SIZE, Reading, Remark, clean, error, note
+from logkit.tables.cells.refused import refusal
 
 _LENGTH = r"\d+(?:[.,]\d+)?(?:\s*(?:'(?:\s*\d+(?:[.,]\d+)?\s*(?:\"|''))?|ft|feet|m|cm|metres?)(?![A-Za-z]))?"
 _CUT = re.compile(rf"\b(?:cut|cored|drilled|run)\s*[:=]?\s*(?P<length>{_LENGTH})", re.I)
@@ -58,7 +58,7 @@ def read_core_note(text: str, unit: str | None = None) -> Reading[CoreNote]:
     named = re.search(r"\bcore\s*#?\s*\d+", plain, re.I)
     if not plain or not (cut or recovered or named):
         return Reading(None)
-    refused = date_remark(plain) or too_long(plain)
+    refused = refusal(plain)
     if refused:
         return Reading(None, (refused,))
     remarks: list[Remark] = []

@@ -11,7 +11,6 @@ from typing import Literal
 
 from logkit.model import CurrentReading
 from logkit.tables.cells.attitudes import COMPASS, Attitude, find_attitudes, read_attitude
-from logkit.tables.cells.dates import date_remark
 from logkit.tables.cells.reading import (
     CACHE_SIZE,
     Reading,
@@ -21,8 +20,8 @@ from logkit.tables.cells.reading import (
     note,
     question,
     quoted,
-    too_long,
 )
+from logkit.tables.cells.refused import refusal
 from logkit.tables.cells.words import unread
 from logkit.vocabulary import Term, lexicon, vocabulary
 
@@ -51,7 +50,7 @@ def read_currents(text: str, hint: str = "") -> Reading[tuple[CurrentReading, ..
     plain = clean(text)
     if not plain:
         return Reading(None)
-    refused = date_remark(plain) or too_long(plain)
+    refused = refusal(plain)
     if refused:
         return Reading(None, (refused,))
     remarks: list[Remark] = []

@@ -11,7 +11,6 @@ from typing import NamedTuple
 from logkit.errors import nearest
 from logkit.grains import interval_for
 from logkit.model import GrainState, LargestClasts, SizeInterval, Structure
-from logkit.tables.cells.dates import date_remark
 from logkit.tables.cells.largest import take_largest, take_median
 from logkit.tables.cells.reading import (
     CACHE_SIZE,
@@ -22,8 +21,8 @@ from logkit.tables.cells.reading import (
     note,
     question,
     quoted,
-    too_long,
 )
+from logkit.tables.cells.refused import refusal
 from logkit.tables.cells.sizes import (
     State,
     comma_note,
@@ -118,7 +117,7 @@ def read_grain(text: str, scale: str = "wentworth") -> Reading[GrainCell]:
     plain = clean(text)
     if not plain:
         return Reading(None)
-    refused = date_remark(plain) or too_long(plain)
+    refused = refusal(plain)
     if refused:
         return Reading(None, (refused,))
     remarks: list[Remark] = []
@@ -173,7 +172,7 @@ def read_largest(text: str) -> Reading[LargestClasts]:
     plain = clean(text)
     if not plain:
         return Reading(None)
-    refused = date_remark(plain)
+    refused = refusal(plain)
     if refused:
         return Reading(None, (refused,))
     remarks: list[Remark] = []

@@ -12,8 +12,8 @@ from dataclasses import dataclass
 from functools import lru_cache
 
 from logkit.errors import nearest
-from logkit.tables.cells.dates import date_remark
 from logkit.tables.cells.reading import CACHE_SIZE, Reading, Remark, clean, error, note, question, quoted
+from logkit.tables.cells.refused import refusal
 from logkit.units import METRES
 
 UNIT_WORDS: dict[str, str] = {
@@ -92,7 +92,7 @@ def read_length(text: str, unit: str | None = None) -> Reading[Length]:
     plain = clean(text)
     if not plain:
         return Reading(None)
-    refused = date_remark(plain)
+    refused = refusal(plain)
     if refused:
         return Reading(None, (refused,))
     return _length(plain, unit)
@@ -108,7 +108,7 @@ def read_span(text: str, unit: str | None = None) -> Reading[Span]:
     plain = clean(text)
     if not plain:
         return Reading(None)
-    refused = date_remark(plain)
+    refused = refusal(plain)
     if refused:
         return Reading(None, (refused,))
     parts = [part for part in _SPLIT.split(plain, maxsplit=2) if part]

@@ -6,9 +6,9 @@ import re
 from functools import lru_cache
 
 from logkit.model import Colour
-from logkit.tables.cells.dates import date_remark
 from logkit.tables.cells.lengths import number, unit_symbol
 from logkit.tables.cells.reading import CACHE_SIZE, Reading, Remark, clean, error, note, question, quoted
+from logkit.tables.cells.refused import refusal
 from logkit.tables.cells.traces import (
     BioturbationCell,
     read_bioturbation,
@@ -58,7 +58,7 @@ def read_colour(text: str) -> Reading[Colour]:
     plain = clean(text)
     if not plain:
         return Reading(None)
-    refused = date_remark(plain)
+    refused = refusal(plain)
     if refused:
         return Reading(None, (refused,))
     match = _HUE.search(plain)
@@ -106,7 +106,7 @@ def read_samples(text: str) -> Reading[tuple[str, ...]]:
     plain = clean(text)
     if not plain:
         return Reading(None)
-    refused = date_remark(plain)
+    refused = refusal(plain)
     if refused:
         return Reading(None, (refused,))
     rest, photos = _without_photos(plain)
@@ -135,7 +135,7 @@ def read_photos(text: str) -> Reading[tuple[str, ...]]:
     plain = clean(text)
     if not plain:
         return Reading(None)
-    refused = date_remark(plain)
+    refused = refusal(plain)
     if refused:
         return Reading(None, (refused,))
     found: list[str] = []
@@ -189,7 +189,7 @@ def read_marker(text: str) -> Reading[tuple[str, bool]]:
     plain = clean(text)
     if not plain:
         return Reading(None)
-    refused = date_remark(plain)
+    refused = refusal(plain)
     if refused:
         return Reading(None, (refused,))
     name = re.sub(
@@ -212,7 +212,7 @@ def read_number(text: str, lo: float | None = None, hi: float | None = None) -> 
     plain = clean(text)
     if not plain:
         return Reading(None)
-    refused = date_remark(plain)
+    refused = refusal(plain)
     if refused:
         return Reading(None, (refused,))
     match = _ONE_NUMBER.fullmatch(plain)
@@ -245,7 +245,7 @@ def read_interval(text: str, unit: str | None = None) -> Reading[tuple[float, fl
     plain = clean(text)
     if not plain:
         return Reading(None)
-    refused = date_remark(plain)
+    refused = refusal(plain)
     if refused:
         return Reading(None, (refused,))
     middle = _PLUS_MINUS.match(plain)

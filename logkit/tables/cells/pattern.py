@@ -7,10 +7,10 @@ from dataclasses import dataclass
 from functools import lru_cache
 
 from logkit.model import GrainState, Structure
-from logkit.tables.cells.dates import date_remark
 from logkit.tables.cells.grain import read_grain
 from logkit.tables.cells.lengths import read_length
-from logkit.tables.cells.reading import CACHE_SIZE, Reading, Remark, clean, error, note, quoted, too_long
+from logkit.tables.cells.reading import CACHE_SIZE, Reading, Remark, clean, error, note, quoted
+from logkit.tables.cells.refused import refusal
 from logkit.tables.cells.structures import read_structures
 
 _PATTERN = re.compile(r"^(?P<count>\d{1,5})\s*[x*]\s*[(\[](?P<inside>.+)[)\]]\s*\.?$", re.I)
@@ -68,7 +68,7 @@ def read_pattern(
     plain = clean(text)
     if not plain:
         return Reading(None)
-    refused = date_remark(plain) or too_long(plain)
+    refused = refusal(plain)
     if refused:
         return Reading(None, (refused,))
     match = _PATTERN.match(plain)
@@ -81,9 +81,9 @@ def read_pattern(
     if len(parts) != len(written) or not parts:
         return Reading(None, (*remarks, _unreadable(plain)))
     if not 0 < count * len(parts) <= _MOST_LAYERS:
-        refusal = error("pattern.count", f"{quoted(plain)} makes {count * len(parts)} layers",
+        problem = error("pattern.count", f"{quoted(plain)} makes {count * len(parts)} layers",
                         f"write a pattern of 1 to {_MOST_LAYERS} layers")  # fmt: skip
-        return Reading(None, (*remarks, refusal))
+        return Reading(None, (*remarks, problem))
     pattern = Pattern(count, tuple(parts))
     remarks.append(
         note("pattern.not_measured", f"{pattern.layers} layers, {pattern.thickness_m:.4g} m, from a pattern: "

@@ -19,9 +19,6 @@ T = TypeVar("T")
 CACHE_SIZE = 4096
 """Whole-cell readings kept per reader: a log repeats its cells, and readers are pure functions of text."""
 
-LONGEST_CELL = 2000
-"""Characters of a cell that are read as shorthand; longer text belongs into the notes."""
-
 
 @dataclass(frozen=True, slots=True)
 class Remark:
@@ -103,14 +100,3 @@ def quoted(text: str, longest: int = 60) -> str:
     """Text as it is quoted inside a message: printable, on one line, shortened in the middle of long cells."""
     plain = clean(text)
     return repr(plain if len(plain) <= longest else plain[: longest - 1] + "…")
-
-
-def too_long(text: str) -> Remark | None:
-    """The remark on a cell that is too long to be shorthand, or None."""
-    if len(text) <= LONGEST_CELL:
-        return None
-    return error(
-        "cell.too_long",
-        f"the cell has {len(text)} characters, which is more than the {LONGEST_CELL} read as shorthand",
-        "move the text to the notes column",
-    )

@@ -7,9 +7,9 @@ from dataclasses import dataclass
 from functools import lru_cache
 
 from logkit.model import GrainState, LargestClasts, Structure
-from logkit.tables.cells.dates import date_remark
 from logkit.tables.cells.grain import GrainCell, read_grain
-from logkit.tables.cells.reading import CACHE_SIZE, Reading, Remark, clean, error, question, quoted, too_long
+from logkit.tables.cells.reading import CACHE_SIZE, Reading, Remark, clean, error, question, quoted
+from logkit.tables.cells.refused import refusal
 from logkit.tables.cells.words import Collected, collect, unread
 from logkit.vocabulary import lexicon, vocabulary
 
@@ -53,7 +53,7 @@ def read_lithology(text: str, scale: str = "wentworth") -> Reading[RockCell]:
     plain = clean(text)
     if not plain:
         return Reading(None)
-    refused = date_remark(plain) or too_long(plain)
+    refused = refusal(plain)
     if refused:
         return Reading(None, (refused,))
     whole = vocabulary("lithologies").find(plain)

@@ -14,8 +14,8 @@ from logkit.errors import UnknownNameError
 from logkit.model import Bioturbation, CurrentReading, SetThickness, Structure
 from logkit.tables.cells.codes import read_code_word
 from logkit.tables.cells.currents import take_currents
-from logkit.tables.cells.dates import date_remark
-from logkit.tables.cells.reading import CACHE_SIZE, Reading, Remark, clean, error, question, quoted, too_long
+from logkit.tables.cells.reading import CACHE_SIZE, Reading, Remark, clean, error, question, quoted
+from logkit.tables.cells.refused import refusal
 from logkit.tables.cells.sets import take_climb, take_height, take_sets, take_wavelength
 from logkit.tables.cells.traces import take_bioturbation
 from logkit.tables.cells.words import Collected, collect, unread
@@ -82,7 +82,7 @@ def read_structures(text: str, codes: str = "fluvial", unit: str | None = None) 
     plain = clean(text)
     if not plain:
         return Reading(None)
-    refused = date_remark(plain) or too_long(plain)
+    refused = refusal(plain)
     if refused:
         return Reading(None, (refused,))
     try:

@@ -7,9 +7,9 @@ from dataclasses import dataclass
 from functools import lru_cache
 
 from logkit.model import Bioturbation
-from logkit.tables.cells.dates import date_remark
 from logkit.tables.cells.lengths import number
 from logkit.tables.cells.reading import CACHE_SIZE, Reading, Remark, clean, error, note, question, quoted
+from logkit.tables.cells.refused import refusal
 from logkit.vocabulary import lexicon
 from logkit.vocabulary.words import word
 
@@ -59,7 +59,7 @@ def read_bioturbation_cell(text: str) -> Reading[BioturbationCell]:
     plain = clean(text)
     if not plain:
         return Reading(None)
-    refused = date_remark(plain)
+    refused = refusal(plain)
     if refused:
         return Reading(None, (refused,))
     remarks: list[Remark] = []

@@ -1,10 +1,13 @@
-"""Dates where a size or a length stood: spreadsheets turn `1-2` or `5/6` into one. Never read, always refused."""
+"""What no reader reads: dates, which spreadsheets make of `1-2` or `5/6`, and texts too long to be shorthand."""
 
 from __future__ import annotations
 
 import re
 
 from logkit.tables.cells.reading import Remark, error, quoted
+
+LONGEST_CELL = 1000
+"""Characters of a cell that are read as shorthand."""
 
 _MONTH = r"(?:jan|feb|mar|apr|may|jun|jul|aug|sep|sept|oct|nov|dec)[a-z]*"
 _DATE = re.compile(
@@ -18,11 +21,17 @@ _DATE = re.compile(
 
 def is_date(text: str) -> bool:
     """True for text that a spreadsheet writes for a date."""
-    return _DATE.match(text.strip()) is not None
+    return _DATE.match(text.strip()[:40]) is not None
 
 
-def date_remark(text: str) -> Remark | None:
-    """The refusal of a date, or None when the text is not one."""
+def refusal(text: str) -> Remark | None:
+    """The error on a cell that is a date or too long to be shorthand, None when it may be read."""
+    if len(text) > LONGEST_CELL:
+        return error(
+            "cell.too_long",
+            f"the cell has {len(text)} characters, more than the {LONGEST_CELL} that are read as shorthand",
+            "move the text to the notes column",
+        )
     if not is_date(text):
         return None
     return error(
