@@ -6,6 +6,7 @@ What is drawn between the columns is in `panel_marks`, places are in `panel_layo
 from __future__ import annotations
 
 from collections.abc import Sequence
+from dataclasses import replace
 from pathlib import Path as FilePath
 
 from logkit.compare import panel_marks as marks
@@ -88,7 +89,16 @@ def _well(plan: PanelPlan, column: WellColumn, number: int, tally: Tally) -> Gro
     shapes.append(Group(tuple(marks.own_scale(plan, column))))
     shapes.extend(_name(plan, column))
     title = f"{name}: {len(column.placed.log.real_beds)} beds"
-    return Group(tuple(shapes), id=f"well-{number}", layer=name, title=title)
+    own = tuple(_own_ids(shape, f"well-{number}") for shape in shapes)
+    return Group(own, id=f"well-{number}", layer=name, title=title)
+
+
+def _own_ids(shape: Shape, prefix: str) -> Shape:
+    """The same shape with ids that belong to one well; ids of beds are made from their content and stay."""
+    if not isinstance(shape, Group):
+        return shape
+    id = shape.id if not shape.id or shape.id.startswith(("b-", prefix)) else f"{prefix}-{shape.id}"
+    return replace(shape, id=id, children=tuple(_own_ids(child, prefix) for child in shape.children))
 
 
 def _name(plan: PanelPlan, column: WellColumn) -> list[Shape]:
@@ -135,14 +145,14 @@ def _finish(
     key, key_mm = marks.key(plan, comparison, width, y)
     shapes.append(Group(tuple(key), id="tie-key", layer="tie key"))
     y += key_mm
-    explained, legend_mm = legend.legend(flowing, tally, width)
-    if style.page.legend and explained:
-        shapes.append(legend.moved(explained, y))
-        y += legend_mm + 1.0
+    explained = legend.measure_legend(flowing, tally, width) if style.page.legend else None
+    if explained is not None:
+        shapes.append(explained.draw(y))
+        y += explained.height + 1.0
     y = _notes(plan, [*comparison.notes, *words], shapes, width, y)
     closing = titles.closing_lines(flowing, tally, width)
     shapes.append(
-        Group(tuple(titles.closing_block(flowing, closing, y, width, 1, 1)), id="caution", layer="caution")
+        Group(tuple(titles.closing_block(flowing, closing, y, width)), id="caution", layer="caution")
     )
     height = y + titles.closing_height(flowing, closing) + style.page.margin
     names = ", ".join(p.name for p in comparison.placed)

@@ -14,17 +14,20 @@ from typing import Any
 from logkit.drawing import frame, pages, titles
 from logkit.drawing.drawing import Drawing
 from logkit.drawing.layout import lay_out
-from logkit.drawing.legend import Legend, measure_legend
+from logkit.drawing.legend import legend_pages
 from logkit.drawing.scene import Scene, Tally, View
-from logkit.drawing.shapes import Gradient, Group, Shape, Sheet, Text
+from logkit.drawing.shapes import Gradient, Group, Shape, Sheet
 from logkit.drawing.style import Style, load_style
-from logkit.drawing.tables import note_sheets
+from logkit.drawing.tables import NoteTable
 from logkit.drawing.tracks import TRACKS
 from logkit.errors import ArgumentError
 from logkit.model import Log
 
 WIPING = ("velocity", "depth")
 """Tracks whose blanks wipe the guides."""
+
+LEAST_TABLE_MM = 25.0
+"""A note table is not begun in less room than this."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -35,6 +38,10 @@ class _Body:
     shapes: tuple[Shape, ...]
     gradients: tuple[Gradient, ...]
     end: float
+
+    def with_more(self, shapes: Group, end: float) -> _Body:
+        """The same with more below it."""
+        return replace(self, shapes=(*self.shapes, shapes), end=end)
 
 
 def draw_column(
@@ -136,8 +143,7 @@ class _Column:
         """All sheets."""
         bodies = [self._body(view) for view in self._views()]
         closing = titles.closing_lines(self.scene, self.tally, self.width)
-        key = measure_legend(self.scene, self.tally, self.width) if self.scene.style.page.legend else None
-        sheets = self._place(bodies, key, closing)
+        sheets = self._place(bodies, closing)
         title = self.scene.log.header.title or self.scene.log.name
         counts = tuple(sorted(self.tally.left_out.items()))
         return Drawing(tuple(sheets), title, self.scene.scale, counts)
@@ -180,19 +186,26 @@ class _Column:
             view, tuple(shapes), tuple(tally.gradients), view.position.y_base + frame.LOWER_AXIS_MM + 2.0
         )
 
-    def _place(self, bodies: list[_Body], key: Legend | None, closing: list[str]) -> list[Sheet]:
-        """Add titles, closing lines and the legend; more sheets where the last has no room for it."""
-        style = self.scene.style
-        bodies = bodies or [_Body(None, (), (), style.page.heads)]
-        margin = style.page.margin + titles.closing_height(self.scene, closing)
-        if key is not None:
-            end = bodies[-1].end + key.height
-            if self.page_height is not None and end + margin > self.page_height:
-                bodies = [*bodies, _Body(None, (), (), style.page.heads - 4.0)]
-            last = bodies[-1]
-            bodies[-1] = replace(last, shapes=(*last.shapes, key.draw(last.end)), end=last.end + key.height)
-        tables = note_sheets(self.scene, self.tally, self.width, self.page_height)
-        bodies += [_Body(None, tuple(shapes), (), end) for shapes, end in tables]
+    def _place(self, bodies: list[_Body], closing: list[str]) -> list[Sheet]:
+        """Add legend and note table, on more sheets where the last has no room; then titles and closing lines."""
+        scene, style = self.scene, self.scene.style
+        top = style.page.heads - 4.0
+        margin = style.page.margin + titles.closing_height(scene, closing)
+        bottom = float("inf") if self.page_height is None else self.page_height - margin
+        bodies = bodies or [_Body(None, (), (), top)]
+        legends = legend_pages(scene, self.tally, self.width, bottom - top) if style.page.legend else []
+        for page in legends:
+            if bodies[-1].end + page.height > bottom:
+                bodies.append(_Body(None, (), (), top))
+            end = bodies[-1].end
+            bodies[-1] = bodies[-1].with_more(page.draw(end), end + page.height)
+        table = NoteTable(scene, self.tally, self.width)
+        while table:
+            if bottom - bodies[-1].end < LEAST_TABLE_MM:
+                bodies.append(_Body(None, (), (), top))
+            end = bodies[-1].end + 2.0
+            part, used = table.take(end, bottom - end)
+            bodies[-1] = bodies[-1].with_more(part, end + used)
         sheets = []
         for number, body in enumerate(bodies, 1):
             height = self.page_height or body.end + margin
@@ -206,15 +219,11 @@ class _Column:
 
     def _head(self, number: int, total: int, view: View | None) -> list[Shape]:
         scene, style = self.scene, self.scene.style
-        shapes: list[Shape] = titles.title_block(scene, self.width, self.scale_words)
+        words = titles.sheet_words(view, number, total, scene.downward)
+        shapes = titles.title_block(scene, self.width, self.scale_words, words)
         shapes.extend(titles.summary_block(scene, self.summary, self.width))
         if view is not None:
             shapes.extend(frame.heads(scene, style.page.heads))
-        words = titles.sheet_words(view, number, total, scene.downward)
-        if words:
-            size = style.fonts.label
-            at = (self.width - style.page.margin, style.page.rule - 10.4)
-            shapes.append(Text(at, words, size, style.colours.ink2, anchor="end"))
         return [Group(tuple(shapes), id="title", layer="title")]
 
     def _closing(self, lines: list[str], y: float) -> Group:

@@ -5,8 +5,11 @@ from __future__ import annotations
 from dataclasses import dataclass, field
 from pathlib import Path
 
+from logkit.drawing.render import svg_to_pdf, svg_to_png
 from logkit.drawing.shapes import Sheet
+from logkit.drawing.svg import sheet_svg
 from logkit.errors import ArgumentError
+from logkit.files import write_atomic
 
 FORMATS = (".svg", ".pdf", ".png")
 
@@ -35,28 +38,19 @@ class Drawing:
         ------
         ArgumentError : there is no such sheet
         """
-        from logkit.drawing.svg import sheet_svg
-
         if not 1 <= sheet <= len(self.sheets):
             raise ArgumentError("sheet", sheet, f"a number from 1 to {len(self.sheets)}")
         return sheet_svg(self.sheets[sheet - 1])
 
     def pdf(self) -> bytes:
         """All sheets as one PDF document."""
-        from logkit.drawing.render import pdf
+        return svg_to_pdf([self.svg(number) for number in range(1, len(self.sheets) + 1)], self.title)
 
-        pages = [(self.svg(n), s.width, s.height) for n, s in enumerate(self.sheets, 1)]
-        return pdf(pages, self.title)
+    def png(self, sheet: int = 1, dpi: float = 200.0) -> bytes:
+        """One sheet as a PNG picture, with so many dots per inch."""
+        return svg_to_png(self.svg(sheet), dpi)
 
-    def png(self, sheet: int = 1, dots_per_inch: float = 200.0) -> bytes:
-        """One sheet as a PNG picture."""
-        from logkit.drawing.render import png
-
-        text = self.svg(sheet)
-        page = self.sheets[sheet - 1]
-        return png((text, page.width, page.height), dots_per_inch)
-
-    def save(self, path: str | Path, dots_per_inch: float = 200.0) -> tuple[Path, ...]:
+    def save(self, path: str | Path, dpi: float = 200.0) -> tuple[Path, ...]:
         """Write the drawing; the ending of the path chooses SVG, PDF or PNG.
 
         Several sheets become pages of one PDF, or files `name-1.svg`, `name-2.svg` … Existing files are replaced
@@ -71,8 +65,6 @@ class Drawing:
         ArgumentError : the ending is none of .svg, .pdf, .png
         LogkitError : the folder cannot be written
         """
-        from logkit.files import write_atomic
-
         target = Path(path)
         ending = target.suffix.lower()
         if ending not in FORMATS:
@@ -85,9 +77,7 @@ class Drawing:
             name = target
             if len(self.sheets) > 1:
                 name = target.with_name(f"{target.stem}-{number}{target.suffix}")
-            content = (
-                self.svg(number).encode("utf-8") if ending == ".svg" else self.png(number, dots_per_inch)
-            )
+            content = self.svg(number).encode("utf-8") if ending == ".svg" else self.png(number, dpi)
             write_atomic(name, content)
             written.append(name)
         return tuple(written)

@@ -18,6 +18,8 @@ COLUMN_GAP_MM = 2.5
 BLOCK_GAP_MM = 4.5
 MOST_LABEL_MM = 36.0
 MOST_ROWS = 6
+NARROW_MM = 60.0
+CONTINUED = ", continued"
 
 
 @dataclass(frozen=True, slots=True)
@@ -40,16 +42,17 @@ class _Block:
 
 @dataclass(frozen=True, slots=True)
 class Legend:
-    """A legend that has been measured but not yet placed."""
+    """A legend, or one page of it, that has been measured but not yet placed; `rose` when it holds the rose."""
 
     scene: Scene
     blocks: tuple[tuple[_Block, float, float], ...]
     height: float
+    rose: bool = False
 
     def draw(self, y: float) -> Group:
         """Its shapes with the upper edge at `y`, mm."""
         shapes: list[Shape] = []
-        rose = rose_block(self.scene)
+        rose = rose_block(self.scene) if self.rose else None
         if rose is not None:
             shapes.extend(rose.draw(self.scene.style.page.margin, y))
         for block, x, dy in self.blocks:
@@ -58,39 +61,55 @@ class Legend:
 
 
 def measure_legend(scene: Scene, tally: Tally, width: float) -> Legend | None:
-    """Arrange the legend on a page of a width, mm; None when there is nothing to explain."""
+    """Arrange the legend on a page of a width, mm, as high as it needs; None when there is nothing to explain."""
+    pages = legend_pages(scene, tally, width, float("inf"))
+    return pages[0] if pages else None
+
+
+def legend_pages(scene: Scene, tally: Tally, width: float, room: float) -> list[Legend]:
+    """The legend in as many pages as it needs where each has a height of `room` mm."""
     margin = scene.style.page.margin
     left, right = margin, width - margin
+    most_rows = max(4, int((room - HEAD_MM - 1.0) // ROW_MM)) if math.isfinite(room) else 10_000
+    pages: list[Legend] = []
+    placed: list[tuple[_Block, float, float]] = []
     x, y, tallest = left, 0.0, 0.0
     rose = rose_block(scene)
     if rose is not None:
         x, tallest = left + rose.width + BLOCK_GAP_MM, rose.height
-    placed: list[tuple[_Block, float, float]] = []
-    for title, items in legend_groups(scene, tally):
+    queue = list(legend_groups(scene, tally))
+    while queue:
+        title, items = queue.pop(0)
         block = _fit(scene, title, items, right - x)
         if block.width > right - x and x > left:
             x, y, tallest = left, y + tallest + 2.0, 0.0
             block = _fit(scene, title, items, right - x)
+        if y + block.height > room and placed:
+            pages.append(Legend(scene, tuple(placed), y + tallest + 1.0, rose is not None and not pages))
+            placed, x, y, tallest = [], left, 0.0, 0.0
+            block = _fit(scene, title, items, right - x)
+        rows = max(len(column) for column in block.columns)
+        if rows > most_rows:
+            count = most_rows * len(block.columns)
+            queue.insert(0, (f"{title.removesuffix(CONTINUED)}{CONTINUED}", items[count:]))
+            block = _block(scene, title, items[:count], most_rows)
         placed.append((block, x, y))
         x += block.width + BLOCK_GAP_MM
         tallest = max(tallest, block.height)
-    if not placed and rose is None:
-        return None
-    return Legend(scene, tuple(placed), y + tallest + 1.0)
+    if placed or (rose is not None and not pages):
+        pages.append(Legend(scene, tuple(placed), y + tallest + 1.0, rose is not None and not pages))
+    return pages
 
 
 def _fit(scene: Scene, title: str, items: list[Item], room: float) -> _Block:
-    """As few rows as the width allows, but not fewer than needed to keep the block compact."""
+    """Few rows where the width allows, more where it is narrow."""
     rows = min(MOST_ROWS, len(items))
     block = _block(scene, title, items, rows)
     while block.width > room and rows < len(items):
-        narrower = _block(scene, title, items, rows + 1)
-        if rows >= 2 * MOST_ROWS and room < 60:
-            rows = len(items)
-            return _block(scene, title, items, rows)
-        rows, block = rows + 1, narrower
-        if rows > 2 * MOST_ROWS:
-            break
+        rows += 1
+        block = _block(scene, title, items, rows)
+        if rows >= 2 * MOST_ROWS and room < NARROW_MM:
+            return _block(scene, title, items, len(items))
     return block
 
 

@@ -18,45 +18,32 @@ CAUTION_PLAIN = "Drawn from a typed log; check the source before any use that ma
 SYMBOLIC = "Ripples and clasts are drawn at symbolic size."
 
 
-def title_block(scene: Scene, width: float, scale_words: str) -> list[Shape]:
-    """Title and subtitle at the left, scale and authorship at the right, a rule below."""
+def title_block(scene: Scene, width: float, scale_words: str, sheet_words: str = "") -> list[Shape]:
+    """Title and subtitle at the left, sheet, scale and authorship at the right, a rule below."""
     style, header = scene.style, scene.log.header
     page, fonts, colours = style.page, style.fonts, style.colours
     left, right = page.margin, width - page.margin
-    lines = [scale_words]
     made = ", ".join(part for part in (header.date, header.logged_by) if part)
-    if made:
-        lines.append(f"Logged {clean(made)}")
-    extra = dict(header.extra)
-    if extra.get("note"):
-        lines.append(clean(extra["note"]))
-    room = 0.42 * (right - left)
+    lines = [
+        (sheet_words, fonts.label, colours.ink2),
+        (scale_words, fonts.subtitle, colours.ink),
+        (f"Logged {clean(made)}" if made else "", fonts.label, colours.ink2),
+        (clean(dict(header.extra).get("note", "")), fonts.label, colours.ink2),
+    ]
     shapes: list[Shape] = []
     widest = 0.0
-    for number, line in enumerate(lines[:3]):
-        size = fonts.subtitle if number == 0 else fonts.label
-        text = shorten(line, room, size)
-        widest = max(widest, width_mm(text, size))
-        y = page.rule - 7.4 + number * 3.0
-        shapes.append(
-            Text((right, y), text, size, colours.ink if number == 0 else colours.ink2, anchor="end")
-        )
-    free = right - left - widest - 4
-    title = shorten(
-        header.title or scene.log.name,
-        free,
-        fonts.title,
-        True,
-    )
+    y = page.rule - 10.4
+    for text, size, colour in lines:
+        shown = shorten(text, 0.42 * (right - left), size)
+        if shown:
+            widest = max(widest, width_mm(shown, size))
+            shapes.append(Text((right, y), shown, size, colour, anchor="end"))
+        y += 3.0
+    room = right - left - widest - 4
+    title = shorten(header.title or scene.log.name, room, fonts.title, True)
     shapes.append(Text((left, page.rule - 7.0), title, fonts.title, colours.ink, bold=True))
-    shapes.append(
-        Text(
-            (left, page.rule - 2.2),
-            shorten(subtitle(scene), free, fonts.subtitle),
-            fonts.subtitle,
-            colours.ink,
-        )
-    )
+    below = shorten(subtitle(scene), room, fonts.subtitle)
+    shapes.append(Text((left, page.rule - 2.2), below, fonts.subtitle, colours.ink))
     rule = polyline(((left, page.rule), (right, page.rule)))
     return [Group(tuple(shapes)), Path(rule, Paint(stroke=colours.ink, width=style.lines.rule))]
 

@@ -13,10 +13,21 @@ from logkit.drawing.palette import state_letter, state_tints
 from logkit.drawing.scene import Scene, Tally, View
 from logkit.drawing.shapes import Circle, Group, Paint, Path, Point, Segment, Shape, Text, polyline
 from logkit.drawing.tracks.texture import gap_reason
-from logkit.model import PhaseEstimate, Quantiles
+from logkit.model import Clash, PhaseEstimate, Quantiles
 
-CLASH_LEAST = 0.5
-"""From this conflict on the two readings are drawn apart instead of one ribbon."""
+CLUE_WORDS = {
+    "bed_state": "form",
+    "motion": "grain",
+    "grain_size": "grain",
+    "largest_clast": "clast",
+    "dune_sets": "sets",
+    "accretion_sets": "sets",
+    "suspension": "fall-out",
+    "stated_depth": "depth",
+    "stated_slope": "slope",
+    "mud_chips": "chips",
+}
+"""Words of one syllable or two for the boxes of a conflict; other criteria go by the last part of their id."""
 
 WORD_MM = 2.3
 THIN_MM = 2.4
@@ -31,14 +42,9 @@ class _End:
 
 
 def is_conflict(estimate: PhaseEstimate) -> bool:
-    """True when the clues of a phase are drawn apart."""
+    """True when the clues of a phase clash and are drawn apart."""
     clash = estimate.clash
-    return (
-        clash is not None
-        and estimate.conflict >= CLASH_LEAST
-        and clash.first_velocity is not None
-        and clash.second_velocity is not None
-    )
+    return clash is not None and (clash.first_velocity or clash.second_velocity) is not None
 
 
 def draw(scene: Scene, view: View, tally: Tally) -> list[Shape]:
@@ -72,7 +78,7 @@ def draw(scene: Scene, view: View, tally: Tally) -> list[Shape]:
                 continue
             if is_conflict(estimate):
                 tally.marks.add("conflict")
-                groups.append(_tag(_conflict(scene, axis, estimate, span, tally), item.id))
+                groups.append(_tag(_conflict(scene, axis, estimate, span), item.id))
                 last, broken = None, False
             elif estimate.status == "no estimate":
                 wipes.extend(_wipe(scene, span))
@@ -213,44 +219,52 @@ def arrow(
     return shapes
 
 
-def _conflict(
-    scene: Scene, axis: LogAxis, estimate: PhaseEstimate, span: tuple[float, float], tally: Tally
-) -> list[Shape]:
-    """Two hollow dashed boxes named by their clue, and a sign between them; never one average."""
+def _conflict(scene: Scene, axis: LogAxis, estimate: PhaseEstimate, span: tuple[float, float]) -> list[Shape]:
+    """Hollow dashed boxes named by their clues with a sign between them; never one average.
+
+    A clue that gives no velocity of its own has no box, only its word on the other side of the sign.
+    """
     style, clash = scene.style, estimate.clash
-    if clash is None or clash.first_velocity is None or clash.second_velocity is None:
+    if clash is None:
         return []
     tall = span[0] - span[1]
     edge = min(style.ribbon.edge, tall / 6)
-    y0, y1 = span[0] - edge, span[1] + edge
+    y0, y1, middle = span[0] - edge, span[1] + edge, (span[0] + span[1]) / 2
+    radius = min(1.15, tall / 2.2)
+    boxes = [(q, name) for q, name in _clues(clash) if q is not None]
+    boxes.sort(key=lambda pair: pair[0].p50)
+    ends = [(axis.x(quantiles.p10), axis.x(quantiles.p90)) for quantiles, _ in boxes]
+    sign_x = (ends[0][1] + ends[1][0]) / 2 if len(ends) == 2 else ends[0][1] + 0.4 + radius
+    sign_x = min(max(sign_x, axis.x0 + radius), axis.x1 - radius)
     paint = Paint(stroke=style.colours.ink, width=style.lines.contact, dash=(0.9, 0.6))
-    pairs: list[tuple[Quantiles, str]] = [
-        (clash.first_velocity, clash.first), (clash.second_velocity, clash.second)
-    ]  # fmt: skip
-    pairs.sort(key=lambda pair: pair[0].p50)
     shapes: list[Shape] = []
+    slots: list[tuple[float, float, str]] = []
+    for side, ((left, right), (_, name)) in enumerate(zip(ends, boxes, strict=True)):
+        box = polyline(((left, y0), (right, y0), (right, y1), (left, y1)), closed=True)
+        shapes.append(Path(box, paint))
+        free = (left, min(right, sign_x - radius)) if side == 0 else (max(left, sign_x + radius), right)
+        slots.append((*free, clue_word(name)))
+    for quantiles, name in _clues(clash):
+        if quantiles is None:
+            slots.append((sign_x + radius, axis.x1, clue_word(name)))
+    shapes.extend(conflict_sign((sign_x, middle), radius, scene))
     size = style.fonts.label
-    middle = (span[0] + span[1]) / 2
-    sign_x = (axis.x(pairs[0][0].p90) + axis.x(pairs[1][0].p10)) / 2
-    for side, (quantiles, name) in zip((-1, 1), pairs, strict=True):
-        left, right = axis.x(quantiles.p10), axis.x(quantiles.p90)
-        shapes.append(Path(polyline(((left, y0), (right, y0), (right, y1), (left, y1)), closed=True), paint))
-        free = (
-            (left + 0.4, min(right, sign_x - 1.4) - 0.2)
-            if side < 0
-            else (max(left, sign_x + 1.4) + 0.2, right - 0.4)
-        )
-        word = shorten(clue_word(name), free[1] - free[0], size) if tall >= WORD_MM + 0.4 else ""
-        if word == clue_word(name):
-            at = ((free[0] + free[1]) / 2, middle + 0.36 * size * MM_PER_POINT)
+    for left, right, word in slots:
+        if tall >= WORD_MM + 0.4 and width_mm(word, size) <= right - left - 0.6:
+            at = ((left + right) / 2, middle + 0.36 * size * MM_PER_POINT)
+            if (left + right) / 2 > sign_x + radius and right == axis.x1:
+                at = (left + 0.6 + width_mm(word, size) / 2, at[1])
             shapes.append(Text(at, word, size, style.colours.ink, anchor="middle"))
-    shapes.extend(conflict_sign((sign_x, middle), min(1.15, tall / 2.2), scene))
     return shapes
 
 
+def _clues(clash: Clash) -> tuple[tuple[Quantiles | None, str], ...]:
+    return ((clash.first_velocity, clash.first), (clash.second_velocity, clash.second))
+
+
 def clue_word(criterion: str) -> str:
-    """The short word for a criterion: last part of its id, without underscores."""
-    return criterion.rsplit(".", 1)[-1].replace("_", " ")
+    """The short word for a criterion."""
+    return CLUE_WORDS.get(criterion, criterion.rsplit(".", 1)[-1].replace("_", " "))
 
 
 def conflict_sign(centre: Point, radius: float, scene: Scene) -> list[Shape]:
