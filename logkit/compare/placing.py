@@ -116,7 +116,7 @@ def place_logs(
     converted = [_convert(log, measure, beside) for log, beside in zip(logs, companions, strict=True)]
     heights = _datum_heights(converted, chosen)
     placed = tuple(_hang(c, *found) for c, found in zip(converted, heights, strict=True))
-    return placed, chosen
+    return placed, _as_written(logs, chosen)
 
 
 def marker_key(name: str) -> str:
@@ -131,6 +131,15 @@ def markers(log: Log) -> dict[str, list[int]]:
         if bed.marker and not bed.is_gap:
             found.setdefault(marker_key(bed.marker), []).append(i)
     return found
+
+
+def _as_written(logs: Sequence[Log], datum: str) -> str:
+    """A marker as the first log that has it writes it; any other datum as it is."""
+    for log in logs:
+        at = markers(log).get(datum)
+        if at:
+            return log.beds[at[0]].marker
+    return datum
 
 
 def _chosen_datum(logs: Sequence[Log], datum: str | float | None) -> str:
@@ -296,16 +305,17 @@ def _from_neighbours(
         return base, "not seen and no other marker shared: hung by its base", False
     below = [k for k in offsets if offsets[k] > 0]
     above = [k for k in offsets if offsets[k] <= 0]
+    written = {key: c.beds[at[0]].marker for key, at in markers(c.log).items()}
     lower = min(below, key=lambda k: offsets[k], default=None)
     upper = max(above, key=lambda k: offsets[k], default=None)
     if lower and upper and own[upper] > own[lower]:
         share = offsets[lower] / (offsets[lower] - offsets[upper])
         position = own[lower] + share * (own[upper] - own[lower])
-        how = f"not seen: placed between {lower} and {upper} in the proportion of the other wells"
+        how = f"not seen: placed between {written[lower]} and {written[upper]} in the proportion of the other wells"
     else:
         nearest = min(offsets, key=lambda k: abs(offsets[k]))
         position = own[nearest] + offsets[nearest]
-        how = f"not seen: placed by its median distance from {nearest} in the other wells"
+        how = f"not seen: placed by its median distance from {written[nearest]} in the other wells"
     hidden = next((b for b in c.beds if b.is_gap and b.base_m <= position <= b.top_m), None)
     return position, how + (f", inside {hidden.name}" if hidden else ""), False
 

@@ -49,7 +49,7 @@ def hang(logs: list[Log], datum: str | float | None = None, thickness: str = "tr
 def test_the_base_of_the_marker_is_zero_in_every_well() -> None:
     """Wells hang on the base of the marker, in any case and spacing of its name."""
     placed, datum = hang([marked("A", {3: "Ash  2"}), marked("B", {6: "ash 2"}, 2.0)], "ASH 2")
-    assert datum == "ash 2"
+    assert datum == "Ash  2"
     assert placed[0].hung.beds[3].base_m == 0.0
     assert placed[1].hung.beds[6].base_m == 0.0
     assert placed[1].hung.beds[0].base_m == -12.0
