@@ -137,7 +137,7 @@ class Limit:
     ----------
     of : what is limited, in words or as the argument's public name ("d_mm", "h/D90")
     low, high : range, None where open, in the unit of `of`
-    measure : function of the SI keyword arguments that gives the limited number
+    measure : function of the SI keyword arguments, defaults included, that gives the limited number
     """
 
     of: str
@@ -329,6 +329,7 @@ def assess(id: str, **inputs: Any) -> Assessed:
     record = FORMULAS[id]
     arguments = _arguments(record, inputs)
     value = record.function(**arguments)
+    measured_on = _defaults(record.function) | arguments
     unit = _shown_unit(record.output.unit)
     if unit is not None and unit.factor != 1.0:
         value = unit.from_si(value)
@@ -341,7 +342,7 @@ def assess(id: str, **inputs: Any) -> Assessed:
     outside: Any = np.False_
     for limit in record.limits:
         try:
-            measured = np.asarray(limit.measure(**arguments), dtype=float)
+            measured = np.asarray(limit.measure(**measured_on), dtype=float)
         except TypeError:
             continue
         left = np.zeros(measured.shape, dtype=bool)
@@ -380,6 +381,11 @@ def _arguments(record: Formula, inputs: dict[str, Any]) -> dict[str, Any]:
         if name not in arguments and parameter.default is inspect.Parameter.empty:
             raise ArgumentError(name, None, f"given: {record.id} needs {', '.join(known)}")
     return arguments
+
+
+def _defaults(function: Callable[..., Any]) -> dict[str, Any]:
+    parameters = inspect.signature(function).parameters
+    return {n: p.default for n, p in parameters.items() if p.default is not inspect.Parameter.empty}
 
 
 def _guard(function: F, positive: tuple[str, ...], not_negative: tuple[str, ...]) -> F:

@@ -18,7 +18,7 @@ _RIPPLE_DSTAR = Limit(
     "D*",
     1.2,
     16,
-    lambda d50_m, submerged_gravity, nu_m2_s, g_m_s2=GRAVITY_M_S2, **_: dimensionless_diameter(
+    lambda d50_m, submerged_gravity, nu_m2_s, g_m_s2, **_: dimensionless_diameter(
         d50_m, submerged_gravity, nu_m2_s, g_m_s2
     ),
 )

@@ -61,9 +61,7 @@ def van_rijn_ucr(d50_m: Values, d90_m: Values, flow_depth_m: Values) -> Values:
     status="ours",
     inputs=SYMBOLS,
     limits=(
-        Limit(
-            "h/ks", 3, None, lambda d50_m, flow_depth_m, **_: np.divide(flow_depth_m, 2.5 * np.asarray(d50_m))
-        ),
+        Limit("h/ks", 3, None, lambda d50_m, flow_depth_m, **_: np.divide(flow_depth_m, ks_grain(d50_m))),
     ),
     positive=("d50_m", "flow_depth_m", "submerged_gravity", "nu_m2_s"),
     resolve=Fluid(("submerged_gravity", "nu_m2_s")),

@@ -25,7 +25,7 @@ _MEANINGS = SYMBOLS | {
     "drag_coefficient": "drag coefficient Cd",
     "lift_coefficient": "lift coefficient Cl on the difference of squared velocities",
 }
-_PIVOT = Limit("pivot_deg", 20, 75, lambda pivot_deg=45.0, **_: pivot_deg)
+_PIVOT = Limit("pivot_deg", 20, 75, lambda pivot_deg, **_: pivot_deg)
 _FORCE = (1.0, -2.0, 1.0)
 _THEORY = "coleman_1967"
 

@@ -10,6 +10,8 @@ import numpy as np
 from logkit.hydraulics.inputs import Values
 from logkit.registry import Limit, formula
 
+_TRANSPORT_JOIN = 1.35
+_EGIAZAROFF_JOIN = 0.38889
 _RELATIVE = {
     "sand_fraction": "sand fraction of the surface Fs, 0-1",
     "di_over_dsm": "size over geometric mean surface size Di/Dsm",
@@ -108,8 +110,8 @@ def wilcock_crowe_transport(stress_ratio: Values) -> Values:
     wilcock_crowe_2003
     """
     f = np.asarray(stress_ratio, dtype=float)
-    strong = np.maximum(f, 1.35)
-    return np.where(f < 1.35, 0.002 * f**7.5, 14 * (1 - 0.894 / np.sqrt(strong)) ** 4.5)
+    strong = np.maximum(f, _TRANSPORT_JOIN)
+    return np.where(f < _TRANSPORT_JOIN, 0.002 * f**7.5, 14 * (1 - 0.894 / np.sqrt(strong)) ** 4.5)
 
 
 @formula(
@@ -141,8 +143,8 @@ def egiazaroff(di_over_dm: Values) -> Values:
     egiazaroff_1965, ashida_michiue_1972
     """
     ratio = np.asarray(di_over_dm, dtype=float)
-    coarse = np.square(np.log(19) / np.log(19 * np.maximum(ratio, 0.38889)))
-    return np.where(ratio > 0.38889, coarse, 0.843 / ratio)
+    coarse = np.square(np.log(19) / np.log(19 * np.maximum(ratio, _EGIAZAROFF_JOIN)))
+    return np.where(ratio > _EGIAZAROFF_JOIN, coarse, 0.843 / ratio)
 
 
 def _hiding_power(

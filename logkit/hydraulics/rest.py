@@ -69,7 +69,7 @@ def hjulstrom_deposition(d_m: Values) -> Values:
     inputs=SYMBOLS | {"cessation_ratio": "c, share of the threshold at which motion stops"},
     limits=(
         _DEPTH_OVER_D90,
-        Limit("cessation_ratio", 0.44, 1, lambda cessation_ratio=0.8, **_: cessation_ratio),
+        Limit("cessation_ratio", 0.44, 1, lambda cessation_ratio, **_: cessation_ratio),
     ),
     positive=(*_BED, "cessation_ratio"),
     resolve=Fluid(("submerged_gravity", "nu_m2_s")),

@@ -158,11 +158,11 @@ def soulsby(d_m: Values, submerged_gravity: Values, nu_m2_s: Values, g_m_s2: Val
     inputs=SYMBOLS | {"csf": "Corey shape factor c/sqrt(a b)", "powers": "Powers roundness P, 0-6"},
     limits=(
         Limit(
-            "Dd", None, 5e9, lambda d_m, submerged_gravity, nu_m2_s, g_m_s2=GRAVITY_M_S2, **_: galileo(
+            "Dd", None, 5e9, lambda d_m, submerged_gravity, nu_m2_s, g_m_s2, **_: galileo(
                 d_m, submerged_gravity, nu_m2_s, g_m_s2)
         ),
-        Limit("csf", 0.15, 1, lambda csf=0.7, **_: csf),
-        Limit("powers", 0, 6, lambda powers=3.5, **_: powers),
+        Limit("csf", 0.15, 1, lambda csf, **_: csf),
+        Limit("powers", 0, 6, lambda powers, **_: powers),
     ),
     positive=(*_SIZES, "csf"),
     not_negative=("powers",),
@@ -197,12 +197,14 @@ def dietrich(
     """
     size = galileo(d_m, submerged_gravity, nu_m2_s, g_m_s2)
     flat = 1 - np.asarray(csf, dtype=float)
-    flat = np.where((flat >= 0) & (flat < 0.85), flat, np.nan)
+    flat = np.where(flat >= 0, flat, np.nan)
+    squash = 1 - flat / 0.85
+    squash = np.where(squash > 0, squash, np.nan)
     x = np.log10(size)
     bend = np.tanh(x - 4.6)
     r1 = -3.76715 + x * (1.92944 + x * (-0.09815 + x * (-0.00575 + x * 0.00056)))
     r2 = (
-        np.log10(1 - flat / 0.85)
+        np.log10(squash)
         - flat**2.3 * bend
         + 0.3 * (flat - 0.5) * np.square(flat) * (x - 4.6)
     )  # fmt: skip

@@ -183,8 +183,7 @@ def autosuspension_size(
 def _size_of_settling_velocity(ws: Values, gravity: Values, nu: Values, g: Values) -> Values:
     """Diameter that settles at ws by Ferguson & Church 18/1.0: its fixed point contracts."""
     pull = np.asarray(gravity) * g
-    viscous = np.sqrt(18 * np.asarray(nu) * ws / pull)
-    d = viscous + 0.75 * np.square(ws) / pull
+    d = np.sqrt(np.asarray(nu) * ws / pull) + np.square(ws) / pull
     for _ in range(200):
         new = np.sqrt(ws * (18 * np.asarray(nu) + np.sqrt(0.75 * pull * d**3)) / pull)
         if np.all((np.abs(new - d) <= 1e-10 * d) | np.isnan(d)):

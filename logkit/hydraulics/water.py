@@ -12,7 +12,7 @@ from logkit.registry import Limit, formula
 
 KELVIN = 273.15
 _EOS_TEMPERATURE = Limit("temp_c", 0, 40, lambda temp_c, **_: temp_c)
-_EOS_SALINITY = Limit("salinity", 0, 42, lambda salinity=0.0, **_: salinity)
+_EOS_SALINITY = Limit("salinity", 0, 42, lambda salinity, **_: salinity)
 
 
 @formula(
@@ -111,7 +111,7 @@ def density(temp_c: Values, salinity: Values = 0.0) -> Values:
     inputs=SYMBOLS,
     limits=(
         Limit("temp_c", 0, 180, lambda temp_c, **_: temp_c),
-        Limit("salinity", 0, 150, lambda salinity=0.0, **_: salinity),
+        Limit("salinity", 0, 150, lambda salinity, **_: salinity),
     ),
     not_negative=("salinity",),
     homogeneous=False,

@@ -119,7 +119,7 @@ def wiberg_harris_spacing(orbital_diameter_m: Values, d50_m: Values) -> Values:
     d0 = np.asarray(orbital_diameter_m, dtype=float)
     orbital, anorbital = 0.62 * d0, 535 * np.asarray(d50_m, dtype=float)
     # the steepness law has no root above d0/lambda = 24: far beyond the anorbital limit
-    relative = np.fmin(d0 / _height(d0, anorbital), np.where(np.isnan(d0), np.nan, 10 * _ANORBITAL_ABOVE))
+    relative = np.fmin(d0 / _height(d0, anorbital), np.where(np.isnan(d0), np.nan, np.inf))
     share = np.clip(np.log(relative / _ORBITAL_BELOW) / np.log(_ANORBITAL_ABOVE / _ORBITAL_BELOW), 0, 1)
     return orbital * (anorbital / orbital) ** share
 

@@ -195,6 +195,11 @@ def test_ripple_gives_a_region_of_waves() -> None:
     region = wave_region(0.1, 2e-4, R)
     assert len(region["period_s"]) > 10
     assert np.all(region["depth_max_m"] > 1.5 * region["depth_min_m"])
+    period = longest_period(0.1, 2e-4, R)
+    assert region["period_s"][-1] == pytest.approx(period)
+    assert region["period_s"][0] >= period / 5
+    # the deep end of the longest waves: half their deep-water wavelength, or less where they would break
+    assert region["depth_max_m"].max() == pytest.approx(9.81 * period**2 / (4 * np.pi), rel=0.02)
 
 
 def test_ripple_spacing_is_not_unique() -> None:

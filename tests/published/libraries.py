@@ -9,13 +9,18 @@ from printed import Printed
 
 
 def sphere_drag() -> Printed:
-    """Terminal velocity of smooth spheres by `fluids`, 4 µm to 60 mm."""
+    """Terminal velocity of smooth spheres by `fluids`, 0.05 to 60 mm."""
     from fluids import v_terminal
 
-    sizes = np.geomspace(4e-6, 0.06, 25)
+    sizes = np.geomspace(5e-5, 0.06, 25)
     expected = [v_terminal(D=d, rhop=2650.0, rho=1000.0, mu=1e-3, Method="Barati") for d in sizes]
-    inputs: dict[str, Any] = {"d_m": sizes.tolist(), "submerged_gravity": 1.65, "nu_m2_s": 1e-6}
-    return Printed("settling.sphere_drag", inputs, expected, 2e-3, "fluids, drag of smooth spheres")
+    inputs: dict[str, Any] = {
+        "d_m": sizes.tolist(),
+        "submerged_gravity": 1.65,
+        "nu_m2_s": 1e-6,
+        "g_m_s2": 9.80665,
+    }
+    return Printed("settling.sphere_drag", inputs, expected, 1e-5, "fluids, drag of smooth spheres")
 
 
 def fresh_viscosity() -> Printed:

@@ -2,19 +2,23 @@
 
 from __future__ import annotations
 
+import inspect
 import tomllib
+from collections.abc import Iterator
 from dataclasses import dataclass
+from importlib import import_module
 from pathlib import Path
 from typing import Any
 
 import numpy as np
 
-from logkit.registry import assess
+from logkit.registry import FORMULAS, assess
+from logkit.units import split_suffix
 
 FILE = Path(__file__).with_name("printed_equations.toml")
 NAMES = {
     name: getattr(np, name)
-    for name in ("log", "log10", "exp", "sin", "tan", "tanh", "radians", "pi", "minimum")
+    for name in ("log", "log10", "exp", "sin", "tan", "tanh", "radians", "pi", "minimum", "nan")
 }
 
 
@@ -37,8 +41,8 @@ class Printed:
         if np.broadcast_shapes(expected.shape, value.shape) != value.shape:
             return np.inf
         scale = np.where(expected == 0, 1, np.abs(expected))
-        worst = float(np.max(np.abs(value - expected) / scale))
-        return np.inf if np.isnan(worst) else worst
+        difference = np.where(np.isnan(expected) & np.isnan(value), 0, np.abs(value - expected) / scale)
+        return float(np.max(np.where(np.isnan(difference), np.inf, difference)))
 
     def met(self) -> bool:
         """Whether the formula gives what is printed."""
@@ -71,3 +75,36 @@ def _evaluated(equation: dict[str, Any]) -> Any:
         names[unknown] = value
         value = eval(equation["is"], {"__builtins__": {}}, names)
     return value
+
+
+def ranges() -> Iterator[tuple[str, bool]]:
+    """Whether each tested range is the one written down, and is measured on what it says."""
+    data = tomllib.loads(FILE.read_text(encoding="utf-8"))
+    for id, texts in data["limits"].items():
+        yield id, [str(limit) for limit in FORMULAS[id].limits] == texts
+        for limit in FORMULAS[id].limits:
+            stem, unit = split_suffix(limit.of)
+            for name in inspect.signature(FORMULAS[id].function).parameters:
+                if split_suffix(name)[0] == stem:
+                    measured = limit.measure(**{name: unit.to_si(3.0) if unit else 3.0})
+                    yield f"{id} {limit.of}", bool(np.isclose(measured, 3.0, rtol=1e-9))
+    for entry in data["measure"]:
+        limit = next(limit for limit in FORMULAS[entry["id"]].limits if limit.of == entry["of"])
+        given = {"g_m_s2": 9.81} | entry["in"]
+        wanted = eval(entry["is"], {"__builtins__": {}}, NAMES)
+        names = inspect.signature(limit.measure).parameters
+        if not any(p.kind is p.VAR_KEYWORD for p in names.values()) or limit.of in ("ws D/nu", "D*", "Dd"):
+            wanted_by_formula = inspect.signature(FORMULAS[entry["id"]].function).parameters
+            given = {n: v for n, v in given.items() if n in wanted_by_formula}
+        yield f"{entry['id']} {limit.of}", bool(np.isclose(limit.measure(**given), wanted, rtol=1e-9))
+
+
+def constants() -> Iterator[tuple[str, bool]]:
+    """Whether the constants that a module offers by name are those written down."""
+    for name, value in tomllib.loads(FILE.read_text(encoding="utf-8"))["constants"].items():
+        module, constant = name.split(".")
+        found = getattr(import_module(f"logkit.hydraulics.{module}"), constant)
+        if isinstance(value, dict):
+            yield name, {k: list(v) for k, v in found.items()} == value
+        else:
+            yield name, bool(np.allclose(found, value, rtol=1e-12))

@@ -38,6 +38,16 @@ def test_formula_gives_what_its_printed_equation_gives(case: printed.Printed) ->
     assert case.difference() <= case.rel_tol
 
 
+def test_tested_ranges_are_as_written_down() -> None:
+    """Every tested range has the written limits and is measured on what it names."""
+    assert [name for name, holds in printed.ranges() if not holds] == []
+
+
+def test_named_constants_are_as_written_down() -> None:
+    """The constants that modules offer by name are the printed ones."""
+    assert [name for name, holds in printed.constants() if not holds] == []
+
+
 @pytest.mark.parametrize(
     "comparison", [libraries.sphere_drag, libraries.fresh_viscosity, libraries.density, libraries.wavelength]
 )
