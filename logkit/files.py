@@ -1,4 +1,4 @@
-"""Files: written at once or not at all, and read with a clear word when they cannot be. Knows nothing of geology.
+"""Files: written at once or not at all, read with a clear word when they cannot be. Nothing of geology.
 
 Every output of logkit goes through `write_atomic`; no module opens a file for writing on its own.
 """
@@ -92,7 +92,7 @@ def read_bytes(path: str | Path) -> bytes:
 
     Raises
     ------
-    LogkitError : there is no such file, it is a folder or a device, it may not be read, or it is far too large
+    LogkitError : there is no such file, it is a folder, it may not be read, or it is far too large
     """
     source = Path(path)
     try:

@@ -1,0 +1,235 @@
+"""Columns found by their headings, in any order and case, with a unit in brackets or behind an underscore.
+
+Only headings belong here: which canonical column each is, and which unit its cells have when they name none.
+The words people write for a column are data (`vocabulary/data/columns.toml`).
+"""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Sequence
+from dataclasses import dataclass
+from functools import lru_cache
+
+from logkit.tables.cells.lengths import unit_symbol
+from logkit.tables.sheet import Collector, Row, Sheet
+from logkit.vocabulary import vocabulary
+
+OWN = ("core", "position", "from", "to", "measured", "gap", "as_written", "details")
+"""Columns beside those of the vocabulary.
+
+core : what was cut and recovered; position : heights or depths alone; from, to : in the order of the rows;
+measured : "no" for a layer of a counted pattern; gap : reason of a gap; as_written, details : written by logkit.
+"""
+_OWN_WORDS = {
+    "core": "core", "core run": "core", "run": "core", "core no": "core", "recovery": "core",
+    "height": "position", "running height": "position", "cumulative height": "position", "depth": "position",
+    "position": "position", "elevation": "position", "cum height": "position", "running heights": "position",
+    "heights": "position", "depths": "position",
+    "from": "from", "start": "from", "depth from": "from", "from depth": "from",
+    "to": "to", "end": "to", "depth to": "to", "to depth": "to",
+    "measured": "measured", "gap": "gap", "gap reason": "gap", "as written": "as_written", "details": "details",
+}  # fmt: skip
+SIZES = ("section", "bed", "height_in_bed", "position_m", "d50", "d10", "d90", "d95", "count", "method")
+"""Columns of the sheet of in-bed size readings."""
+_SIZES_WORDS = {
+    "section": "section", "well": "section", "bed": "bed", "bed no": "bed", "bed number": "bed", "unit": "bed",
+    "height in bed": "height_in_bed", "height": "height_in_bed", "height above base": "height_in_bed",
+    "position": "position_m", "depth": "position_m",
+    "d50": "d50", "median": "d50", "d10": "d10", "d90": "d90", "d95": "d95",
+    "count": "count", "n": "count", "number": "count", "grains": "count", "method": "method",
+}  # fmt: skip
+_PLACES = frozenset({"thickness", "base", "top", "position", "from", "to"})
+_MATTER = frozenset({"grain", "lithology", "grain_base", "grain_top", "structures"})
+_BRACKETS = re.compile(r"^(?P<name>.*?)\s*[\[({]\s*(?P<unit>[^\])}]*)\s*[\])}]\s*$")
+_SIZE_UNITS = {"phi": "phi", "φ": "phi", "Φ": "phi", "ϕ": "phi"}
+_OTHER_UNITS = {
+    "s": "s",
+    "sec": "s",
+    "deg": "deg",
+    "°": "deg",
+    "degrees": "deg",
+    "%": "%",
+    "m/m": "1",
+    "-": "1",
+}
+
+
+@dataclass(frozen=True, slots=True)
+class Column:
+    """One column of a sheet.
+
+    Attributes
+    ----------
+    index : place in the row
+    name : canonical name, "" for a heading nobody knows
+    heading : as written
+    unit : symbol of the unit in the heading, None without
+    """
+
+    index: int
+    name: str
+    heading: str
+    unit: str | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class Headings:
+    """The columns of a sheet and the row they stand in."""
+
+    columns: tuple[Column, ...]
+    row: Row
+
+    def get(self, name: str) -> Column | None:
+        """The column with a canonical name, None when the sheet has none."""
+        return next((c for c in self.columns if c.name == name), None)
+
+    @property
+    def names(self) -> frozenset[str]:
+        """Canonical names present."""
+        return frozenset(c.name for c in self.columns if c.name)
+
+
+@lru_cache(maxsize=4096)
+def match_heading(heading: str, sizes: bool = False) -> tuple[str, str | None, bool]:
+    """Canonical name, unit and whether a unit was written that nobody knows, of one heading.
+
+    Examples
+    --------
+    >>> match_heading("Top [ft]"), match_heading("base_m")
+    (('top', 'ft', False), ('base', 'm', False))
+    """
+    plain = " ".join(heading.replace("\ufeff", "").strip().strip("#:").split())
+    if not plain:
+        return "bed" if heading.strip() == "#" and not sizes else "", None, False
+    bracket = _BRACKETS.match(plain)
+    if bracket and (name := _find(bracket["name"], sizes)):
+        unit = _unit(bracket["unit"])
+        return name, unit, bool(bracket["unit"]) and unit is None
+    for mark in ("_", " ", ",", "/"):
+        stem, parted, tail = plain.rpartition(mark)
+        if (
+            parted
+            and (unit := _unit(tail))
+            and (name := _find(stem.rstrip(" ,"), sizes) or _find_before_in(stem, sizes))
+        ):
+            return name, unit, False
+    return _find(plain, sizes), None, False
+
+
+def _find_before_in(stem: str, sizes: bool) -> str:
+    """The column of `Thickness in cm`, whose stem ends in the word `in`."""
+    plain = stem.rstrip(" ,")
+    return _find(plain[:-3], sizes) if plain.casefold().endswith(" in") else ""
+
+
+def _find(text: str, sizes: bool) -> str:
+    plain = " ".join(text.replace("_", " ").casefold().strip(" .:").split())
+    if not plain:
+        return ""
+    if sizes:
+        return _SIZES_WORDS.get(plain, "")
+    if plain in _OWN_WORDS:
+        return _OWN_WORDS[plain]
+    known = vocabulary("columns")
+    if plain.replace(" ", "_") in known:
+        return plain.replace(" ", "_")
+    term = known.find(text.replace("_", " "))
+    return term.id if term else ""
+
+
+def _unit(text: str) -> str | None:
+    plain = text.strip().strip(".").strip()
+    if plain.startswith("in ") and len(plain) > 3:
+        plain = plain[3:]
+    low = plain.casefold()
+    return unit_symbol(plain) or _SIZE_UNITS.get(low) or _OTHER_UNITS.get(low)
+
+
+def heading_score(cells: Sequence[str], sizes: bool = False) -> float:
+    """How much a row looks like headings: known columns, less a share for cells nobody knows."""
+    names = {name for cell in cells if cell.strip() for name in [match_heading(cell, sizes)[0]] if name}
+    unknown = sum(1 for cell in cells if cell.strip() and not match_heading(cell, sizes)[0])
+    return len(names) - 0.2 * min(unknown, 4) if names else 0.0
+
+
+def find_headings(sheet: Sheet, found: Collector, sizes: bool = False) -> Headings | None:
+    """The heading row of a sheet: the row near the beginning with most known columns.
+
+    Rows above it that hold a key and a value become header lines; others are noted. None when there is no
+    heading row; the rows left in the sheet are those below it.
+    """
+    best, place = 0.0, -1
+    for index, row in enumerate(sheet.rows[:40]):
+        score = heading_score(row.cells, sizes)
+        names = {match_heading(cell, sizes)[0] for cell in row.cells}
+        usable = bool(names & {"d50", "bed"}) if sizes else bool(names & _PLACES or names & _MATTER)
+        if usable and score > best:
+            best, place = score, index
+    if place < 0:
+        return None
+    for row in sheet.rows[:place]:
+        _keep_above(row, sheet, found)
+    row = sheet.rows[place]
+    columns = _columns(row, found, sizes)
+    rest = sheet.rows[place + 1 :]
+    if rest and not sizes:
+        columns, rest = _with_unit_row(columns, rest)
+    sheet.rows = rest
+    return Headings(tuple(columns), row)
+
+
+def _keep_above(row: Row, sheet: Sheet, found: Collector) -> None:
+    """A row above the headings: a header line, or something to note."""
+    cells = [cell for cell in row.cells if cell]
+    if len(cells) == 1 and ":" in cells[0]:
+        key, _, value = cells[0].lstrip("# ").partition(":")
+        sheet.header.append((key.strip(), value.strip(), row.number))
+    elif len(cells) == 2:
+        sheet.header.append((cells[0].strip("#: "), cells[1], row.number))
+    elif cells:
+        found.add("note", "file.row_above_headings", "a row above the headings is not read as a bed",
+                  "write header lines as # key: value", row=row.number, cell=" | ".join(cells))  # fmt: skip
+
+
+def _columns(row: Row, found: Collector, sizes: bool) -> list[Column]:
+    columns: list[Column] = []
+    seen: dict[str, str] = {}
+    for index, heading in enumerate(row.cells):
+        name, unit, odd = match_heading(heading, sizes)
+        if not heading:
+            columns.append(Column(index, "", ""))
+            continue
+        if not name:
+            near = None if sizes else vocabulary("columns").nearest(heading)
+            found.add("question" if near else "note", "heading.unknown",
+                      f"no column is called {heading[:60]!r}; its cells are kept as written and not read",
+                      "correct the heading, or leave it if the column is your own",
+                      row=row.number, cell=heading, nearest=near or "",
+                      choices=("a column of your own", near) if near else ())  # fmt: skip
+        elif name in seen:
+            found.add("question", "heading.doubled",
+                      f"{heading[:60]!r} and {seen[name][:60]!r} are both the column {name}; the first one is read",
+                      "rename one of them", row=row.number, column=name, cell=heading,
+                      choices=(seen[name][:60], heading[:60]))  # fmt: skip
+            name = ""
+        elif odd:
+            found.add("question", "heading.unit", f"the unit in {heading[:60]!r} is not known and is left out",
+                      "use m, cm, mm, ft or in", row=row.number, column=name, cell=heading,
+                      choices=("the unit of the sheet",))  # fmt: skip
+        if name:
+            seen[name] = heading
+        columns.append(Column(index, name, heading, unit))
+    return columns
+
+
+def _with_unit_row(columns: list[Column], rest: list[Row]) -> tuple[list[Column], list[Row]]:
+    """Columns with the units of a row of units below the headings, if there is one, and the rows after it."""
+    cells = rest[0].cells
+    units = {i: _unit(cell.strip("[](){} ")) for i, cell in enumerate(cells) if cell.strip("[](){} ")}
+    if not units or not all(units.values()):
+        return columns, rest
+    filled = [
+        Column(c.index, c.name, c.heading, c.unit or units.get(c.index)) if c.name else c for c in columns
+    ]
+    return filled, rest[1:]

@@ -1,0 +1,147 @@
+"""Logs into files: the normalised table with its header lines and in-bed sizes, whole or not at all.
+
+Only the forms of files belong here; the cells come from `canonical` and `frame`.
+"""
+
+from __future__ import annotations
+
+import csv
+import io
+from collections.abc import Iterable, Sequence
+from pathlib import Path
+from typing import Any
+
+from logkit.errors import LogkitError, UnknownNameError
+from logkit.files import write_atomic
+from logkit.model import Log
+from logkit.tables.canonical import COLUMNS
+from logkit.tables.frame import columns_used, plain_cell, table_rows
+from logkit.tables.header import header_lines
+from logkit.tables.text import FORMULA_SIGNS, escape
+
+SIZES_HEADINGS = ("section", "bed", "position_m", "d50_mm", "d10_mm", "d90_mm", "d95_mm", "count", "method")
+SEPARATED = {".csv": ",", ".tsv": "\t", ".txt": "\t"}
+_LONGEST_IN_WORKBOOK = 32767
+
+Cells = Sequence[Any]
+
+
+def write_log(log: Log, path: str | Path) -> Path:
+    """Write the normalised table; `read_log` gives the same log back.
+
+    Parameters
+    ----------
+    log : the log; a log of depths is written as depths, from the top down
+    path : `.csv`, `.tsv` or `.xlsx`; in-bed sizes go into `NAME.sizes.csv` beside it, or into a sheet of their own
+
+    Returns
+    -------
+    The path written.
+
+    Raises
+    ------
+    LogkitError : the ending is not known, the file cannot be written, or a text is too long for a workbook
+    """
+    target = Path(path)
+    rows = table_rows(log, depths=True)
+    names = columns_used(rows)
+    lines = header_lines(log.header)
+    unit = log.header.unit or "m"
+    depth_heads = {"base": f"base_{unit}", "top": f"top_{unit}"} if log.header.direction == "down" else {}
+    table = [[depth_heads.get(name, COLUMNS[name]) for name in names]]
+    table += [[row.get(name, "") for name in names] for row in rows]
+    sizes = [list(SIZES_HEADINGS), *_size_rows(log)]
+    return write_tables(target, lines, table, sizes)
+
+
+def write_tables(
+    target: Path, lines: Sequence[tuple[str, str]], table: Sequence[Cells], sizes: Sequence[Cells]
+) -> Path:
+    """Write header lines, a table and a table of sizes (headings first) in the form the ending asks for.
+
+    Raises
+    ------
+    LogkitError : as `write_log`
+    """
+    ending = target.suffix.lower()
+    if ending == ".xlsx":
+        return write_atomic(target, _workbook(lines, table, sizes))
+    if ending not in SEPARATED:
+        raise UnknownNameError("form of table", ending or str(target), (*SEPARATED, ".xlsx"))
+    separator = SEPARATED[ending]
+    companion = target.with_suffix(".sizes" + (ending if ending != ".txt" else ".tsv"))
+    if len(sizes) > 1 or companion.exists():
+        # an old companion of a table that is replaced must not be taken for the new one's
+        write_atomic(companion, separated(sizes, "," if ending == ".csv" else "\t"))
+    head = "".join(f"# {key}: {value}\n" for key, value in lines)
+    return write_atomic(target, head + separated(table, separator))
+
+
+def separated(rows: Iterable[Cells], separator: str) -> str:
+    """Rows as text; no cell is taken for a formula by a spreadsheet that opens it."""
+    buffer = io.StringIO()
+    writer = csv.writer(buffer, delimiter=separator, lineterminator="\n")
+    for row in rows:
+        writer.writerow([escape(cell) if isinstance(cell, str) else number_text(cell) for cell in row])
+    return buffer.getvalue()
+
+
+def number_text(value: float | int | None) -> str:
+    """The shortest text that reads back as the same number; "" for None."""
+    if value is None:
+        return ""
+    return str(value) if isinstance(value, int) else repr(float(value))
+
+
+def _size_rows(log: Log) -> list[list[Any]]:
+    sign = -1.0 if log.header.direction == "down" else 1.0
+    return [
+        [plain_cell(log.header.section), plain_cell(bed.name), sign * r.position_m, r.d50_mm, r.d10_mm, r.d90_mm,
+         r.d95_mm, r.count, plain_cell(r.method)]
+        for bed in log.beds
+        for r in bed.sizes
+    ]  # fmt: skip
+
+
+def _workbook(lines: Sequence[tuple[str, str]], table: Sequence[Cells], sizes: Sequence[Cells]) -> bytes:
+    from openpyxl import Workbook
+
+    book = Workbook()
+    header = book.active
+    header.title = "header"
+    _fill(header, [("key", "value"), *lines])
+    header.column_dimensions["A"].width, header.column_dimensions["B"].width = 22, 60
+    beds = book.create_sheet("beds")
+    _fill(beds, table)
+    beds.freeze_panes = "A2"
+    if len(sizes) > 1:
+        _fill(book.create_sheet("sizes"), sizes)
+    book.active = book.index(beds)
+    buffer = io.BytesIO()
+    book.save(buffer)
+    return buffer.getvalue()
+
+
+def _fill(sheet: Any, rows: Sequence[Cells]) -> None:
+    """Cells into a sheet: numbers as numbers, everything else as text, whatever it begins with."""
+    from openpyxl.styles import Font
+
+    for i, row in enumerate(rows, start=1):
+        for j, value in enumerate(row, start=1):
+            if value is None or value == "":
+                continue
+            cell = sheet.cell(row=i, column=j)
+            if isinstance(value, float) and float(f"{value:.16g}") != value:
+                value = repr(value)  # a workbook keeps 16 digits of a number, one too few for some
+            if isinstance(value, str):
+                if len(value) > _LONGEST_IN_WORKBOOK:
+                    raise LogkitError(
+                        f"A cell has {len(value)} characters, too many for a workbook.", "Write csv instead."
+                    )
+                cell.value = value
+                cell.data_type = "s"
+                cell.quotePrefix = value[0] in FORMULA_SIGNS
+            else:
+                cell.value = value
+            if i == 1:
+                cell.font = Font(bold=True)
