@@ -1,4 +1,4 @@
-"""The ground that marks are put on: a bed's outline, its grain size at each height, and lines to keep clear of.
+"""The ground that marks are put on: a bed's outline, its grain size at each height, and lines to keep off.
 
 Geometry only: which mark goes where is decided in `textures`, `textures_rock` and `structures`.
 """
@@ -6,7 +6,7 @@ Geometry only: which mark goes where is decided in `textures`, `textures_rock` a
 from __future__ import annotations
 
 from collections.abc import Sequence
-from functools import cache
+from functools import cache, cached_property
 
 import numpy as np
 from numpy.typing import NDArray
@@ -19,7 +19,7 @@ Mask = NDArray[np.bool_]
 LineSegment = tuple[float, float, float, float]
 """x0, y0, x1, y1 in mm."""
 
-_CELL_MM = 0.1
+_CELL_MM = 0.1  # of the raster that remembers lines; larger only on very large grounds
 _MOST_CELLS = 4_000_000
 
 
@@ -41,18 +41,27 @@ class Ground:
         seed: int,
         clear: Sequence[LineSegment] = (),
     ) -> None:
-        self.outline = np.asarray(outline, dtype=float)
+        points = [(float(x), float(y)) for x, y in outline]
+        self.outline = np.array(points)
         ordered = sorted(knots)
         self._knot_y = np.array([y for y, _ in ordered])
         self._knot_phi = np.array([phi for _, phi in ordered])
         self.seed = seed
-        x, y = self.outline[:, 0], self.outline[:, 1]
-        self.box = (float(x.min()), float(y.min()), float(x.max()), float(y.max()))
-        self.area = 0.5 * abs(float(np.dot(x, np.roll(y, 1)) - np.dot(y, np.roll(x, 1))))
-        self.random = np.random.default_rng(seed)
-        edges = np.concatenate([self.outline, np.roll(self.outline, -1, axis=0)], axis=1)
-        lines = np.concatenate([edges, np.asarray(clear, dtype=float).reshape(-1, 4)])
-        self._raster = _raster(lines, self.box)
+        xs, ys = [x for x, _ in points], [y for _, y in points]
+        self.box = (min(xs), min(ys), max(xs), max(ys))
+        turned = [*points[1:], points[0]]
+        self.area = 0.5 * abs(sum(a[0] * b[1] - a[1] * b[0] for a, b in zip(points, turned, strict=True)))
+        self.phi_range = (min(phi for _, phi in ordered), max(phi for _, phi in ordered))
+        self._edges = np.array([(*a, *b) for a, b in zip(points, turned, strict=True) if a != b])
+        self._raster: Mask | None = None
+        self._cell = _CELL_MM
+        if len(clear):
+            self._mark(np.asarray(clear, dtype=float).reshape(-1, 4))
+
+    @cached_property
+    def random(self) -> np.random.Generator:
+        """Source of every random choice on this ground."""
+        return np.random.default_rng(self.seed)
 
     @property
     def height(self) -> float:
@@ -64,11 +73,6 @@ class Ground:
         """Greatest width of the ground, mm."""
         return self.box[2] - self.box[0]
 
-    @property
-    def phi_range(self) -> tuple[float, float]:
-        """Coarsest and finest grain size on the ground, phi."""
-        return float(self._knot_phi.min()), float(self._knot_phi.max())
-
     def phi_at(self, y: Array) -> Array:
         """Grain size at heights on the page, phi."""
         return np.interp(y, self._knot_y, self._knot_phi)
@@ -76,7 +80,7 @@ class Ground:
     def points(
         self, spacing: float, stretch: tuple[float, float] = (1.0, 1.0), salt: int = 0
     ) -> tuple[Array, Array, Array]:
-        """Blue-noise candidates over the box: x, y, and the spacing each point can serve (see `noise.scatter`).
+        """Blue-noise candidates over the box: x, y, and what spacing they serve (see `noise`).
 
         A stretch of (2, 1) puts points twice as far apart along the bed as across it.
         """
@@ -86,43 +90,78 @@ class Ground:
         x, y, reach = scatter(box, max(spacing, FINEST_MM), self.seed + salt)
         return x * sx, y * sy, reach
 
+    def block(self, px: Array, py: Array) -> None:
+        """Keep later marks clear of marks already made: points on the last axis."""
+        start = np.stack([px[:, :-1].ravel(), py[:, :-1].ravel()], axis=1)
+        end = np.stack([px[:, 1:].ravel(), py[:, 1:].ravel()], axis=1)
+        self._mark(np.concatenate([start, end], axis=1))
+
     def holds(self, x: Array, y: Array, margin: Array | float) -> Mask:
         """True for points inside the outline and at least `margin` mm from its edge and every line."""
-        inside = self._inside(x, y)
-        index = np.flatnonzero(inside)
-        if index.size:
+        if not x.size:
+            return np.zeros(x.shape, dtype=bool)
+        held = self._inside(x, y, margin)
+        if self._raster is not None:
+            index = np.flatnonzero(held)
             margins = np.broadcast_to(np.asarray(margin, dtype=float), x.shape)[index]
-            inside[index] = ~self._near(x[index], y[index], margins)
-        return inside
+            held[index] = ~self._near(x[index], y[index], margins)
+        return held
 
     def holds_marks(self, x: Array, y: Array, margin: float) -> Mask:
         """True for marks all of whose points (last axis) are held."""
         held = self.holds(x.ravel(), y.ravel(), margin).reshape(x.shape)
         return np.asarray(held.all(axis=-1))
 
-    def _inside(self, x: Array, y: Array) -> Mask:
-        inside = np.zeros(x.shape, dtype=bool)
-        ax, ay = self.outline[:, 0], self.outline[:, 1]
-        bx, by = np.roll(ax, -1), np.roll(ay, -1)
-        for i in np.flatnonzero(ay != by):
-            crosses = (ay[i] > y) != (by[i] > y)
-            at = ax[i] + (y - ay[i]) * ((bx[i] - ax[i]) / (by[i] - ay[i]))
-            inside ^= crosses & (x < at)
-        return inside
+    def _inside(self, x: Array, y: Array, margin: Array | float) -> Mask:
+        """Even-odd test and distance from all edges at once; the edges are few."""
+        ax, ay, bx, by = self._edges.T
+        ex, ey = bx - ax, by - ay
+        dx, dy = x[:, None] - ax, y[:, None] - ay
+        crosses = (dy < 0) != (y[:, None] < by)
+        with np.errstate(divide="ignore", invalid="ignore"):
+            crosses &= dx < dy * (ex / ey)
+        along = (dx * ex + dy * ey) / (ex * ex + ey * ey)
+        np.minimum(np.maximum(along, 0.0, out=along), 1.0, out=along)
+        dx -= along * ex
+        dy -= along * ey
+        near = np.min(dx * dx + dy * dy, axis=1)
+        return np.asarray((np.count_nonzero(crosses, axis=1) & 1).astype(bool) & (near >= np.square(margin)))
 
     def _near(self, x: Array, y: Array, margin: Array) -> Mask:
-        raster = self._raster
-        if raster is None:
-            return np.zeros(x.shape, dtype=bool)
-        column = ((x - self.box[0]) / _CELL_MM).astype(int) + _PAD
-        row = ((y - self.box[1]) / _CELL_MM).astype(int) + _PAD
-        steps = np.clip(np.ceil(margin / _CELL_MM).astype(int), 0, _PAD)
+        raster = self._grid()
+        column = ((x - self.box[0]) / self._cell).astype(int) + _PAD
+        row = ((y - self.box[1]) / self._cell).astype(int) + _PAD
+        steps = np.clip(np.ceil(margin / self._cell).astype(int), 0, _PAD)
         near = np.zeros(x.shape, dtype=bool)
         for reach in np.unique(steps):
             here = np.flatnonzero(steps == reach)
             dr, dc = _disc(int(reach))
             near[here] = raster[row[here, None] + dr, column[here, None] + dc].any(axis=1)
         return near
+
+    def _grid(self) -> Mask:
+        """The raster that remembers lines, made when the first one comes."""
+        if self._raster is None:
+            self._cell = max(_CELL_MM, ((self.width + 3) * (self.height + 3) / _MOST_CELLS) ** 0.5)
+            rows, columns = (int(extent / self._cell) + 2 * _PAD + 2 for extent in (self.height, self.width))
+            self._raster = np.zeros((rows, columns), dtype=bool)
+        return self._raster
+
+    def _mark(self, lines: Array) -> None:
+        """Set the cells that lines pass."""
+        raster = self._grid()
+        rows, columns = raster.shape
+        start, step = lines[:, :2], lines[:, 2:] - lines[:, :2]
+        size = np.hypot(step[:, 0], step[:, 1])
+        count = np.maximum(np.ceil(size / (0.9 * self._cell)).astype(int), 1) + 1
+        which = np.repeat(np.arange(len(lines)), count)
+        place = np.arange(count.sum()) - np.repeat(np.cumsum(count) - count, count)
+        along = (place / (count - 1)[which])[:, None]
+        at = start[which] + along * step[which]
+        column = np.floor((at[:, 0] - self.box[0]) / self._cell).astype(int) + _PAD
+        row = np.floor((at[:, 1] - self.box[1]) / self._cell).astype(int) + _PAD
+        kept = (row >= 0) & (row < rows) & (column >= 0) & (column < columns)
+        raster[row[kept], column[kept]] = True
 
 
 _PAD = 12
@@ -135,23 +174,3 @@ def _disc(reach: int) -> tuple[NDArray[np.int64], NDArray[np.int64]]:
     rows, columns = np.meshgrid(span, span, indexing="ij")
     round_ = rows**2 + columns**2 <= (reach + 0.3) ** 2
     return rows[round_], columns[round_]
-
-
-def _raster(lines: Array, box: tuple[float, float, float, float]) -> Mask | None:
-    """Cells of the box that a line passes; None when the box is too large for it to matter."""
-    rows = int((box[3] - box[1]) / _CELL_MM) + 2 * _PAD + 2
-    columns = int((box[2] - box[0]) / _CELL_MM) + 2 * _PAD + 2
-    if rows * columns > _MOST_CELLS:
-        return None
-    raster = np.zeros((rows, columns), dtype=bool)
-    start, step = lines[:, :2], lines[:, 2:] - lines[:, :2]
-    count = np.maximum(np.ceil(np.hypot(step[:, 0], step[:, 1]) / (0.9 * _CELL_MM)).astype(int), 1) + 1
-    which = np.repeat(np.arange(len(lines)), count)
-    place = np.arange(count.sum()) - np.repeat(np.cumsum(count) - count, count)
-    along = (place / (count - 1)[which])[:, None]
-    at = start[which] + along * step[which]
-    column = np.floor((at[:, 0] - box[0]) / _CELL_MM).astype(int) + _PAD
-    row = np.floor((at[:, 1] - box[1]) / _CELL_MM).astype(int) + _PAD
-    kept = (row >= 0) & (row < rows) & (column >= 0) & (column < columns)
-    raster[row[kept], column[kept]] = True
-    return raster

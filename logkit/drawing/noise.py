@@ -76,5 +76,7 @@ def scatter(
     if not parts:
         empty = np.empty(0)
         return empty, empty, empty
+    if len(parts) == 1:
+        return parts[0][0], parts[0][1], parts[0][2] / _RANK_FACTOR
     x, y, rank = (np.concatenate(column) for column in zip(*parts, strict=True))
     return x, y, rank / _RANK_FACTOR

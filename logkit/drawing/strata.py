@@ -61,7 +61,7 @@ class Troughs:
         height = max(height, 1.6)
         rows = levels(box, height, random, 0.15)
         height = (box[3] - box[1]) / len(rows)
-        half, depth = max(2.6, self.width * height), self.depth * height
+        half, depth = max(3.2, self.width * height), self.depth * height
         troughs: list[tuple[float, float, float, float]] = []
         for number, base in enumerate(rows):
             x = box[0] - half * (0.3 + random.random()) - (number % 2) * 0.5 * half

@@ -147,8 +147,10 @@ def _textures(style: Style, k: float) -> _Canvas:
     page = _Canvas(style, "Textures and colours", k)
     _ladder(page, 8.0 * k, 24.0 * k, k)
     _families(page, 70.0 * k, 24.0 * k, k)
-    _ramps(page, 8.0 * k, 206.0 * k, k)
-    _states(page, 120.0 * k, 206.0 * k, k)
+    coloured = style.palette.step > 0
+    if coloured:
+        _ramps(page, 8.0 * k, 206.0 * k, k)
+    _states(page, (120.0 if coloured else 8.0) * k, 206.0 * k, k)
     return page
 
 

@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Sequence
+from math import isfinite
 
 import numpy as np
 from numpy.typing import NDArray
@@ -64,10 +65,7 @@ def bed_texture(
     """
     if len(outline) < 3:
         raise ArgumentError("outline", len(outline), "a polygon of at least three points")
-    if (
-        not np.isfinite(np.asarray(outline, dtype=float)).all()
-        or not np.isfinite([n for k in knots for n in k]).all()
-    ):
+    if not all(isfinite(x) and isfinite(y) for x, y in (*outline, *knots)):
         raise ArgumentError("outline", "not finite", "finite numbers in outline and knots")
     ys = [y for _, y in outline]
     if not style.texture.dots or max(ys) - min(ys) < style.texture.least_bed:
@@ -78,21 +76,21 @@ def bed_texture(
     rock = ROCK_MARKS.get(family)
     if rock is not None:
         return rock(ground, style, ink, _loose_grains)
-    shapes = _loose_grains(ground, style, ink, lithic=family == "lithic")
-    if family == "organic_mud":
-        shapes += organic_flecks(ground, style, ink)
-    return shapes
+    flecks = organic_flecks(ground, style, ink) if family == "organic_mud" else ()
+    return flecks + _loose_grains(ground, style, ink, lithic=family == "lithic")
 
 
 def dot_diameter(phi: Array, texture: TextureStyle) -> Array:
     """Diameter of the dots at a grain size, mm, in steps of 0.05 from 0.15 up."""
-    wide = texture.diameter * 2 ** (texture.diameter_rate * (4 - np.clip(phi, -1, 5)))
+    wide = texture.diameter * 2 ** (texture.diameter_rate * (4 - np.minimum(np.maximum(phi, -1.0), 5.0)))
     return np.maximum(np.round(wide / 0.05) * 0.05, 0.15)
 
 
 def dot_spacing(phi: Array, texture: TextureStyle) -> Array:
     """Least distance between dots at a grain size, mm."""
-    return np.asarray(texture.spacing * 2 ** (texture.spacing_rate * (4 - np.clip(phi, -1, 5))))
+    return np.asarray(
+        texture.spacing * 2 ** (texture.spacing_rate * (4 - np.minimum(np.maximum(phi, -1.0), 5.0)))
+    )
 
 
 def _loose_grains(
@@ -114,17 +112,16 @@ def _dots(ground: Ground, style: Style, ink: str, lithic: bool, density: float) 
     texture = style.texture
     _, finest = ground.phi_range
     loosened = 1 / math.sqrt(density)
-    closest = float(dot_spacing(np.array(finest), texture)) * loosened
+    closest = float(dot_spacing(np.array(min(finest, MUD_ONLY)), texture)) * loosened
     expected = 0.7 * ground.area / closest**2
     loosened *= max(1.0, math.sqrt(expected / texture.most_dots))
     x, y, reach = ground.points(max(closest * loosened, FINEST_MM))
     phi = ground.phi_at(y)
     kept = (reach >= dot_spacing(phi, texture) * loosened) & (phi > SAND_COARSEST) & (phi < MUD_ONLY)
-    x, y, phi = x[kept], y[kept], phi[kept]
-    mixing = np.where(phi <= SAND_FINEST, 1.0, 0.55 * (MUD_ONLY - phi) / 2)
-    kept = ground.random.random(x.size) < mixing
-    x, y, phi = x[kept], y[kept], phi[kept]
-    diameter = dot_diameter(phi, texture)
+    if finest > SAND_FINEST:
+        mixing = np.where(phi <= SAND_FINEST, 1.0, 0.55 * (MUD_ONLY - phi) / 2)
+        kept &= ground.random.random(x.size) < mixing
+    x, y, diameter = x[kept], y[kept], dot_diameter(phi[kept], texture)
     held = ground.holds(x, y, texture.clear + diameter / 2)
     x, y, diameter = x[held], y[held], diameter[held]
     shapes: list[Shape] = []
@@ -132,19 +129,18 @@ def _dots(ground: Ground, style: Style, ink: str, lithic: bool, density: float) 
         angular = (diameter > 0.26) & (ground.random.random(x.size) < texture.triangles)
         shapes += _triangles(ground, x[angular], y[angular], diameter[angular], ink)
         x, y, diameter = x[~angular], y[~angular], diameter[~angular]
-    for size in np.unique(np.round(diameter, 2)):
-        same = np.abs(diameter - size) < 0.01
-        points = tuple(zip(x[same].tolist(), y[same].tolist(), strict=True))
-        shapes.append(Dots(points, float(size), ink))
-    return tuple(shapes)
+    by_size: dict[float, list[Point]] = {}
+    for size, *point in zip(diameter.tolist(), x.tolist(), y.tolist(), strict=True):
+        by_size.setdefault(round(size, 2), []).append((point[0], point[1]))
+    return (*shapes, *(Dots(tuple(points), size, ink) for size, points in sorted(by_size.items())))
 
 
 def _triangles(ground: Ground, x: Array, y: Array, diameter: Array, ink: str) -> list[Shape]:
     if not x.size:
         return []
     turn = ground.random.random(x.size)[:, None] * 2 * np.pi + np.array([0.0, 2.2, 4.1])
-    corner_x = (x[:, None] + 0.9 * diameter[:, None] * np.cos(turn)).tolist()
-    corner_y = (y[:, None] + 0.9 * diameter[:, None] * np.sin(turn)).tolist()
+    corner_x = (x[:, None] + 1.05 * diameter[:, None] * np.cos(turn)).tolist()
+    corner_y = (y[:, None] + 1.05 * diameter[:, None] * np.sin(turn)).tolist()
     steps: list[Segment] = []
     for xs, ys in zip(corner_x, corner_y, strict=True):
         steps += [("M", (xs[0], ys[0])), ("L", (xs[1], ys[1])), ("L", (xs[2], ys[2])), ("Z", ())]
@@ -211,19 +207,17 @@ def _clasts(ground: Ground, style: Style) -> tuple[Shape, ...]:
 
 
 def _packed(u: Array, v: Array, radius: Array, order: NDArray[np.int64], gap: float) -> Array:
-    """Radii lowered, in the order given, until no circle comes nearer to an earlier one than `gap`; 0 where it cannot."""
-    placed = np.zeros(u.size)
-    done: list[int] = []
-    for i in order.tolist():
-        if done:
-            near = np.asarray(done)
-            room = float((np.hypot(u[near] - u[i], v[near] - v[i]) - placed[near]).min()) - gap
-            placed[i] = min(radius[i], room) if room > 0.3 * radius[i] else 0.0
-        else:
-            placed[i] = radius[i]
-        if placed[i] > 0:
-            done.append(i)
-    return placed
+    """Radii lowered, in the order given, so that no circle comes nearer than `gap` to an earlier one; or 0."""
+    u, v, wanted = u[order], v[order], radius[order].tolist()
+    apart = np.hypot(u[:, None] - u, v[:, None] - v)
+    placed = np.full(u.size, -1e9)
+    for i, wish in enumerate(wanted):
+        room = float((apart[i, :i] - placed[:i]).min()) - gap if i else wish
+        if room > 0.3 * wish:
+            placed[i] = min(wish, room)
+    result = np.empty(u.size)
+    result[order] = np.maximum(placed, 0.0)
+    return result
 
 
 def _squeeze(x: Array, y: Array) -> tuple[Array, Array]:

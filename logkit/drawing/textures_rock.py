@@ -64,7 +64,7 @@ def _evaporite(ground: Ground, style: Style, ink: str, grains: LooseGrains) -> t
         along = np.array([-0.5, 0.1, 0.5, 0.1]) * 2.3 * length
         across = np.array([0.0, -0.12, 0.0, 0.12])
         px, py = _turned(x, y, along, across, spin + turn)
-        shapes += _filled(ground, px, py, ink, 0.1)
+        shapes += _filled(ground, px, py, ink, 0.1, blocks=False)
     return shapes
 
 
@@ -129,7 +129,7 @@ def _crystalline(ground: Ground, style: Style, ink: str, grains: LooseGrains) ->
     shapes: tuple[Shape, ...] = ()
     for along, across in (([-0.55, 0.0, 0.55], [0.0, 0.0, 0.0]), ([0.12, 0.12, 0.12], [0.0, 0.28, 0.55])):
         px, py = _turned(x, y, np.array(along), np.array(across), spin)
-        shapes += _open(ground, px, py, ink, 1.2 * style.lines.stroke, style.texture.clear)
+        shapes += _open(ground, px, py, ink, 1.2 * style.lines.stroke, style.texture.clear, blocks=False)
     return shapes
 
 
@@ -193,9 +193,13 @@ def _turned(
     )
 
 
-def _open(ground: Ground, px: Array, py: Array, ink: str, width: float, margin: float) -> tuple[Shape, ...]:
+def _open(
+    ground: Ground, px: Array, py: Array, ink: str, width: float, margin: float, blocks: bool = True
+) -> tuple[Shape, ...]:
     """One path of all open marks that are held; straight runs keep only their corners."""
     held = ground.holds_marks(px, py, margin)
+    if blocks:
+        ground.block(px[held], py[held])
     steps: list[Segment] = []
     for xs, ys in zip(px[held].tolist(), py[held].tolist(), strict=True):
         last = len(xs) - 1
@@ -221,8 +225,13 @@ def _closed(
     return _filled(ground, px, py, ink, 0.12)
 
 
-def _filled(ground: Ground, px: Array, py: Array, ink: str, margin: float) -> tuple[Shape, ...]:
+def _filled(
+    ground: Ground, px: Array, py: Array, ink: str, margin: float, blocks: bool = True
+) -> tuple[Shape, ...]:
+    """One path of all filled marks that are held; later marks keep clear of them where `blocks` is set."""
     held = ground.holds_marks(px, py, margin)
+    if blocks:
+        ground.block(px[held], py[held])
     steps: list[Segment] = []
     for xs, ys in zip(px[held].tolist(), py[held].tolist(), strict=True):
         steps += [("M" if i == 0 else "L", point) for i, point in enumerate(zip(xs, ys, strict=True))]

@@ -1,7 +1,8 @@
-"""Grows the blue-noise tile that ships as `logkit/drawing/data/noise.npy`. Run by hand: `python tests/look/grow_noise.py`.
+"""Grows the blue-noise tile that ships as `logkit/drawing/data/noise.npy`.
 
-Points are added one by one, each at a random place among those farthest from all earlier ones on a torus. The distance at
-which a point came in is its rank: the points of rank r and more are blue noise with a least distance of about r.
+Run by hand: `python tests/look/grow_noise.py`. Points are added one by one, each at a random place among those
+farthest from all earlier ones on a torus. The distance at which a point came in is its rank: the points of rank r and
+more are blue noise with a least distance of about r.
 """
 
 from __future__ import annotations
