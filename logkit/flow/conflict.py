@@ -14,7 +14,7 @@ import numpy as np
 from logkit.flow.criteria import CRITERIA
 from logkit.flow.grid import Array
 from logkit.flow.ledger import criteria_of, lower_limit, pair_agreement, says
-from logkit.flow.solver import Case, Disagreement, Solver, compile_cases
+from logkit.flow.solver import Case, Disagreement, Solver
 from logkit.model import Clash, Quantiles
 
 TENSION_FROM, CONFLICT_FROM = 0.25, 0.5
@@ -86,4 +86,4 @@ def _velocity(solver: Solver, alone: Case, id: str) -> Quantiles | None:
     """Velocity from one criterion alone; None for a bound on one side and for a depth."""
     if CRITERIA[id].kind == "depth" or CRITERIA[id].side != "band":
         return None
-    return Quantiles(*solver.solve(compile_cases([replace(alone, depths=())])).velocity[:, 0].tolist())
+    return Quantiles(*solver.solve(solver.compile([replace(alone, depths=())])).velocity[:, 0].tolist())

@@ -184,17 +184,20 @@ def quantiles(mass: Array, axis: Axis, levels: tuple[float, ...] = LEVELS) -> Ar
     -------
     SI values, shape (levels, beds); NaN where a column has no mass
     """
-    cumulated = np.cumsum(mass, axis=0)
+    cumulated = np.empty_like(mass)
+    cumulated[0] = mass[0]
+    for cell in range(1, axis.count):  # row by row: several times faster than a cumulative sum over rows
+        np.add(cumulated[cell - 1], mass[cell], out=cumulated[cell])
     total = cumulated[-1]
     beds = np.arange(mass.shape[1])
     result = np.empty((len(levels), mass.shape[1]))
     with np.errstate(invalid="ignore", divide="ignore"):
         for row, level in enumerate(levels):
             wanted = total * np.float32(level)
-            cell = np.sum(cumulated < wanted, axis=0, dtype=np.uint8 if axis.count < 255 else np.int64)
-            cell = np.minimum(cell, axis.count - 1).astype(np.intp)
-            inside = mass[cell, beds]
-            below = cumulated[cell, beds] - inside
-            result[row] = axis.ln_edges[0] + axis.step * (cell + np.clip((wanted - below) / inside, 0.0, 1.0))
+            passed = np.sum(cumulated < wanted, axis=0, dtype=np.uint8 if axis.count < 255 else np.int64)
+            at = np.minimum(passed, axis.count - 1).astype(np.intp)
+            inside = mass[at, beds]
+            below = cumulated[at, beds] - inside
+            result[row] = axis.ln_edges[0] + axis.step * (at + np.clip((wanted - below) / inside, 0.0, 1.0))
     result[:, ~(total > 0)] = np.nan
     return np.exp(result)

@@ -15,7 +15,7 @@ from logkit.flow.history import FlowHistory
 from logkit.flow.ledger import LedgerRow, lower_limit
 from logkit.flow.phases import split_phases
 from logkit.flow.reading import Options, Reader, Reading, checked_options
-from logkit.flow.solver import Answer, Case, Solver, compile_cases
+from logkit.flow.solver import Answer, Case, Solver
 from logkit.flow.states import Fluid
 from logkit.flow.tendency import find_tendencies, with_tendencies
 from logkit.hydraulics.suspension import transport_mode
@@ -108,12 +108,12 @@ def estimate_phases(solver: Solver, phases: Sequence[Phase], readings: Sequence[
     cases = [reading.case for reading in readings]
     if not cases:
         return iter(())
-    batch = compile_cases(cases)
+    batch = solver.compile(cases)
     answer = solver.solve(batch)
     ends = [(i, end, c) for i, r in enumerate(readings) for end, c in (("base", r.base), ("top", r.top)) if c]
     end_velocity: dict[tuple[int, str], Quantiles] = {}
     if ends:
-        found = solver.solve(compile_cases([case for _, _, case in ends])).velocity.T.tolist()
+        found = solver.solve(solver.compile([case for _, _, case in ends])).velocity.T.tolist()
         end_velocity = {(i, end): Quantiles(*v) for (i, end, _), v in zip(ends, found, strict=True)}
     strengths = strength(solver.disagreement(batch))
     states = solver.likely_states(batch)
@@ -185,7 +185,7 @@ def _in_conflict(solver: Solver, phase: Phase, reading: Reading, common: dict[st
     if _one_sided(kept):
         return PhaseEstimate(phase, "estimated", bound="above", limit_velocity_m_s=lower_limit(solver, kept),
                              **common)  # fmt: skip
-    answer = solver.solve(compile_cases([kept]))
+    answer = solver.solve(solver.compile([kept]))
     quantities: dict[str, Any] = {
         name: Quantiles(*getattr(answer, name)[:, 0].tolist()) for name in _quantities_of(phase)
     }

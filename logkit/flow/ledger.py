@@ -15,7 +15,7 @@ import numpy as np
 from logkit.flow.criteria import CRITERIA, criterion_texts
 from logkit.flow.grid import Array, quantiles
 from logkit.flow.settings import flow_settings
-from logkit.flow.solver import LEDGER_LEVELS, Case, Solver, compile_cases
+from logkit.flow.solver import LEDGER_LEVELS, Case, Solver
 
 if TYPE_CHECKING:
     import pandas as pd
@@ -127,9 +127,9 @@ def lower_limit(solver: Solver, case: Case) -> float:
     m/s
     """
     free = replace(case.signature, prior="off")
-    likelihood = solver.slices.velocity(free)
-    depth = solver.slices.prior(case.signature.prior).sum(axis=0)
-    depth = depth * solver.depth_weights(compile_cases([case]))[:, 0]
+    likelihood = solver.plane(free)
+    depth = solver.slices.believed_depth(case.signature.prior)
+    depth = depth * solver.depth_weights(solver.compile([case]))[:, 0]
     passed = np.maximum.accumulate(likelihood @ (depth / depth.sum()))
     passed = passed / passed[-1]
     axis = solver.grid.velocity
@@ -138,7 +138,7 @@ def lower_limit(solver: Solver, case: Case) -> float:
 
 def _posterior(solver: Solver, case: Case) -> Array:
     """Posterior mass on (velocity, depth), normalised."""
-    mass = solver.slices.velocity(case.signature) * solver.depth_weights(compile_cases([case]))[:, 0]
+    mass = solver.plane(case.signature) * solver.depth_weights(solver.compile([case]))[:, 0]
     result: Array = mass / max(float(mass.sum()), 1e-30)
     return result
 
@@ -183,7 +183,7 @@ def pair_agreement(solver: Solver, case: Case, first: str, second: str) -> tuple
     def only(*ids: str) -> Case:
         return Case(case.signature.only(*ids), tuple(d for d in case.depths if d[0] in ids))
 
-    result = solver.disagreement(compile_cases([only(first, second)]))
+    result = solver.disagreement(solver.compile([only(first, second)]))
     score = min(float(result.agreement[0]), float(np.log10(max(result.support[0], 1e-30))))
     return score, only(first), only(second)
 

@@ -7,10 +7,11 @@ answered at once belongs to `solver`.
 
 from __future__ import annotations
 
+import math
 from collections import OrderedDict
 from collections.abc import Callable, Hashable
 from dataclasses import dataclass, replace
-from functools import cached_property
+from functools import cached_property, lru_cache
 from typing import TypeVar
 
 import numpy as np
@@ -18,7 +19,7 @@ import numpy as np
 from logkit.errors import ArgumentError
 from logkit.flow.criteria import CRITERIA, Cells, ClastReading
 from logkit.flow.grid import Array, ColumnShift, Grid
-from logkit.flow.settings import Prior, flow_settings
+from logkit.flow.settings import Prior, Settings
 from logkit.flow.states import Fluid, StateTables, state_tables
 from logkit.registry import GRAVITY_M_S2
 
@@ -30,7 +31,7 @@ SIZE_STEPS_PER_PHI = 64
 CACHED_SLICES = 6000
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(frozen=True)
 class Signature:
     """What a phase says apart from depth evidence; equal signatures share their slices.
 
@@ -47,9 +48,25 @@ class Signature:
     size: tuple[int, int]
     factors: tuple[tuple[str, Hashable], ...]
 
+    @cached_property
+    def _key(self) -> int:
+        return hash((self.prior, self.fluid, self.size, self.factors))
+
+    def __hash__(self) -> int:
+        return self._key
+
+    @lru_cache(maxsize=20000)  # noqa: B019 - signatures are values, few and shared
     def without(self, criterion: str) -> Signature:
         """The signature with one criterion left out."""
         return replace(self, factors=tuple(f for f in self.factors if f[0] != criterion))
+
+    @cached_property
+    def _unbiased(self) -> Signature:
+        return replace(self, prior="off")
+
+    def unbiased(self) -> Signature:
+        """The signature with the prior off."""
+        return self._unbiased
 
     def only(self, *criteria: str) -> Signature:
         """The signature with none but the named criteria."""
@@ -81,21 +98,25 @@ class SliceStore:
     Parameters
     ----------
     grid : the cells
+    settings : priors and relations
     """
 
-    def __init__(self, grid: Grid) -> None:
-        self.grid = grid
+    def __init__(self, grid: Grid, settings: Settings) -> None:
+        self.grid, self.settings = grid, settings
         self._velocity: OrderedDict[Signature, Array] = OrderedDict()
         self._stacks: OrderedDict[Signature, Array] = OrderedDict()
         self._evidence: OrderedDict[Signature, Evidence] = OrderedDict()
         self._sharp: OrderedDict[Signature, Array] = OrderedDict()
+        self._nodes: dict[Signature, tuple[tuple[Signature, float], ...]] = {}
+        self._alone: dict[Signature, tuple[float, float, float]] = {}
         self._priors: dict[str, Array] = {}
+        self._depths: dict[str, Array] = {}
         self._kernels: dict[float, Array] = {}
         self._shifts: dict[tuple[Fluid, tuple[int, int]], tuple[ColumnShift, ColumnShift]] = {}
 
     def velocity(self, signature: Signature) -> Array:
         """Prior times likelihood, shape (velocity, depth)."""
-        return self._kept(self._velocity, signature, lambda s: self._mixed(s, self._build))
+        return self._kept(self._velocity, signature, self._build)
 
     def stack(self, signature: Signature) -> Array:
         """Velocity, skin shear velocity, Froude number and total shear velocity, shape (4 cells, depth)."""
@@ -107,19 +128,44 @@ class SliceStore:
 
     def sharp(self, signature: Signature) -> Array:
         """Prior times sharp likelihood, shape (velocity, depth)."""
-        return self._kept(
-            self._sharp, signature, lambda s: self._mixed(s, lambda part: self._build(part, sharp=True))
-        )
+        return self._kept(self._sharp, signature, lambda s: self._build(s, sharp=True))
 
     def prior(self, name: str) -> Array:
         """Prior mass of the cells, shape (velocity, depth); sums to one."""
         if name not in self._priors:
-            self._priors[name] = self._build_prior(flow_settings().prior(name))
+            self._priors[name] = self._build_prior(self.settings.prior(name))
         return self._priors[name]
+
+    def believed_depth(self, name: str) -> Array:
+        """Prior mass of the depth cells, shape (depth,)."""
+        if name not in self._depths:
+            self._depths[name] = self.prior(name).sum(axis=0)
+        return self._depths[name]
 
     def tables(self, fluid: Fluid) -> StateTables:
         """Bed-state tables of a fluid on this grid."""
         return state_tables(self.grid, fluid)
+
+    def alone(self, signature: Signature) -> tuple[float, float, float]:
+        """The criteria of a signature one by one, from sharp likelihoods.
+
+        Returns
+        -------
+        sum of log10 of their evidences, sum of log10 of their best likelihoods, best likelihood of the structure
+        """
+        known = self._alone.get(signature)
+        if known is None:
+            evidence = best = 0.0
+            expected = 1.0
+            for id, _ in signature.factors:
+                one = self.evidence(signature.only(id))
+                peak = max(float(one.peak.max()), 1e-30)
+                evidence += math.log10(max(float(one.by_depth.sum()), 1e-300))
+                best += math.log10(peak)
+                if id == "bed_state":
+                    expected = peak
+            known = self._alone[signature] = evidence, best, expected
+        return known
 
     def _kept(
         self, cache: OrderedDict[Signature, T], signature: Signature, build: Callable[[Signature], T]
@@ -131,21 +177,28 @@ class SliceStore:
                 cache.popitem(last=False)
         return found
 
-    def _mixed(self, signature: Signature, build: Callable[[Signature], Array]) -> Array:
-        """A clast between two nodes is the weighted sum of the slices of both."""
+    def on_nodes(self, signature: Signature) -> tuple[tuple[Signature, float], ...]:
+        """The signatures, with weights, whose weighted sum answers a signature.
+
+        A clast between two size cells of the grid is shared linearly between both.
+        """
+        known = self._nodes.get(signature)
+        if known is None:
+            known = self._nodes[signature] = self._split(signature)
+        return known
+
+    def _split(self, signature: Signature) -> tuple[tuple[Signature, float], ...]:
         for place, (id, reading) in enumerate(signature.factors):
             if isinstance(reading, ClastReading):
                 position = (reading.phi - self.grid.coarse_phi) * self.grid.per_phi - 0.5
                 node = int(np.clip(np.floor(position), 0, len(self.grid.phi) - 2))
-                share = np.float32(np.clip(position - node, 0.0, 1.0))
-                parts = []
-                for cell in (node, node + 1):
-                    factors = list(signature.factors)
-                    factors[place] = (id, cell)
-                    parts.append(build(replace(signature, factors=tuple(factors))))
-                result: Array = (1 - share) * parts[0] + share * parts[1]
-                return result
-        return build(signature)
+                share = float(np.clip(position - node, 0.0, 1.0))
+                before, after = signature.factors[:place], signature.factors[place + 1 :]
+                return tuple(
+                    (replace(signature, factors=(*before, (id, cell), *after)), weight)
+                    for cell, weight in ((node, 1.0 - share), (node + 1, share))
+                )
+        return ((signature, 1.0),)
 
     def _build(self, signature: Signature, sharp: bool = False) -> Array:
         likelihood = self._likelihood(signature, sharp)
@@ -154,7 +207,7 @@ class SliceStore:
 
     def _likelihood(self, signature: Signature, sharp: bool) -> Array:
         """Product of the likelihoods, averaged over the sizes of the class; shape (velocity, depth)."""
-        prior = flow_settings().prior(signature.prior)
+        prior = self.settings.prior(signature.prior)
         tables = self.tables(signature.fluid)
         cells, shares = self.size_cells(signature.size)
         spread = self._identity if sharp else self._kernel(prior.delta)
@@ -249,7 +302,7 @@ class SliceStore:
     def _build_stack(self, signature: Signature) -> Array:
         plane = self.velocity(signature)
         skin, total = self._size_shifts(signature.fluid, signature.size)
-        spread = self._kernel(flow_settings().resistance["sd_ln"])
+        spread = self._kernel(self.settings.resistance["sd_ln"])
         return np.vstack([plane, skin(plane), self._froude_shift(plane), spread @ total(plane)])
 
     @cached_property
@@ -267,7 +320,7 @@ class SliceStore:
             cells, shares = self.size_cells(size)
             ln_chezy = shares @ self.tables(fluid).ln_chezy[cells]
             ln_d = float(shares @ np.log(grid.d_m[cells]))
-            numbers = flow_settings().resistance
+            numbers = self.settings.resistance
             start = grid.velocity.ln_nodes[0] - grid.shear.ln_nodes[0]
             skin = start + 0.5 * np.log(GRAVITY_M_S2) - ln_chezy
             total = start - numbers["intercept"] - numbers["slope"] * (grid.depth.ln_nodes - ln_d)
@@ -278,6 +331,6 @@ class SliceStore:
         return self._shifts[key]
 
     def _build_evidence(self, signature: Signature) -> Evidence:
-        likelihood = self._mixed(signature, lambda s: self._likelihood(s, sharp=True))
+        likelihood = self._likelihood(signature, sharp=True)
         product = likelihood * self.prior(signature.prior)
         return Evidence(product.sum(axis=0, dtype=np.float64), likelihood.max(axis=0))

@@ -17,7 +17,7 @@ import numpy as np
 from logkit.flow.grid import Array
 from logkit.flow.reading import Reading
 from logkit.flow.settings import flow_settings
-from logkit.flow.solver import Case, Solver, compile_cases
+from logkit.flow.solver import Case, Solver
 from logkit.flow.states import Fluid
 from logkit.hydraulics.settling import ferguson_church
 from logkit.model import Log, PhaseEstimate, SizeInterval, Tendency
@@ -154,8 +154,10 @@ def _compare(
     """P(faster) and P(steady) of pairs that the solver answers."""
     result: dict[tuple[int, int], tuple[float, float]] = {}
     known: dict[tuple[Case, Case, bool], tuple[float, float]] = {}
-    columns: dict[int, Array] = {}
     kernels: dict[float, Array] = {}
+    used = sorted({k for pair in pairs for k in pair})
+    place = {k: n for n, k in enumerate(used)}
+    mass = solver.velocity_mass(solver.compile([readings[k].case for k in used]), sharp=True)
     for i, j in pairs:
         first, second = readings[i].case, readings[j].case
         within = estimates[i].phase.bed_index == estimates[j].phase.bed_index
@@ -169,30 +171,21 @@ def _compare(
             if within:
                 chances = _together(solver, first, second, kernels[own])
             else:
-                for place, case in ((i, first), (j, second)):
-                    if place not in columns:
-                        columns[place] = _column(solver, case)
-                chances = _chances(columns[i][:, None], kernels[own] @ columns[j][:, None], solver)
+                i_mass, j_mass = mass[:, [place[i]]], mass[:, [place[j]]]
+                chances = _chances(i_mass, kernels[own] @ j_mass, solver)
             mistaken = max(p.eps for p in priors)
             known[key] = (chances[0] * (1 - 2 * mistaken) + mistaken, chances[1])
         result[(i, j)] = known[key]
     return result
 
 
-def _column(solver: Solver, case: Case) -> Array:
-    """Sharp velocity mass of a case."""
-    result: Array = solver.slices.sharp(case.signature) @ solver.depth_weights(compile_cases([case]))[:, 0]
-    return result
-
-
 def _together(solver: Solver, first: Case, second: Case, own: Array) -> tuple[float, float]:
     """Chances for two phases of one bed: the depth is the same unknown for both."""
-    weights = solver.depth_weights(compile_cases([first]))[:, 0]
-    believed = solver.slices.prior(first.signature.prior).sum(axis=0)
+    weights = solver.depth_weights(solver.compile([first]))[:, 0]
+    believed = solver.slices.believed_depth(first.signature.prior)
     shared = np.where(believed > 0, weights / np.maximum(believed, 1e-30), 0.0)
-    return _chances(
-        solver.slices.sharp(first.signature) * shared, own @ solver.slices.sharp(second.signature), solver
-    )
+    planes = [solver.plane(case.signature, sharp=True) for case in (first, second)]
+    return _chances(planes[0] * shared, own @ planes[1], solver)
 
 
 def _chances(first: Array, second: Array, solver: Solver) -> tuple[float, float]:
