@@ -6,10 +6,9 @@ from collections.abc import Sequence
 
 from logkit.drawing.axes import LogAxis, PhiAxis
 from logkit.drawing.metrics import MM_PER_POINT, shorten, width_mm
-from logkit.drawing.scene import Column, Scene, View
+from logkit.drawing.scene import Column, Scene, View, position_unit
 from logkit.drawing.shapes import Group, Paint, Path, Segment, Shape, Text, polyline
 from logkit.drawing.tracks.curves import curve_range
-from logkit.drawing.tracks.position import position_unit
 
 AXIS_GAP = 1.6
 """Distance between the section and its axes, mm."""

@@ -12,7 +12,7 @@ from logkit.drawing.tracks import TRACKS, Material
 from logkit.drawing.tracks.current import mean_azimuth
 from logkit.drawing.tracks.ribbon import is_conflict
 from logkit.errors import ArgumentError
-from logkit.model import Log, PhaseEstimate
+from logkit.model import CurrentSummary, Grading, Log, PhaseEstimate
 
 LEAST_SHARE = {"notes": 0.62, "texture": 0.55, "velocity": 0.55, "depth": 0.7, "trend": 0.85}
 """How far tracks may shrink where the page is narrow, as a part of their width in the style."""
@@ -48,7 +48,7 @@ def lay_out(
     """
     estimates = tuple(history.estimates) if history is not None else ()
     packages = tuple(trends.packages) if trends is not None else ()
-    currents = tuple(trends.currents) if trends is not None else ()
+    currents = _ranked(trends.currents) if trends is not None else ()
     azimuths = bed_azimuths(log)
     material = Material(
         log, estimates, sum(p.trend != "no trend" for p in packages), len(azimuths), len(curves)
@@ -71,7 +71,7 @@ def lay_out(
     if "texture" in columns:
         column = columns["texture"]
         phi = PhiAxis(column.x0, column.x1 - column.x0)
-    gradings = {g.bed: g for g in trends.gradings} if trends is not None else {}
+    gradings = _gradings(log, trends.gradings) if trends is not None else {}
     return Scene(
         log, style, measure_beds(log, by_bed), by_bed, columns, scale, phi, velocity, flow_depth,
         gradings, packages, currents, azimuths, curves,
@@ -143,17 +143,37 @@ def _ends(values: Sequence[float], widest: Sequence[float], fit: bool) -> tuple[
 
 
 def bed_azimuths(log: Log) -> dict[int, tuple[float, str]]:
-    """(azimuth of the mean, sense) of each bed's readings as measured, by the bed's index.
+    """(azimuth of the mean, sense) of each bed's readings, tilt and declination removed, by the bed's index.
 
     A bed with directions and lines shows the directions: a line adds no sense.
     """
+    from logkit.trends.currents import correct_reading
+
+    header = log.header
     found: dict[int, tuple[float, str]] = {}
     for index, bed in enumerate(log.beds):
-        directions = [r.azimuth_deg for r in bed.currents if r.sense == "direction"]
-        lines = [r.azimuth_deg for r in bed.currents if r.sense == "axis"]
-        readings, sense = (directions, "direction") if directions else (lines, "axis")
-        if readings:
-            mean = mean_azimuth(readings, sense == "axis")
-            if mean is not None:
-                found[index] = (mean, sense)
+        if not bed.currents:
+            continue
+        corrected = [correct_reading(bed, r, header.bedding, header.declination_deg) for r in bed.currents]
+        used = [r for r in corrected if r.used and r.azimuth_deg is not None]
+        senses = {r.sense for r in used}
+        sense = "direction" if "direction" in senses else "axis"
+        azimuths = [r.azimuth_deg for r in used if r.sense == sense and r.azimuth_deg is not None]
+        mean = mean_azimuth(azimuths, sense == "axis") if azimuths else None
+        if mean is not None:
+            found[index] = (mean, sense)
     return found
+
+
+def _gradings(log: Log, gradings: Sequence[Grading]) -> dict[int, Grading]:
+    """Gradings by the bed's index: one a bed in the order of the log, else by name."""
+    if len(gradings) == len(log.beds):
+        return dict(enumerate(gradings))
+    by_name = {grading.bed: grading for grading in gradings}
+    return {i: by_name[bed.name] for i, bed in enumerate(log.beds) if bed.name in by_name}
+
+
+def _ranked(currents: Sequence[CurrentSummary]) -> tuple[CurrentSummary, ...]:
+    """Summaries that have readings: directions before lines, most readings first."""
+    filled = [summary for summary in currents if summary.azimuths_deg]
+    return tuple(sorted(filled, key=lambda summary: (summary.sense != "direction", -summary.n)))

@@ -114,8 +114,11 @@ class _Marks:
             "axis": Item(self._needle("axis"), "current, line only"),
             "bioturbation": Item(self._bar, "bioturbation, full width 6"),
             "thin": Item(self._bracket, "thin beds, merged"),
-            "sail": Item(self._sail(False), "trend, p < 0.05"),
-            "weak sail": Item(self._sail(True), "trend, not significant"),
+            "sail": Item(self._sail(), "size trend, p < 0.05"),
+            "weak sail": Item(self._sail(weak=True), "size trend, not significant"),
+            "steps": Item(self._sail(steps=True), "thickness trend, p < 0.05"),
+            "weak steps": Item(self._sail(weak=True, steps=True), "thickness trend, not significant"),
+            "colour": Item(self._brown, "colour as logged"),
         }
         return [item for name, item in table.items() if name in tally.marks]
 
@@ -161,23 +164,22 @@ class _Marks:
         steps = polyline(((x + 4.0, y - 1.5), (x + 3.2, y - 1.5), (x + 3.2, y + 1.5), (x + 4.0, y + 1.5)))
         return [Path(steps, Paint(stroke=self.ink, width=self.style.lines.hairline))]
 
-    def _sail(self, weak: bool) -> Swatch:
+    def _brown(self, x: float, y: float) -> list[Shape]:
+        box = _rectangle(x + 2.0, y - 1.6, x + 5.0, y + 1.6)
+        paint = Paint(fill=fill("iron", 2.0, self.style), stroke=self.ink, width=self.style.lines.hairline)
+        return [Path(box, paint)]
+
+    def _sail(self, *, weak: bool = False, steps: bool = False) -> Swatch:
         def draw(x: float, y: float) -> list[Shape]:
             mast = x + 4.5
-            curve = [
-                (mast, y + 1.8),
-                (x + 1.5, y + 1.8),
-                (x + 3.2, y - 0.4),
-                (x + 4.2, y - 1.8),
-                (mast, y - 1.8),
-            ]
+            curve = [(x + 1.5, y + 1.8), (x + 3.2, y - 0.4), (x + 4.2, y - 1.8)]
+            if steps:
+                curve = [(x + 1.5, y + 1.8), (x + 1.5, y), (x + 3.2, y), (x + 3.2, y - 1.8)]
             filled = self.style.colours.trend if self.style.ribbon.sail_fill and not weak else None
             paint = Paint(fill=filled, stroke=self.ink, width=0.18, dash=(1.0, 0.7) if weak else ())
-            line = Paint(stroke=self.ink, width=0.4)
-            return [
-                Path(polyline(curve, closed=True), paint),
-                Path(polyline(((mast, y + 1.8), (mast, y - 1.8))), line),
-            ]
+            outline = polyline([(mast, y + 1.8), *curve, (mast, y - 1.8)], closed=True)
+            line = polyline(((mast, y + 1.8), (mast, y - 1.8)))
+            return [Path(outline, paint), Path(line, Paint(stroke=self.ink, width=0.4))]
 
         return draw
 

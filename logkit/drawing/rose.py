@@ -5,10 +5,11 @@ from __future__ import annotations
 import math
 from dataclasses import dataclass
 
-from logkit.drawing.metrics import width_mm
+from logkit.drawing.metrics import shorten, width_mm
 from logkit.drawing.scene import Scene
 from logkit.drawing.shapes import Circle, Paint, Path, Segment, Shape, Text, polyline
 from logkit.model import CurrentSummary
+from logkit.vocabulary.terms import vocabulary
 
 RADIUS_MM = 10.0
 SECTOR_DEG = 20
@@ -75,12 +76,13 @@ class Rose:
 
 
 def rose_block(scene: Scene) -> Rose | None:
-    """The rose of the first summary that has readings; None without any."""
-    summary = next((c for c in scene.currents if c.azimuths_deg), None)
-    if summary is None:
+    """The rose of the scene's foremost summary; None without any."""
+    if not scene.currents:
         return None
+    summary = scene.currents[0]
     counts = sector_counts(summary.azimuths_deg, summary.sense == "axis")
-    words = [f"n {summary.n}, {SECTOR_DEG}° sectors"]
+    words = [shorten(indicator_words(summary), 30.0, scene.style.fonts.label)]
+    words.append(f"n {summary.n}, {SECTOR_DEG}° sectors")
     if summary.mean_deg is not None:
         words.append(f"mean {round(summary.mean_deg) % 360:03d}°, R {summary.resultant:.2f}")
     words += ["area = share of n", f"rim = {100 * max(counts) / sum(counts):.0f} %"]
@@ -94,3 +96,9 @@ def sector_counts(azimuths_deg: tuple[float, ...], axis: bool) -> list[int]:
         for end in (azimuth, azimuth + 180) if axis else (azimuth,):
             counts[int(((end + SECTOR_DEG / 2) % 360) // SECTOR_DEG)] += 1
     return counts
+
+
+def indicator_words(summary: CurrentSummary) -> str:
+    """What was measured, in words."""
+    known = vocabulary("indicators")
+    return known[summary.indicator].label if summary.indicator in known else summary.indicator

@@ -27,6 +27,8 @@ if TYPE_CHECKING:
 UNKNOWN_PHI = 4.0
 """Width at which a bed without size and lithology is drawn, as an open dashed outline."""
 
+FEET_M = 0.3048
+
 FILLING_GROUPS = ("current", "fallout", "wave", "wind")
 """Groups of structures that make up a whole interval; all others are objects in or on a bed."""
 
@@ -101,6 +103,8 @@ class Scene:
     Attributes
     ----------
     estimates : estimates of the phases of each bed, by the bed's index
+    gradings : grading of each bed, by the bed's index
+    azimuths : (azimuth of the mean, "direction" or "axis") of each bed's readings, by the bed's index
     columns : tracks from left to right
     scale : metres in the section a metre on paper
     phi, velocity, flow_depth : horizontal axes; the last two None without a track
@@ -116,7 +120,7 @@ class Scene:
     phi: PhiAxis | None
     velocity: LogAxis | None
     flow_depth: LogAxis | None
-    gradings: Mapping[str, Grading] = field(default_factory=dict)
+    gradings: Mapping[int, Grading] = field(default_factory=dict)
     packages: tuple[Package, ...] = ()
     currents: tuple[Any, ...] = ()
     azimuths: Mapping[int, tuple[float, str]] = field(default_factory=dict)
@@ -235,6 +239,13 @@ def match_estimates(log: Log, estimates: Sequence[PhaseEstimate]) -> dict[int, t
         if index >= 0 and log.beds[index].top_m >= phase.base_m:
             found.setdefault(index, []).append(estimate)
     return {index: tuple(sorted(part, key=lambda e: e.phase.base_m)) for index, part in found.items()}
+
+
+def position_unit(scene: Scene) -> tuple[str, float]:
+    """Unit of the position axis and its length in metres: feet for a log measured in feet, else metres."""
+    if scene.log.header.unit.strip().lower() in ("ft", "feet", "foot", "'"):
+        return "ft", FEET_M
+    return "m", 1.0
 
 
 Knots = tuple[tuple[float, float], ...]

@@ -3,9 +3,9 @@
 from __future__ import annotations
 
 from logkit.drawing.metrics import MM_PER_POINT, clean, shorten, width_mm, wrap
-from logkit.drawing.scene import Scene, Tally, View
+from logkit.drawing.scene import Scene, Tally, View, position_unit
 from logkit.drawing.shapes import Group, Paint, Path, Shape, Text, polyline
-from logkit.drawing.tracks.position import position_unit, shown_position
+from logkit.drawing.tracks.position import shown_position
 from logkit.drawing.tracks.ribbon import is_conflict
 from logkit.vocabulary.terms import vocabulary
 
@@ -15,6 +15,9 @@ CAUTION = (
     "Blank means no estimate, not still water."
 )
 CAUTION_PLAIN = "Drawn from a typed log; check the source before any use that matters."
+LEAST_TITLE = 0.7
+"""A long title shrinks to this part of its size before it is cut."""
+
 SYMBOLIC = "Ripples and clasts are drawn at symbolic size."
 
 
@@ -28,7 +31,6 @@ def title_block(scene: Scene, width: float, scale_words: str, sheet_words: str =
         (sheet_words, fonts.label, colours.ink2),
         (scale_words, fonts.subtitle, colours.ink),
         (f"Logged {clean(made)}" if made else "", fonts.label, colours.ink2),
-        (clean(dict(header.extra).get("note", "")), fonts.label, colours.ink2),
     ]
     shapes: list[Shape] = []
     widest = 0.0
@@ -40,34 +42,34 @@ def title_block(scene: Scene, width: float, scale_words: str, sheet_words: str =
             shapes.append(Text((right, y), shown, size, colour, anchor="end"))
         y += 3.0
     room = right - left - widest - 4
-    title = shorten(header.title or scene.log.name, room, fonts.title, True)
-    shapes.append(Text((left, page.rule - 7.0), title, fonts.title, colours.ink, bold=True))
-    below = shorten(subtitle(scene), room, fonts.subtitle)
+    title, size = clean(header.title or scene.log.name), fonts.title
+    while size > LEAST_TITLE * fonts.title and width_mm(title, size, True) > room:
+        size -= 0.5
+    title = shorten(title, room, size, True)
+    shapes.append(Text((left, page.rule - 7.0), title, size, colours.ink, bold=True))
+    below = subtitle(scene, room, fonts.subtitle)
     shapes.append(Text((left, page.rule - 2.2), below, fonts.subtitle, colours.ink))
     rule = polyline(((left, page.rule), (right, page.rule)))
     return [Group(tuple(shapes)), Path(rule, Paint(stroke=colours.ink, width=style.lines.rule))]
 
 
-def subtitle(scene: Scene) -> str:
-    """Place, setting and extent of the section."""
+def subtitle(scene: Scene, room: float, size: float) -> str:
+    """Place, setting and extent of the section; a long place gives way to the extent."""
     header, log = scene.log.header, scene.log
-    settings = vocabulary_label("settings", header.setting)
     unit, metres = position_unit(scene)
-    parts = [
-        clean(part) for part in (header.location, settings if header.setting != "unknown" else "") if part
-    ]
-    words = ", ".join(parts)
+    tail = [vocabulary_label("settings", header.setting)] if header.setting != "unknown" else []
     if log.beds:
         ends = sorted((shown_position(scene, log.base_m), shown_position(scene, log.top_m)))
-        what = "cored" if scene.downward else "section"
-        reference = f" below {header.depth_reference}" if scene.downward and header.depth_reference else ""
-        extent = (
-            f"{what} {ends[0]:.1f} to {ends[1]:.1f}\u00a0{unit}{reference}"
-            if scene.downward
-            else f"{what} {log.thickness_m / metres:.1f}\u00a0{unit}"
-        )
-        words = f"{words}; {extent}" if words else extent[0].upper() + extent[1:]
-    return words
+        reference = f" below {clean(header.depth_reference)}" if header.depth_reference else ""
+        if scene.downward:
+            tail.append(f"cored {ends[0]:.1f} to {ends[1]:.1f}\u00a0{unit}{reference}")
+        else:
+            tail.append(f"section {log.thickness_m / metres:.1f}\u00a0{unit}")
+    words = "; ".join(tail)
+    if header.location:
+        place = shorten(header.location, max(0.0, room - width_mm(f"; {words}", size)), size)
+        words = f"{place}; {words}" if place and words else place or words
+    return shorten(words[:1].upper() + words[1:], room, size)
 
 
 def vocabulary_label(name: str, term: str) -> str:
@@ -104,9 +106,12 @@ def summary(scene: Scene) -> str:
             f"Flow range from {kinds['range']}, one-sided bound from {kinds['bound']}, "
             f"conflict in {kinds['conflict']}, no estimate from {kinds['none']}"
         )
-    mean = next((c for c in scene.currents if c.mean_deg is not None), None)
-    if mean is not None:
+    mean = scene.currents[0] if scene.currents else None
+    if mean is not None and mean.mean_deg is not None:
         words.append(f"Palaeocurrent mean {round(mean.mean_deg) % 360:03d}°")
+    note = clean(dict(log.header.extra).get("note", "")).rstrip(".")
+    if note:
+        words.append(note[0].upper() + note[1:])
     return ". ".join(words) + "."
 
 

@@ -19,6 +19,7 @@ from logkit.model import Log, PhaseEstimate
 
 BRACKET_TO_TEXT = 2.9
 MOST_NAME_MM = 9.0
+MOST_LISTED = 5
 
 
 @dataclass(frozen=True, slots=True)
@@ -54,17 +55,25 @@ def note_text(scene: Scene, item: MeasuredBed, labelled: bool) -> tuple[str, int
             priority = max(priority, 2)
     if bed.notes:
         parts.append(bed.notes)
-    if not labelled and (bed.marker or bed.samples):
-        named = [f"marker {bed.marker}"] if bed.marker else []
-        named += [f"sample {name}" for name in bed.samples]
-        parts.append(", ".join(named))
+    if bed.marker and not labelled:
+        parts.append(f"Marker {bed.marker}")
         priority = max(priority, 1)
-    if bed.samples and bed.marker and labelled:
-        parts.append(", ".join(f"sample {name}" for name in bed.samples))
+    if bed.samples and (bed.marker or not labelled):
+        parts.append(_listed("Sample", bed.samples))
+        priority = max(priority, 1)
     if bed.photos:
-        parts.append("photo " + ", ".join(bed.photos))
-    text = ". ".join(clean(part).rstrip(".") for part in parts if clean(part))
-    return (text[0].upper() + text[1:] if text else ""), priority
+        parts.append(_listed("Photo", bed.photos))
+    cleaned = [clean(part).rstrip(".") for part in parts]
+    return ". ".join(part[0].upper() + part[1:] for part in cleaned if part), priority
+
+
+def _listed(noun: str, names: Sequence[str]) -> str:
+    """`Sample S1`, `Samples S1, S2`, or the ends of a long list."""
+    if len(names) == 1:
+        return f"{noun} {names[0]}"
+    if len(names) > MOST_LISTED:
+        return f"{noun}s {names[0]} … {names[-1]} ({len(names)} in all)"
+    return f"{noun}s {', '.join(names)}"
 
 
 def draw(scene: Scene, view: View, tally: Tally) -> list[Shape]:
@@ -120,7 +129,10 @@ def _collect(scene: Scene, view: View, labelled: set[int], name_mm: float) -> li
 def name_width(scene: Scene) -> float:
     """Room for the bed names before the notes, mm."""
     size = scene.style.fonts.note
-    widest = max((width_mm(m.bed.name, size, True) for m in scene.beds if m.bed.notes), default=3.0)
+    widest = max(
+        (width_mm(m.bed.name, size, True) for m in scene.beds if m.bed.notes and not m.bed.is_gap),
+        default=3.0,
+    )
     return min(MOST_NAME_MM, max(3.0, widest))
 
 
@@ -155,8 +167,10 @@ def _note(
     text_x = name_x + 1.6
     drop = 0.36 * size * MM_PER_POINT
     strong = style.colours.conflict if note.priority == 3 else style.colours.ink
-    name = shorten(note.item.bed.name, name_mm, size, True)
-    texts: list[Shape] = [Text((name_x, first + drop), name, size, strong, bold=True, anchor="end")]
+    texts: list[Shape] = []
+    if not note.item.bed.is_gap:  # a gap stands in the column in words
+        name = shorten(note.item.bed.name, name_mm, size, True)
+        texts.append(Text((name_x, first + drop), name, size, strong, bold=True, anchor="end"))
     words: list[Shape] = []
     for number, words_line in enumerate(note.lines):
         words.append(Text((text_x, first + drop + number * line), words_line, size, style.colours.ink))

@@ -3,24 +3,17 @@
 from __future__ import annotations
 
 import math
+from dataclasses import dataclass
 
-from logkit.drawing.metrics import MM_PER_POINT, width_mm
+from logkit.drawing.metrics import MM_PER_POINT, shorten
 from logkit.drawing.placement import spread, thin
-from logkit.drawing.scene import Scene, Tally, View
+from logkit.drawing.scene import Scene, Tally, View, position_unit
 from logkit.drawing.shapes import Group, Paint, Path, Segment, Shape, Text, polyline
-from logkit.drawing.tracks.texture import break_mark
+from logkit.drawing.tracks.texture import MERGED_MM, break_mark
 
 STEPS_M = (0.01, 0.02, 0.05, 0.1, 0.2, 0.5, 1.0, 2.0, 5.0, 10.0, 20.0, 50.0, 100.0, 200.0, 500.0, 1000.0)
 LABEL_PITCH_MM = 5.0
 NAME_PITCH_MM = 2.3
-FEET_M = 0.3048
-
-
-def position_unit(scene: Scene) -> tuple[str, float]:
-    """Unit of the position axis and its length in metres: feet for a log measured in feet, else metres."""
-    if scene.log.header.unit.strip().lower() in ("ft", "feet", "foot", "'"):
-        return "ft", FEET_M
-    return "m", 1.0
 
 
 def shown_position(scene: Scene, position_m: float) -> float:
@@ -134,41 +127,72 @@ def _y_of(scene: Scene, view: View, value: float) -> float:
 def draw_names(scene: Scene, view: View, tally: Tally) -> list[Shape]:
     """Bed names at their beds; spread with a leader where beds are thin, thinned where they are too many."""
     column, style = scene.columns["names"], scene.style
-    wanted, names, weights = [], [], []
-    for item, (y_base, y_top) in reversed(list(view.items())):
-        if not item.bed.is_gap:
-            wanted.append((y_base + y_top) / 2)
-            names.append(item.bed.name)
-            weights.append(y_base - y_top)
-    kept = thin(wanted, NAME_PITCH_MM, weights)
-    if len(kept) < len(wanted):
-        tally.left_out["bed names"] += len(wanted) - len(kept)
-    heights = [NAME_PITCH_MM] * len(kept)
-    low, high = view.position.y_top - 1.5, view.position.y_base + 1.5
-    centres = spread([wanted[i] for i in kept], heights, low, high)
-    while centres is None:
-        kept = kept[::2]
-        tally.left_out["bed names"] += len(heights) - len(kept)
-        heights = heights[: len(kept)]
-        centres = spread([wanted[i] for i in kept], heights, low, high)
     size = style.fonts.label
+    labels = _labels(view)
+    kept = thin([label.y for label in labels], NAME_PITCH_MM, [label.tall for label in labels])
+    low, high = view.position.y_top - 1.5, view.position.y_base + 1.5
+    centres = None
+    while centres is None:
+        shown = [labels[i] for i in kept]
+        centres = spread([label.y for label in shown], [NAME_PITCH_MM] * len(shown), low, high)
+        if centres is None:
+            kept = kept[::2]
+    if len(kept) < len(labels):
+        tally.left_out["bed names"] += sum(label.beds for label in labels) - sum(
+            label.beds for label in shown
+        )
     drop = 0.36 * size * MM_PER_POINT
+    right, room = column.x1, column.x1 - column.x0
     texts: list[Shape] = []
     leaders: list[Segment] = []
-    right = column.x1
-    for index, y in zip(kept, centres, strict=True):
-        moved = abs(y - wanted[index]) > 0.4
-        room = column.x1 - column.x0
-        text = names[index]
-        if width_mm(text, size) > room:
-            tally.left_out["long bed names, cut"] += 1
-            while len(text) > 1 and width_mm(text + "…", size) > room:
-                text = text[:-1]
-            text += "…"
+    for label, y in zip(shown, centres, strict=True):
+        text = shorten(label.text, room, size)
+        if text != label.text:
+            tally.left_out["bed names cut short"] += 1
         texts.append(Text((right, y + drop), text, size, style.colours.ink, anchor="end"))
-        if moved:
-            leaders.extend(polyline(((right + 0.4, y), (right + 1.2, y), (right + 2.4, wanted[index]))))
+        if label.beds > 1:
+            tally.marks.add("thin")
+            top, base, x = label.y - label.tall / 2, label.y + label.tall / 2, right + 1.4
+            leaders.extend(polyline(((x + 0.8, top), (x, top), (x, base), (x + 0.8, base))))
+        if abs(y - label.y) > 0.4 or label.beds > 1:
+            leaders.extend(polyline(((right + 0.4, y), (right + 0.9, y), (right + 1.4, label.y))))
     shapes: list[Shape] = [Group(tuple(texts))]
     if leaders:
         shapes.append(Path(tuple(leaders), Paint(stroke=style.colours.ink2, width=style.lines.hairline)))
     return shapes
+
+
+@dataclass(frozen=True, slots=True)
+class _Label:
+    """A name with its middle and height on the page, mm; more than one bed where thin ones are merged."""
+
+    text: str
+    y: float
+    tall: float
+    beds: int = 1
+
+
+def _labels(view: View) -> list[_Label]:
+    """Names from the top down; runs of beds too thin to tell apart share one."""
+    labels: list[_Label] = []
+    run: list[tuple[str, float, float]] = []
+
+    def close() -> None:
+        if len(run) > 1:
+            text = f"{run[-1][0]}–{run[0][0]}"
+            top, base = run[0][2], run[-1][1]
+            labels.append(_Label(text, (top + base) / 2, base - top, len(run)))
+        elif run:
+            name, y_base, y_top = run[0]
+            labels.append(_Label(name, (y_base + y_top) / 2, y_base - y_top))
+        run.clear()
+
+    for item, (y_base, y_top) in reversed(list(view.items())):
+        if not item.bed.is_gap and y_base - y_top < MERGED_MM:
+            run.append((item.bed.name, y_base, y_top))
+            continue
+        close()
+        if not item.bed.is_gap:
+            labels.append(_Label(item.bed.name, (y_base + y_top) / 2, y_base - y_top))
+    close()
+    return labels

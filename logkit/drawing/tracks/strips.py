@@ -48,6 +48,7 @@ def draw_colour(scene: Scene, view: View, tally: Tally) -> list[Shape]:
         if seen is None:
             tally.left_out["colours not recognised"] += 1
         else:
+            tally.marks.add("colour")
             shapes.append(Path(box, Paint(fill=seen)))
         if span[0] - span[1] >= 0.5:
             frame.extend(box)

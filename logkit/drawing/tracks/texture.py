@@ -10,13 +10,17 @@ from logkit.drawing.metrics import shorten
 from logkit.drawing.motifs import structure_lines
 from logkit.drawing.outline import Outline, base_path
 from logkit.drawing.palette import fill
-from logkit.drawing.scene import MeasuredBed, Scene, Tally, View, structure_label
+from logkit.drawing.scene import MeasuredBed, Scene, Tally, View, position_unit, structure_label
 from logkit.drawing.shapes import Gradient, Group, Paint, Path, Segment, Shape, Text, polyline
 from logkit.drawing.textures import bed_texture
 from logkit.vocabulary.terms import vocabulary
 
 DASH = (1.2, 0.8)
 """Dashes of an edge that is not a boundary: end of exposure, contact not seen."""
+
+
+MERGED_MM = 0.25
+"""Beds thinner than this on paper are drawn as fill alone; the names track brackets them."""
 
 
 def draw(scene: Scene, view: View, tally: Tally) -> list[Shape]:
@@ -93,7 +97,7 @@ def _data(scene: Scene, item: MeasuredBed) -> tuple[tuple[str, str], ...]:
     data = [("bed", bed.name), ("base", f"{bed.base_m:.5g}"), ("top", f"{bed.top_m:.5g}")]
     if bed.structures:
         data.append(("structures", " ".join(dict.fromkeys(s.term for s in bed.structures))))
-    grading = scene.gradings.get(bed.name)
+    grading = scene.gradings.get(item.index)
     if grading and grading.verdict != "not determinable":
         data.append(("grading", grading.verdict))
     tendencies = [e.tendency for e in scene.estimates.get(item.index, ()) if e.tendency != "not determinable"]
@@ -155,44 +159,52 @@ def _inside(scene: Scene, view: View, item: MeasuredBed, outline: Outline, tally
 def _contact(
     scene: Scene, view: View, item: MeasuredBed, outline: Outline, below: Outline | None, tally: Tally
 ) -> list[Shape]:
-    """The base line of a bed, and its top where exposure ends."""
+    """The base line of a bed as logged, and its top where exposure ends."""
     style, bed = scene.style, item.bed
-    ink = style.colours.ink
     shapes: list[Shape] = []
-    thin = outline.y_base - outline.y_top < 0.4
     if bed.base_m >= view.position.base_m - 1e-9:
-        kind = bed.contact.kind if bed.contact else "unknown"
+        lowest = item.index == 0 or scene.beds[item.index - 1].bed.is_gap
+        kind = bed.contact.kind if bed.contact else "not_seen" if lowest else "unknown"
         right = max(outline.profile[0][0], below.profile[-1][0] if below else 0.0)
-        straight = polyline(((outline.x0, outline.y_base), (right, outline.y_base)))
-        if below is None:
-            if view.position.base_m < bed.base_m or bed.base_m <= scene.log.base_m + 1e-9:
-                tally.marks.add("end")
-                shapes.append(Path(straight, Paint(stroke=ink, width=style.lines.contact, dash=DASH)))
-        elif kind in ("erosive", "undulose", "loaded"):
-            weight = style.lines.erosive if kind == "erosive" else style.lines.contact
-            tally.marks.add(kind)
-            paint = Paint(stroke=ink, width=weight if not thin else style.lines.hairline, join="round")
-            shapes.append(Path(base_path(outline.base), paint))
-        elif kind == "gradational":
-            tally.marks.add("gradational")
-        elif kind == "not_seen":
-            tally.marks.add("end")
-            shapes.append(Path(straight, Paint(stroke=ink, width=style.lines.contact, dash=DASH)))
-        elif kind == "faulted":
-            tally.marks.add("faulted")
-            y = outline.y_base
-            both = (*straight, *polyline(((outline.x0 - 2.0, y + 0.9), (outline.x0 + 2.0, y - 0.9))))
-            shapes.append(Path(both, Paint(stroke=style.colours.conflict, width=style.lines.erosive)))
-        else:
-            tally.marks.add("sharp")
-            weight = style.lines.hairline if thin else style.lines.contact
-            sure = bed.contact is None or bed.contact.sure
-            shapes.append(Path(straight, Paint(stroke=ink, width=weight, dash=() if sure else (0.6, 0.5))))
+        shapes.extend(_base(scene, item, outline, kind, right, tally))
     if bed.top_m <= view.position.top_m + 1e-9 and _open_above(scene, item):
         line = polyline(((outline.x0, outline.y_top), (outline.profile[-1][0], outline.y_top)))
         tally.marks.add("end")
-        shapes.append(Path(line, Paint(stroke=ink, width=style.lines.contact, dash=DASH)))
+        paint = Paint(stroke=style.colours.ink, width=style.lines.contact, dash=DASH)
+        shapes.append(Path(line, paint))
     return shapes
+
+
+def _base(
+    scene: Scene, item: MeasuredBed, outline: Outline, kind: str, right: float, tally: Tally
+) -> list[Shape]:
+    """The line of one kind of contact."""
+    style = scene.style
+    ink, lines = style.colours.ink, style.lines
+    tall = outline.y_base - outline.y_top
+    if tall < MERGED_MM:
+        return []
+    thin = tall < 0.4
+    straight = polyline(((outline.x0, outline.y_base), (right, outline.y_base)))
+    if kind in ("erosive", "undulose", "loaded"):
+        tally.marks.add(kind)
+        weight = lines.hairline if thin else lines.erosive if kind == "erosive" else lines.contact
+        return [Path(base_path(outline.base), Paint(stroke=ink, width=weight, join="round"))]
+    if kind == "gradational":
+        tally.marks.add(kind)
+        return []
+    if kind == "not_seen":
+        tally.marks.add("end")
+        return [Path(straight, Paint(stroke=ink, width=lines.contact, dash=DASH))]
+    if kind == "faulted":
+        tally.marks.add(kind)
+        y = outline.y_base
+        both = (*straight, *polyline(((outline.x0 - 2.0, y + 0.9), (outline.x0 + 2.0, y - 0.9))))
+        return [Path(both, Paint(stroke=style.colours.conflict, width=lines.erosive))]
+    tally.marks.add("sharp")
+    sure = item.bed.contact is None or item.bed.contact.sure
+    weight = lines.hairline if thin else lines.contact
+    return [Path(straight, Paint(stroke=ink, width=weight, dash=() if sure else (0.6, 0.5)))]
 
 
 def _open_above(scene: Scene, item: MeasuredBed) -> bool:
@@ -205,7 +217,8 @@ def _gap(scene: Scene, view: View, item: MeasuredBed, span: tuple[float, float],
     column = scene.columns["texture"]
     style = scene.style
     tall = span[0] - span[1]
-    height = f"{item.bed.thickness_m:.3g}\u00a0m"
+    unit, metres = position_unit(scene)
+    height = f"{item.bed.thickness_m / metres:.3g}\u00a0{unit}"
     words = f"{gap_reason(item)}: {height}"
     words = words[0].upper() + words[1:]
     cut = any(piece.cut and piece.base_m <= item.bed.base_m < piece.top_m for piece in view.position.pieces)
