@@ -21,7 +21,7 @@ from logkit.model import SizeInterval
 FILE = "grains/data/scales.toml"
 OpenEnd = Literal["", "coarse", "fine"]
 _FIELDS = {"label", "phi", "mm", "open", "synonyms", "source"}
-_MARKS = re.compile(r"[\s.\-_,]+")
+_MARKS = re.compile(r"[\s._,]+|(?<=very)-|(?<=^v)-", re.I)
 
 
 @dataclass(frozen=True, slots=True)
@@ -93,7 +93,7 @@ class Scale(Mapping[str, SizeClass]):
 
 @lru_cache(maxsize=4096)
 def compact(label: str) -> str:
-    """A label as it is compared: lower case without dots, hyphens and spaces."""
+    """A label as it is compared: lower case without dots and spaces, nor the hyphen of `very-fine`."""
     return _MARKS.sub("", label).casefold()
 
 

@@ -72,11 +72,14 @@ def build_ambiguities(file: DataFile) -> dict[str, Ambiguity]:
         if unknown or not entry.get("written") or len(entry.get("readings", ())) < 2:
             what = f"unknown field {min(unknown)!r}" if unknown else "needs `written` and two readings"
             raise file.fail(f"{id}: {what}.", id)
+        clear_in = tuple(entry.get("clear_in", ()))
+        if not set(clear_in) <= set(FILES):
+            raise file.fail(f"{id}: clear_in names no vocabulary: {clear_in}.", id, "clear_in")
         meanings = []
         for reading in entry["readings"]:
             terms = tuple(_term(reference, id, file) for reference in reading.get("terms", ()))
             meanings.append(Meaning(reading["words"], terms))
-        found = Ambiguity(id, tuple(meanings), tuple(entry.get("clear_in", ())))
+        found = Ambiguity(id, tuple(meanings), clear_in)
         for written in entry["written"]:
             result[" ".join(written.casefold().replace(".", " ").split())] = found
     return result

@@ -200,6 +200,9 @@ def read_sorting(text: str) -> Reading[str]:
     plain = clean(text)
     if not plain:
         return Reading(None)
+    refused = refusal(plain)
+    if refused:
+        return Reading(None, (refused,))
     terms = vocabulary("sorting")
     found = terms.find(plain) or terms.find(f"{plain} sorted")
     if found:

@@ -9,6 +9,7 @@ from logkit.errors import nearest
 from logkit.model import SetThickness
 from logkit.tables.cells.lengths import UNIT_WORDS, number, unit_symbol
 from logkit.tables.cells.reading import CACHE_SIZE, Reading, Remark, clean, error, note, question, quoted
+from logkit.tables.cells.refused import refusal
 from logkit.units import METRES
 
 _NUM = r"\d+(?:[.,]\d+)?|[.,]\d+"
@@ -46,6 +47,9 @@ def read_sets(text: str, unit: str | None = None) -> Reading[SetThickness]:
     plain = clean(text)
     if not plain:
         return Reading(None)
+    refused = refusal(plain)
+    if refused:
+        return Reading(None, (refused,))
     remarks: list[Remark] = []
     rest, sets = take_sets(plain, unit, remarks, heading=False)
     if any(r.level == "error" for r in remarks):

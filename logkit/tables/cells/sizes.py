@@ -64,7 +64,9 @@ def _class_pattern(name: str) -> re.Pattern[str]:
     for entry in scale(name).values():
         for written in (entry.name, entry.label, *entry.synonyms):
             words = written.replace(",", " ").split()
-            labels.add(r"[\s.\-]*".join(re.escape(w) for w in words))
+            # a hyphen parts the sides of a range (`c-pebble`), except behind `very`
+            joints = [r"[\s.\-]*" if w in ("very", "v") else r"[\s.]*" for w in words[:-1]]
+            labels.add("".join(re.escape(w) + j for w, j in zip(words, [*joints, ""], strict=True)))
             if re.fullmatch(r"v[fc]", entry.name) and written == entry.name:
                 labels.add(r"v[\s.\-]*" + written[1])
     ordered = sorted(labels, key=lambda label: (-len(label), label))

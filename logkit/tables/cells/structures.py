@@ -27,6 +27,7 @@ _UPWARD = re.compile(
     re.I,
 )
 _CLAUSE = re.compile(r"\s*[,;]\s*")
+_DIVISION_LIST = re.compile(r"\bT[a-e](?:[-/,][a-e])+\b")
 _EXTENT = re.compile(
     r"[@\[(]\s*(?P<low>\d+(?:\.\d+)?(?:e-?\d+)?)\s*-\s*(?P<high>\d+(?:\.\d+)?(?:e-?\d+)?)"
     r"\s*(?P<percent>%)?\s*(?:of bed)?[\])]?",
@@ -100,6 +101,9 @@ def read_structures(text: str, codes: str = "fluvial", unit: str | None = None) 
     found, words, upward, lithology = _structures(rest, table, remarks)
     if currents and found:
         currents = _on_structure(currents, found[0].term)
+    measured = currents or sets or bioturbation or any(v is not None for v in (climb, wavelength, height))
+    if not (found or words.terms or words.unknown or measured or any(r.level == "error" for r in remarks)):
+        words.unknown.extend(plain.split())  # fillers alone say nothing
     _say_unknown(words, found, remarks)
     cell = StructuresCell(
         found, upward and len(found) > 1, sets, climb, wavelength, height,
@@ -118,7 +122,7 @@ def _structures(
     words = Collected()
     found: list[Structure] = []
     rocks: set[str] = set()
-    parts = _split_upward(text, table)
+    parts = _split_upward(_DIVISION_LIST.sub(lambda m: m[0].replace(",", "/"), text), table)
     upward = len(parts) > 1
     placed: list[tuple[int, int, Structure]] = []
     for part in parts:

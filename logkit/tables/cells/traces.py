@@ -145,6 +145,9 @@ def read_fossils(text: str) -> Reading[tuple[str, ...]]:
     plain = clean(text)
     if not plain:
         return Reading(None)
+    refused = refusal(plain)
+    if refused:
+        return Reading(None, (refused,))
     known = lexicon("fossils")
     found: list[str] = []
     remarks: list[Remark] = []
@@ -175,4 +178,12 @@ def read_fossils(text: str) -> Reading[tuple[str, ...]]:
                 note("fossils.as_written", f"{quoted(words)} is not in the list and is kept as written{hint}")
             )
             found.append(words[:80])
+    if not found:
+        remarks.append(
+            error(
+                "fossils.unreadable",
+                f"{quoted(plain)} names no fossil",
+                "write a name, for example Skolithos",
+            )
+        )
     return Reading(tuple(dict.fromkeys(found)) or None, tuple(remarks))
