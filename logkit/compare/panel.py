@@ -67,7 +67,7 @@ def draw_panel(
         tally.gradients = []
     tie_shapes, words = marks.ties(plan, comparison.ties)
     shapes.append(Group(tuple(tie_shapes), id="ties", layer="ties"))
-    suggested = [tie for tie in comparison.suggested if tie.confident]
+    suggested = marks.drawn_suggestions(plan, comparison.suggested)
     if suggested:
         drawn = tuple(marks.suggestions(plan, suggested))
         shapes.append(Group(drawn, id="suggested-ties", layer="suggested ties"))
@@ -110,7 +110,7 @@ def _name(plan: PanelPlan, column: WellColumn) -> list[Shape]:
     unit = marks.log_unit(column.placed.log)[0]
     lines = [f"{what}, {unit}"]
     low, high = column.placed.factors
-    if abs(low - 1) > 0.002 or abs(high - 1) > 0.002:
+    if max(abs(low - 1), abs(high - 1)) > 0.005:
         span = f"{low:.2f}" if high - low < 0.005 else f"{low:.2f} to {high:.2f}"
         lines.append(f"thickness × {span}")
     if not column.placed.datum_sure:

@@ -21,6 +21,10 @@ LABEL_PITCH_MM = 5.0
 TIE_GAP_MM = 1.4
 """Free paper between a tie and the columns it joins."""
 
+NAME_PITCH_MM = 3.0
+SUGGESTION_PITCH_MM = 3.5
+"""Least distance between two suggestions that are drawn."""
+
 DASH = (2.2, 1.2)
 DOT = (0.01, 0.9)
 
@@ -82,33 +86,36 @@ def datum_line(plan: PanelPlan, comparison: Comparison) -> list[Shape]:
 
 
 def ties(plan: PanelPlan, found: Sequence[Tie]) -> tuple[list[Shape], list[str]]:
-    """Tie lines at bases of markers with their names in the corridor; names without room go into words."""
+    """Tie lines at bases of markers, each name along its line; names without room go into words."""
     shapes: list[Shape] = []
     words: list[str] = []
-    by_pair = _by_pair(plan, found)
-    for (left, right), here in by_pair:
+    size = plan.style.fonts.label
+    for (left, right), here in _by_pair(plan, found):
         last_y = math.inf
         for tie in sorted(here, key=lambda t: t.first_base_m):
             a = (left.right + TIE_GAP_MM, plan.y(tie.first_base_m))
             b = (right.left - TIE_GAP_MM, plan.y(tie.second_base_m))
             shapes.extend(_tie_line(plan, a, b, tie))
-            y = 0.5 * (a[1] + b[1]) - 0.9
             name = clean(tie.marker) + ("" if tie.sure else " ?")
-            size = plan.style.fonts.label
-            room = (b[0] - a[0]) - 1.0
-            steep = abs(a[1] - b[1]) / max(b[0] - a[0], 1e-6)
-            text = shorten(name, room, size)
-            clear = last_y - y > 3.0 and steep * width_mm(text, size) / 2 < 3.0
-            if text == name and clear:
-                up = steep * width_mm(text, size) / 2
-                at = (0.5 * (a[0] + b[0]), y - up)
-                shapes.append(Text(at, text, size, plan.style.colours.ink, anchor="middle"))
-                last_y = y - up
+            middle = 0.5 * (a[1] + b[1])
+            fits = width_mm(name, size) <= math.dist(a, b) - 3.0
+            if fits and last_y - middle > NAME_PITCH_MM:
+                shapes.append(_along(plan, a, b, name))
+                last_y = middle
             else:
                 words.append(
                     f"{name}: tied between {tie.first} and {tie.second}, name left out for want of room"
                 )
     return shapes, words
+
+
+def _along(plan: PanelPlan, a: tuple[float, float], b: tuple[float, float], name: str) -> Text:
+    """A name in the middle of a line, turned with it, just above it."""
+    angle = math.atan2(b[1] - a[1], b[0] - a[0])
+    off = 0.9
+    at = (0.5 * (a[0] + b[0]) + off * math.sin(angle), 0.5 * (a[1] + b[1]) - off * math.cos(angle))
+    style = plan.style
+    return Text(at, name, style.fonts.label, style.colours.ink, anchor="middle", turn=math.degrees(angle))
 
 
 def bands(plan: PanelPlan, found: Sequence[Tie]) -> list[Shape]:
@@ -132,8 +139,24 @@ def bands(plan: PanelPlan, found: Sequence[Tie]) -> list[Shape]:
     return shapes
 
 
+def drawn_suggestions(plan: PanelPlan, found: Sequence[SuggestedTie]) -> list[SuggestedTie]:
+    """Confident suggestions that have room beside each other, the surest first; the table has them all."""
+    kept: list[SuggestedTie] = []
+    for tie in sorted(
+        (t for t in found if t.confident), key=lambda t: (-t.confidence, t.unlikeness, t.first_base_m)
+    ):
+        near = (
+            abs(plan.y(tie.first_base_m) - plan.y(other.first_base_m)) < SUGGESTION_PITCH_MM
+            for other in kept
+            if other.first == tie.first
+        )
+        if not any(near):
+            kept.append(tie)
+    return sorted(kept, key=lambda t: (t.first, t.first_base_m))
+
+
 def suggestions(plan: PanelPlan, found: Sequence[SuggestedTie]) -> list[Shape]:
-    """Confident suggestions as dotted hairlines: to be looked at, not to be believed."""
+    """Suggestions as dotted lines: to be looked at, not to be believed."""
     names = {c.placed.name: c for c in plan.columns}
     steps: list[Segment] = []
     for tie in found:
@@ -155,8 +178,11 @@ def key(plan: PanelPlan, comparison: Comparison, width: float, y: float) -> tupl
             used.append((kind, label))
     if any(not t.sure for t in comparison.ties):
         used.append(("queried", "queried tie"))
-    if any(t.confident for t in comparison.suggested):
-        used.append(("suggested", "suggested by alignment, for a person to accept or drop"))
+    confident = sum(t.confident for t in comparison.suggested)
+    if confident:
+        drawn = len(drawn_suggestions(plan, comparison.suggested))
+        words = f"suggested by alignment, for a person to accept or drop ({drawn} of {confident} drawn)"
+        used.append(("suggested", words))
     if not all(c.placed.datum_sure for c in plan.columns):
         used.append(("datum", "datum not seen in the well, worked out from the others"))
     shapes: list[Shape] = []
