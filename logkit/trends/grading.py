@@ -35,8 +35,11 @@ UNSURE_PHI = 0.5
 READING_ERROR_PHI = 0.15
 """Standard error of a reading without a count. Ours."""
 
-PRIOR_READINGS = 3.0
+PRIOR_READINGS = 5.0
 """Weight of the stated error against the scatter of the readings about a fit, in readings. Ours."""
+
+CHANGE_PHI = 1.5
+"""Spread of the change over a limb of the profile before the readings are looked at, phi. Ours."""
 
 SHAPE_PRIOR = {"flat": 0.35, "line": 0.30, "one break": 0.25, "two breaks": 0.10}
 """Chance of each shape before the readings are looked at. Ours."""
@@ -44,11 +47,11 @@ SHAPE_PRIOR = {"flat": 0.35, "line": 0.30, "one break": 0.25, "two breaks": 0.10
 
 @dataclass(frozen=True, slots=True)
 class _Shape:
-    """A fitted shape: its prior, its words with shares, its criterion and the breaks."""
+    """A fitted shape: its prior, its words with shares, the logarithm of its evidence, its breaks."""
 
     prior: float
     words: tuple[tuple[GradingWord, float], ...]
-    criterion: float
+    evidence: float
     breaks: tuple[float, ...]
 
 
@@ -66,13 +69,13 @@ def grade_bed(bed: Bed) -> Grading:
     Notes
     -----
     Base and top sizes: each is uniform in phi over its interval; a step under 0.25 phi is no change.
-    Readings: flat, straight, and broken profiles are compared by Schwarz's criterion with the reading
-    error as a prior of the scatter; a break may stand at any inner reading, all places being equally likely.
-    With two breaks the middle is flat.
+    Readings: flat, straight and broken profiles are compared by their marginal likelihood under normal
+    changes and a scatter about the reading error; a break may stand at any inner reading, all places being
+    equally likely, and with two breaks the middle is flat.
 
     References
     ----------
-    schwarz_1978, kendall_1938, sen_1968
+    gelman_2013, kendall_1938, sen_1968
     """
     if bed.is_gap:
         return Grading(bed.name, "not determinable", basis="a gap has no grain sizes")
@@ -152,11 +155,13 @@ def _state_shares(bounds: Sequence[tuple[float, float]]) -> dict[GradingWord, fl
         points = np.random.default_rng(count).random((4000, count))
     low, high = np.array(bounds).T
     sizes = low + points * (high - low)
-    rows, counts = np.unique(_signs(sizes), axis=0, return_counts=True)
+    # seen from both ends, since small steps add up from where one starts
+    signs = np.concatenate([_signs(sizes), -_signs(sizes[:, ::-1])[:, ::-1]])
+    rows, counts = np.unique(signs, axis=0, return_counts=True)
     shares: dict[GradingWord, float] = {}
     for row, number in zip(rows, counts, strict=True):
         word = _word([int(sign) for sign in row])
-        shares[word] = shares.get(word, 0.0) + float(number) / sizes.shape[0]
+        shares[word] = shares.get(word, 0.0) + float(number) / signs.shape[0]
     return shares
 
 
@@ -238,11 +243,11 @@ def _coarse_shares(
 def _compare_shapes(x: Array, y: Array, error: float) -> tuple[dict[GradingWord, float], tuple[float, ...]]:
     """Shares of the words, and the breaks of the best shape of the best word."""
     shapes = list(_shapes(x, y, error))
-    least = min(shape.criterion for shape in shapes)
+    most = max(shape.evidence for shape in shapes)
     shares: dict[GradingWord, float] = {}
     best: dict[GradingWord, tuple[float, tuple[float, ...]]] = {}
     for shape in shapes:
-        weight = shape.prior * math.exp(-0.5 * (shape.criterion - least))
+        weight = shape.prior * math.exp(shape.evidence - most)
         for word, share in shape.words:
             shares[word] = shares.get(word, 0.0) + weight * share
             if weight * share > best.get(word, (0.0, ()))[0]:
@@ -254,18 +259,17 @@ def _compare_shapes(x: Array, y: Array, error: float) -> tuple[dict[GradingWord,
 
 
 def _shapes(x: Array, y: Array, error: float) -> list[_Shape]:
-    one = np.ones_like(x)
     inner = sorted(set(x.tolist()))[1:-1]
-    shapes = [_fit(x, y, error, [one], SHAPE_PRIOR["flat"], ())]
-    shapes.append(_fit(x, y, error, [one, x], SHAPE_PRIOR["line"], ()))
+    shapes = [_fit(x, y, error, [], SHAPE_PRIOR["flat"], ())]
+    shapes.append(_fit(x, y, error, [x], SHAPE_PRIOR["line"], ()))
     for place in inner:
         below, above = np.minimum(x - place, 0.0), np.maximum(x - place, 0.0)
         prior = SHAPE_PRIOR["one break"] / len(inner) / 3
-        for columns in ([one, below], [one, above], [one, below, above]):
+        for columns in ([below], [above], [below, above]):
             shapes.append(_fit(x, y, error, columns, prior, (place,)))
     pairs = list(itertools.combinations(inner, 2)) if x.size >= 6 else []
     for first, second in pairs[:200]:
-        columns = [one, np.minimum(x - first, 0.0), np.maximum(x - second, 0.0)]
+        columns = [np.minimum(x - first, 0.0), np.maximum(x - second, 0.0)]
         shapes.append(_fit(x, y, error, columns, SHAPE_PRIOR["two breaks"] / len(pairs), (first, second)))
     return shapes
 
@@ -273,23 +277,42 @@ def _shapes(x: Array, y: Array, error: float) -> list[_Shape]:
 def _fit(
     x: Array, y: Array, error: float, columns: list[Array], prior: float, breaks: tuple[float, ...]
 ) -> _Shape:
-    design = np.stack(columns, axis=1)
-    fitted, *_ = np.linalg.lstsq(design, y, rcond=None)
-    squares = float(np.sum((y - design @ fitted) ** 2))
-    n = x.size
-    criterion = (n + PRIOR_READINGS) * math.log1p(squares / (PRIOR_READINGS * error**2))
-    criterion += len(columns) * math.log(n)
-    slopes = fitted[1:]
-    if len(columns) == 1:
-        words: tuple[tuple[GradingWord, float], ...] = (("ungraded", 1.0),)
-    elif len(columns) == 2 and not breaks:
-        variance = (squares + PRIOR_READINGS * error**2) / (n + PRIOR_READINGS)
-        score = float(slopes[0]) * math.sqrt(float(np.sum((x - x.mean()) ** 2)) / variance)
+    """One shape with its marginal likelihood; `columns` has no column for the level, which is free."""
+    count = x.size
+    if not columns:
+        return _Shape(prior, (("ungraded", 1.0),), _log_evidence(y, None, error), breaks)
+    design = np.stack([column / np.ptp(column) for column in columns], axis=1)  # slopes become changes, phi
+    design = design - design.mean(axis=0)
+    evidence = _log_evidence(y, design, error)
+    changes, squares, *_ = np.linalg.lstsq(design, y - y.mean(), rcond=None)
+    if len(columns) == 1 and not breaks:
+        scatter = (float(squares.sum()) + PRIOR_READINGS * error**2) / (count + PRIOR_READINGS)
+        score = float(changes[0]) * math.sqrt(float(np.sum(design**2)) / scatter)
         finer = 0.5 * math.erfc(-score / math.sqrt(2))
-        words = (("normal", finer), ("inverse", 1 - finer))
+        words: tuple[tuple[GradingWord, float], ...] = (("normal", finer), ("inverse", 1 - finer))
     else:
-        words = ((_word([int(np.sign(round(float(s), 9))) for s in slopes]), 1.0),)
-    return _Shape(prior, words, criterion, breaks)
+        words = ((_word([int(np.sign(c)) if abs(c) >= SAME_PHI else 0 for c in changes]), 1.0),)
+    return _Shape(prior, words, evidence, breaks)
+
+
+def _log_evidence(y: Array, design: Array | None, error: float) -> float:
+    """Logarithm of the marginal likelihood of centred readings, without what all shapes share.
+
+    Changes are normal about zero with `CHANGE_PHI` a limb, the scatter is inverse gamma about the error
+    with the weight of `PRIOR_READINGS`, the level is free.
+    """
+    centred = y - y.mean()
+    squares = float(centred @ centred)
+    log_determinant = 0.0
+    if design is not None:
+        stretch = (CHANGE_PHI / error) ** 2
+        information = np.eye(design.shape[1]) + stretch * design.T @ design
+        projection = design.T @ centred
+        squares -= stretch * float(projection @ np.linalg.solve(information, projection))
+        log_determinant = float(np.linalg.slogdet(information)[1])
+    prior = PRIOR_READINGS * error**2
+    power = y.size - 1 + PRIOR_READINGS
+    return -0.5 * (log_determinant + power * math.log1p(max(squares, 0.0) / prior))
 
 
 def _verdict(name: str, shares: dict[GradingWord, float], basis: str, *, style: str = "",

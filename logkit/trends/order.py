@@ -29,6 +29,10 @@ CUTTING = "cutting into pieces"
 """The feature that packages must show: what is gained by cutting into flat and sloping pieces."""
 
 
+SIGNED = ("alternation", "step asymmetry", "step balance")
+"""Features that are no sums of squares; of those the cube root is nearly normal and is used instead."""
+
+
 @dataclass(frozen=True, slots=True)
 class OrderTest:
     """Result of the test of one series against random order.
@@ -96,11 +100,12 @@ def order_test(runs: Sequence[npt.ArrayLike], quantity: str = "grain size") -> O
         rows[1:] = generator.permuted(np.broadcast_to(ranks, (shuffles, array.size)), axis=1)
         for name, values in _features(rows, total).items():
             scores[name] = scores[name] + values if name in scores else values
-    for name in ("step asymmetry", "step balance"):
+    for name in SIGNED[1:]:
         scores[name] = np.abs(scores[name])
     names = list(scores)
     matrix = np.stack([scores[name] for name in names])
-    standard = _standardised(matrix)
+    signed = np.array([name in SIGNED for name in names])
+    standard = _standardised(np.where(signed[:, None], matrix, np.cbrt(matrix)))
     strongest = names[int(np.argmax(standard[:, 0]))]
     single = np.mean(standard >= standard[:, :1] - 1e-9, axis=1)
     return OrderTest(
@@ -155,12 +160,11 @@ def _features(rows: Array, total: int) -> dict[str, Array]:
 def _standardised(scores: Array) -> Array:
     """Scores of each feature (a row) as deviations from the mean of all copies, in their spread.
 
-    Sums of squares are skewed: their cube root is nearly normal. A feature that cannot vary is zero.
+    A feature that cannot vary is zero.
     """
-    even = np.cbrt(scores)
-    spread = even.std(axis=1, keepdims=True)
-    middle = even.mean(axis=1, keepdims=True)
-    return np.divide(even - middle, spread, out=np.zeros_like(even), where=spread > 1e-12)
+    spread = scores.std(axis=1, keepdims=True)
+    middle = scores.mean(axis=1, keepdims=True)
+    return np.divide(scores - middle, spread, out=np.zeros_like(scores), where=spread > 1e-12)
 
 
 def _largest(standard: Array) -> float:

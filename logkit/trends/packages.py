@@ -28,8 +28,11 @@ FLAT_PRICE, SLOPE_PRICE = 1.3, 2.3
 NESTING_PRICE = 4.0
 """How much dearer a cut is when packages are gathered into larger ones. Ours."""
 
-TRIED = (0.5, 2.0)
-"""Penalties tried for the support of a boundary, times the one used."""
+TRIED = (1.5, 2.0, 3.0, 4.0)
+"""Dearer penalties tried for the support of a boundary, times the one used."""
+
+ROUGH = 200
+"""Longest piece of the rough cut that estimates the noise."""
 
 WORDS: dict[Quantity, tuple[str, str]] = {
     "grain size": ("fining-up", "coarsening-up"),
@@ -44,7 +47,7 @@ class Boundary:
 
     height_m : base of the upper package
     change : mean of the upper less mean of the lower package, phi or ln(m)
-    support : share of the penalties half and twice the one used that keep it within one bed
+    support : share of four dearer penalties, to four times the one used, that keep it
     """
 
     quantity: str
@@ -145,7 +148,7 @@ def _noise(runs: Sequence[Run], minimum: int) -> float:
     total = int(sizes.sum())
     squares, freedom = 0.0, 0.0
     for run in runs:
-        pieces = cut(run.values, *_prices(first, total), weights=run.weights, minimum=minimum)
+        pieces = cut(run.values, *_prices(first, total), weights=run.weights, minimum=minimum, longest=ROUGH)
         squares += sum(piece.squares for piece in pieces)
         freedom += run.values.size - sum(2 + piece.sloping for piece in pieces)
     if freedom < 4:
@@ -192,10 +195,11 @@ def _holds_others(piece: Piece, found: list[tuple[Piece, int]]) -> bool:
 def _boundaries(
     quantity: Quantity, run: Run, pieces: list[Piece], noise: float, beds: int, minimum: int
 ) -> list[Boundary]:
-    tried = [np.array([p.start for p in _cut_run(run, noise, beds, minimum, factor)[1:]]) for factor in TRIED]
+    places = tuple(piece.start for piece in pieces[1:])
+    tried = [{p.start for p in _cut_run(run, noise, beds, minimum, factor, places)[1:]} for factor in TRIED]
     result = []
     for lower, upper in itertools.pairwise(pieces):
-        kept = [bool(np.any(np.abs(places - upper.start) <= 1)) for places in tried]
+        kept = [upper.start in starts for starts in tried]
         change = run.values[upper.start : upper.stop].mean() - run.values[lower.start : lower.stop].mean()
         bed = run.beds[upper.start]
         result.append(Boundary(quantity, bed.base_m, bed.name, float(change), sum(kept) / len(kept)))

@@ -55,6 +55,7 @@ def cut(
     *,
     weights: npt.ArrayLike | None = None,
     minimum: int = 1,
+    longest: int | None = None,
     places: tuple[int, ...] | None = None,
 ) -> tuple[Piece, ...]:
     """The pieces with the least sum of squares plus penalties.
@@ -66,6 +67,7 @@ def cut(
         flat pieces only
     weights : (n,) weights of the squares, 1 by default
     minimum : fewest items of a piece; a shorter series is one piece
+    longest : most items of a piece, for a rough cut of a long series; no limit by default
     places : where cuts are allowed (number of items below the cut); everywhere by default
 
     Notes
@@ -89,7 +91,8 @@ def cut(
     # starts still worth trying, with the best cost below each and the stop from which each is useless
     starts = np.zeros(len(stops) + 1, dtype=np.intp)
     costs = np.zeros(len(stops) + 1)
-    expiry = np.full(len(stops) + 1, n + 1, dtype=np.intp)
+    reach = n + 1 if longest is None else longest + 1
+    expiry = np.full(len(stops) + 1, reach, dtype=np.intp)
     count = 1
     for number, stop in enumerate(stops):
         if number % 16 == 0:  # a useless start does no harm, so they are thrown out now and then
@@ -110,7 +113,7 @@ def cut(
         origin[stop] = (int(starts[k]), sloping, float(sloped[k] if sloping else flat[k]))
         dear = total >= least + margin
         expiry[:ready][dear] = np.minimum(expiry[:ready][dear], stop + minimum)
-        starts[count], costs[count], expiry[count] = stop, least, n + 1
+        starts[count], costs[count], expiry[count] = stop, least, stop + reach
         count += 1
     pieces: list[Piece] = []
     stop = n

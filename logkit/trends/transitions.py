@@ -95,16 +95,17 @@ class Transitions:
         verdict = "not distinguished from random" if self.p > self.level else "not independent"
         lines = [f"{head}: {verdict} (chi-square {self.chi_square:.1f}, {self.df} degrees of freedom, "
                  f"p {_small(self.p)})."]  # fmt: skip
-        lines += [
-            f"{spoken(pair.above)} lies on {spoken(pair.below)} {'more' if pair.residual > 0 else 'less'} often than by "
-            f"chance ({pair.count} times, {pair.expected:.1f} expected, adjusted p {_small(pair.p_adjusted)})."
-            for pair in self.significant
-        ]
+        for pair in self.significant:
+            often = "more" if pair.residual > 0 else "less"
+            lines.append(
+                f"{spoken(pair.above)} lies on {spoken(pair.below)} {often} often than by chance "
+                f"({pair.count} times, {pair.expected:.1f} expected, adjusted p {_small(pair.p_adjusted)})."
+            )
         return [*lines, *self.notes]
 
 
 def spoken(state: str) -> str:
-    """A state as read out: its label in the vocabulary of lithologies or structures, else without underscores."""
+    """A state in words: its label as a lithology or a structure, else without underscores."""
     for name in ("lithologies", "structures"):
         terms = vocabulary(name)
         if state in terms:
