@@ -18,6 +18,7 @@ import logkit
 from logkit.compare.codes import LITHOLOGY_STEP, facies_label, facies_number
 from logkit.errors import ArgumentError, LogkitError
 from logkit.model.caution import CAUTION
+from logkit.words import counted
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
@@ -254,7 +255,7 @@ def _other_section(between: int, step: float, unit: str) -> list[str]:
 
     text = [
         CAUTION,
-        f"{between} beds fall between two steps of {step:g} {unit} and do not show in the curves; "
+        f"{counted(between, 'bed')} thin enough to fall between two steps of {step:g} {unit}, not shown in the curves; "
         "the interval table holds every bed.",
     ]
     return ["~Other", *(f" {line}" for part in text for line in textwrap.wrap(ascii_text(part), 100))]

@@ -21,6 +21,7 @@ from logkit.compare.handover import HandoverWriter, WellFiles, well_files
 from logkit.compare.placing import place_logs
 from logkit.errors import ArgumentError, LogkitError
 from logkit.files import write_atomic
+from logkit.words import counted
 
 if TYPE_CHECKING:
     import pandas as pd
@@ -82,7 +83,9 @@ class ManyWells:
 
     def summary(self) -> list[str]:
         """What happened, in sentences."""
-        said = [f"{len(self.values)} wells written, {len(self.failures)} files could not be used."]
+        said = [
+            f"{counted(len(self.values), 'well')} written, {counted(len(self.failures), 'file')} could not be used."
+        ]
         said += [f"{source}: {problem}" for source, problem in self.failures]
         return said
 

@@ -66,7 +66,7 @@ class Survey:
 
         References
         ----------
-        minimum_curvature
+        taylor_mason_1972
         """
         wanted = np.atleast_1d(np.asarray(measured_depth_m, dtype=float))
         stations = np.asarray(self.measured_depth_m, dtype=float)

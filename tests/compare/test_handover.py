@@ -80,7 +80,7 @@ def test_las_keeps_to_the_standard(tmp_path: Path) -> None:
     assert las.curves[0].mnemonic == "DEPT"
     legend = {p.mnemonic: p.descr for p in las.params}
     assert legend[f"F{facies_number(well().beds[3])}"] == "FACIES sandstone, trough cross-bedding"
-    assert "1 beds fall between two steps" in las.other
+    assert "1 bed thin enough to fall between two steps of 0.1 m" in " ".join(las.other.split())
     assert "not design floods" in " ".join(las.other.split())
 
 

@@ -33,7 +33,7 @@ def test_one_bad_file_does_not_stop_the_others(folder: Path, processes: int) -> 
     ]  # fmt: skip
     assert [s.sections for s in steps] == [("W0",), ("W1",), (), ("W2",)]
     assert steps[2].problem.startswith("The log has")
-    assert kept.summary()[0] == "3 wells written, 1 files could not be used."
+    assert kept.summary()[0] == "3 wells written, 1 file could not be used."
     assert "w1b.csv" in kept.summary()[1]
     table = pd.read_csv(folder / "out" / "intervals.csv")
     assert table.section.value_counts().to_dict() == {"W0": 12, "W1": 12, "W2": 12}
