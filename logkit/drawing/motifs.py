@@ -1,7 +1,7 @@
 """Motifs: the glyph of every term and how a structure fills a bed, read from motifs.toml.
 
-A motif names its steps (see `marks`), a way of filling with lines (see `strata`) and how objects are placed
-(see `objects`). This module reads and checks the file, cuts the lines to the bed and paints them.
+A motif names its steps (see `marks`), a way of filling with lines (see `strata`, `laminae`) and how objects are
+placed (see `objects`). This module reads and checks the file, cuts the lines to the bed and paints them.
 """
 
 from __future__ import annotations
@@ -20,11 +20,12 @@ import numpy as np
 from logkit.drawing.cutting import cut, inside
 from logkit.drawing.data_file import DataText, Reader, field_types, read_data
 from logkit.drawing.ground import Array, LineSegment
+from logkit.drawing.laminae import Folds, Laminae, Ripples
 from logkit.drawing.marks import Mark, draw_mark, mark_outline, parse_step
 from logkit.drawing.noise import seed_of
 from logkit.drawing.objects import PLACINGS, Objects, Placed
 from logkit.drawing.shapes import Paint, Path, Point, Segment, Shape
-from logkit.drawing.strata import WAYS, Box, Way
+from logkit.drawing.strata import FORMS, ROLES, Box, Domes, Foresets, Troughs, Way
 from logkit.drawing.style import Style
 from logkit.errors import ArgumentError
 from logkit.vocabulary import vocabulary
@@ -32,6 +33,20 @@ from logkit.vocabulary import vocabulary
 GENERIC = "unknown_term"
 """The motif of a term that has none."""
 
+WAYS: dict[str, type[Way]] = {
+    "troughs": Troughs,
+    "foresets": Foresets,
+    "domes": Domes,
+    "laminae": Laminae,
+    "ripples": Ripples,
+    "folds": Folds,
+}
+"""Name in motifs.toml -> way of filling with lines."""
+
+_ABOVE_ZERO = (
+    "angle", "depth", "height", "kept", "lean", "least", "row", "set", "spacing", "stoss", "wavelength", "width",
+)  # fmt: skip
+_WORDS = {"form": FORMS, "role": ROLES}
 _KEYS = ("label", "group", "glyph", "fill", "mark", "objects", "like", "source")
 _SLACK = 0.86  # objects may touch the edge of their bed: this share of them must lie inside
 
@@ -143,23 +158,21 @@ def structure_lines(
         raise ArgumentError("box", box, "x0, y of the top, x1, y of the base with some area")
     drawn = motif(term)
     random = np.random.default_rng(seed ^ seed_of(term))
-    polygon = np.asarray(
-        outline
-        if outline is not None
-        else [(box[0], box[1]), (box[2], box[1]), (box[2], box[3]), (box[0], box[3])],
-        dtype=float,
-    )
+    x0, top, x1, base = box
+    polygon = np.asarray(outline or [(x0, top), (x1, top), (x1, base), (x0, base)], dtype=float)
+    factor = style.texture.magnify
+    inner = (x0 / factor, top / factor, x1 / factor, base / factor)
     strokes: dict[str, list[Array]] = {}
     if drawn.fill is not None:
-        size = None if set_mm is None or not set_mm > 0 else set_mm
-        strata = drawn.fill.lines(box, size, random)
-        for stratum, parts in zip(strata, cut([s.points for s in strata], polygon), strict=True):
+        size = set_mm / factor if set_mm is not None and set_mm > 0 else None
+        strata = drawn.fill.lines(inner, size, random)
+        for stratum, parts in zip(strata, cut([s.points * factor for s in strata], polygon), strict=True):
             strokes.setdefault(stratum.role, []).extend(parts)
     shapes = [_painted(role, lines, style) for role, lines in sorted(strokes.items()) if lines]
     clear = [segment for lines in strokes.values() for line in lines for segment in _segments(line)]
     if drawn.objects is not None:
-        for placed in drawn.objects.places(box, random):
-            made, edges = _object(drawn.mark or drawn.glyph, placed, polygon, style)
+        for placed in drawn.objects.places(inner, random):
+            made, edges = _object(drawn.mark or drawn.glyph, placed.times(factor), polygon, style)
             shapes += made
             clear += edges
     return StructureLines(tuple(shapes), tuple(clear))
@@ -172,15 +185,14 @@ def _segments(line: Array) -> list[LineSegment]:
 
 def _painted(role: str, lines: list[Array], style: Style) -> Shape:
     widths = style.lines
-    weight = {"set": widths.set, "crest": widths.crest, "drape": widths.drape, "mud": widths.crest}
+    weight = {"set": widths.set, "crest": widths.crest, "drape": widths.drape}
     colour = {"set": style.colours.ink, "drape": style.colours.drape}
     steps: list[Segment] = []
     for line in lines:
         steps += [("M" if i == 0 else "L", (x, y)) for i, (x, y) in enumerate(line.tolist())]
     ink = colour.get(role, style.colours.structure)
-    fill = style.colours.chip if role == "mud" else None
     width = weight.get(role, widths.lamina)
-    return Path(tuple(steps), Paint(fill=fill, stroke=ink, width=width, cap="round", join="round"))
+    return Path(tuple(steps), Paint(stroke=ink, width=width, cap="round", join="round"))
 
 
 def _object(
@@ -259,32 +271,20 @@ def _steps(term: str, key: str, table: dict[str, Any], data: DataText) -> Mark:
 
 
 def _way(term: str, table: dict[str, Any], reader: Reader) -> Way:
-    fill = dict(reader.table(table["fill"], (term, "fill")))
-    name = fill.pop("way", None)
+    path = (term, "fill")
+    fill = dict(reader.table(table["fill"], path))
+    name = reader.value(str, fill.pop("way", ""), (*path, "way"))
     if name not in WAYS:
-        raise reader.at((term, "fill")).unknown((term, "fill", str(name)), WAYS)
-    way: Way = reader.record(WAYS[name], fill, (term, "fill"))
+        raise reader.at(path).fail(path, f"way of {term} is {name!r}; it must be one of {', '.join(WAYS)}.")
+    way: Way = reader.record(WAYS[name], fill, path)
     for field in field_types(WAYS[name]):
         value = getattr(way, field)
+        if field in _WORDS and value not in _WORDS[field]:
+            words = ", ".join(_WORDS[field])
+            raise reader.at(path).fail(path, f"{field} of {term} is {value!r}; it must be one of {words}.")
         if field in _ABOVE_ZERO and not value > 0:
-            raise reader.at((term, "fill")).fail((term, "fill"), f"{field} of {term} must be above zero.")
+            raise reader.at(path).fail(path, f"{field} of {term} must be above zero.")
     return way
-
-
-_ABOVE_ZERO = (
-    "lean",
-    "set",
-    "spacing",
-    "row",
-    "wavelength",
-    "angle",
-    "least",
-    "width",
-    "height",
-    "depth",
-    "stoss",
-    "kept",
-)
 
 
 def _objects(term: str, table: dict[str, Any], reader: Reader, data: DataText) -> Objects:

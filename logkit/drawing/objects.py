@@ -25,6 +25,12 @@ class Placed:
     half_height: float
     turn: float = 0.0
 
+    def times(self, factor: float) -> Placed:
+        """The same object in a frame enlarged by a factor."""
+        return Placed(
+            self.x * factor, self.y * factor, self.half_width * factor, self.half_height * factor, self.turn
+        )
+
 
 @dataclass(frozen=True, slots=True)
 class Objects:

@@ -9,7 +9,7 @@ from __future__ import annotations
 from functools import lru_cache
 
 from logkit.drawing.colour import contrast, oklch_hex
-from logkit.drawing.style import FamilyStyle, StateStyle, Style
+from logkit.drawing.style_records import FamilyStyle, StateStyle, Style
 
 COARSEST_PHI, FINEST_PHI = -4.0, 8.0
 """The ramps are flat outside of these grain sizes."""

@@ -1,7 +1,7 @@
 """Styles: what a drawing looks like, read from TOML files that inherit from each other.
 
-The sections of a style file are the classes below, its keys their fields: a key that is no field is an error
-that names the nearest one. What the values do is decided where they are used, not here.
+The sections of a style file are the classes of `style_records`, its keys their fields: a key that is no field is
+an error that names the nearest one. What the values do is decided where they are used, not here.
 """
 
 from __future__ import annotations
@@ -9,19 +9,30 @@ from __future__ import annotations
 import dataclasses
 import types
 from collections.abc import Mapping
-from dataclasses import dataclass, field
 from functools import cache
 from pathlib import Path
 from typing import Any
 
 from logkit.drawing.data_file import (
     DataText,
-    HexColour,
     Origin,
     Reader,
     field_types,
     key_of,
     read_data,
+)
+from logkit.drawing.style_records import (
+    PAPER_MM,
+    ColourStyle,
+    FontStyle,
+    LineStyle,
+    NoteStyle,
+    PageStyle,
+    PaletteStyle,
+    RibbonStyle,
+    Style,
+    TextureStyle,
+    TrackStyle,
 )
 from logkit.errors import ArgumentError, LogkitError, UnknownNameError
 from logkit.resources import shipped
@@ -34,218 +45,6 @@ LEAST_TYPE_PT = 6.0
 
 LEAST_LINE_MM = 0.05
 """No line of a style is thinner than this, mm."""
-
-PAPER_MM: dict[str, tuple[float, float]] = {
-    "A0": (841.0, 1189.0),
-    "A1": (594.0, 841.0),
-    "A2": (420.0, 594.0),
-    "A3": (297.0, 420.0),
-    "A4": (210.0, 297.0),
-    "A5": (148.0, 210.0),
-    "Letter": (215.9, 279.4),
-    "Legal": (215.9, 355.6),
-    "Tabloid": (279.4, 431.8),
-}
-"""Upright width and height of named paper sizes, mm. "roll" is as long as the drawing needs."""
-
-
-@dataclass(frozen=True, slots=True)
-class PageStyle:
-    """Paper and the fixed heights on it; mm from the top edge."""
-
-    size: str | tuple[float, ...]
-    landscape: bool
-    margin: float
-    scale: float
-    rule: float
-    summary: float
-    heads: float
-    section_top: float
-    legend: bool
-
-
-@dataclass(frozen=True, slots=True)
-class TrackStyle:
-    """One track: free space before it and its width, mm, and its head ("" for none)."""
-
-    gap: float
-    width: float
-    title: str
-
-
-@dataclass(frozen=True, slots=True)
-class FontStyle:
-    """Type sizes in points; the type is DejaVu Sans, which ships with the installation."""
-
-    title: float
-    subtitle: float
-    head: float
-    label: float
-    metre: float
-    note: float
-    caution: float
-
-
-@dataclass(frozen=True, slots=True)
-class LineStyle:
-    """Line weights, mm."""
-
-    spine: float
-    erosive: float
-    profile: float
-    contact: float
-    set: float
-    crest: float
-    clast: float
-    stroke: float
-    lamina: float
-    hairline: float
-    thread: float
-    link: float
-    drape: float
-    rule: float
-    glyph: float
-    outline: float
-
-
-@dataclass(frozen=True, slots=True)
-class ColourStyle:
-    """Inks and other colours that do not follow grain size."""
-
-    paper: HexColour
-    ink: HexColour
-    ink2: HexColour
-    structure: HexColour
-    grid: HexColour
-    drape: HexColour
-    chip: HexColour
-    clast: HexColour
-    trend: HexColour
-    rose: HexColour
-    conflict: HexColour
-    on_conflict: HexColour
-    break_: HexColour
-
-
-@dataclass(frozen=True, slots=True)
-class FamilyStyle:
-    """Fill of a texture family: OKLCH chroma and hue, lightness offset (darker), and its mark in words."""
-
-    chroma: float
-    hue: float
-    offset: float
-    mark: str
-
-
-@dataclass(frozen=True, slots=True)
-class PaletteStyle:
-    """How a family and a grain size become fill and stipple colours; see `palette.fill`."""
-
-    lightest: float
-    step: float
-    offsets: float
-    chroma: float
-    stipple: float
-    stipple_dark: float
-    stipple_chroma: float
-    stipple_contrast: float
-    families: Mapping[str, FamilyStyle] = field(default_factory=dict)
-
-
-@dataclass(frozen=True, slots=True)
-class TextureStyle:
-    """Sizes and limits of the texture marks, mm; see `textures.bed_texture`."""
-
-    dots: bool
-    diameter: float
-    diameter_rate: float
-    spacing: float
-    spacing_rate: float
-    clear: float
-    triangles: float
-    least_bed: float
-    least_segment: float
-    least_glyph: float
-    most_dots: int
-    most_clasts: int
-    scallop: tuple[float, ...]
-    least_relief: float
-
-
-@dataclass(frozen=True, slots=True)
-class StateStyle:
-    """A bed state on the ribbon: its letter, its label, OKLCH of the outer tint."""
-
-    letter: str
-    label: str
-    lightness: float
-    chroma: float
-    hue: float
-
-
-@dataclass(frozen=True, slots=True)
-class RibbonStyle:
-    """The flow ribbon: line, free edges, axis limits, tints of the bed states."""
-
-    outline: float
-    outline_inner: bool
-    edge: float
-    letter_gap: float
-    velocity: tuple[float, ...]
-    flow_depth: tuple[float, ...]
-    fit_axis: bool
-    inner_darker: float
-    inner_chroma: float
-    sail_fill: bool
-    states: Mapping[str, StateStyle] = field(default_factory=dict)
-
-
-@dataclass(frozen=True, slots=True)
-class NoteStyle:
-    """Notes in the margin: gap between them, mm; line height as a factor on the type size."""
-
-    gap: float
-    line_height: float
-
-
-@dataclass(frozen=True, slots=True)
-class Style:
-    """A complete style.
-
-    Attributes
-    ----------
-    name : name or file it was loaded from
-    label : in words
-    source : whose design it is
-    order : tracks from left to right; `tracks` holds their sizes
-    """
-
-    name: str
-    label: str
-    source: str
-    page: PageStyle
-    order: tuple[str, ...]
-    tracks: Mapping[str, TrackStyle]
-    fonts: FontStyle
-    lines: LineStyle
-    colours: ColourStyle
-    palette: PaletteStyle
-    texture: TextureStyle
-    ribbon: RibbonStyle
-    notes: NoteStyle
-
-    def __hash__(self) -> int:
-        return hash((self.name, self.label))
-
-    def page_size_mm(self) -> tuple[float, float | None]:
-        """Width and height of the page, mm; the height of a roll is None."""
-        size = self.page.size
-        if not isinstance(size, str):
-            return size[0], size[1]
-        if size == "roll":
-            return PAPER_MM["A4"][0], None
-        width, height = PAPER_MM[size]
-        return (height, width) if self.page.landscape else (width, height)
 
 
 _SECTIONS: dict[str, Any] = {
@@ -431,6 +230,9 @@ def _check_ranges(style: Style, check: Reader) -> None:
             raise check.at(path).fail(
                 path, f"{'.'.join(path)} must be two numbers above zero, the smaller first."
             )
+    if style.texture.magnify <= 0:
+        path = ("texture", "magnify")
+        raise check.at(path).fail(path, "texture.magnify must be above zero.")
     if style.page.scale <= 0:
         raise check.at(("page", "scale")).fail(("page", "scale"), "page.scale must be above zero.")
     for name, track in style.tracks.items():
