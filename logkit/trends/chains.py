@@ -86,6 +86,10 @@ def count_transitions(
 def quasi_independent(counts: npt.ArrayLike, tolerance: float = 1e-9, most: int = 10_000) -> Array:
     """Expected counts without self transitions, row and column sums as observed.
 
+    Parameters
+    ----------
+    counts : (..., k, k) counts, rows below, columns above; leading axes are separate tables
+
     Notes
     -----
     E_ij = a_i b_j off the diagonal, by iterative proportional fitting until the largest change is below
@@ -96,17 +100,13 @@ def quasi_independent(counts: npt.ArrayLike, tolerance: float = 1e-9, most: int 
     davis_2002, powers_easterling_1982
     """
     observed = np.asarray(counts, dtype=float)
-    rows, columns = observed.sum(axis=1), observed.sum(axis=0)
-    expected = np.ones_like(observed)
-    np.fill_diagonal(expected, 0)
-    expected[rows == 0] = 0
-    expected[:, columns == 0] = 0
+    rows, columns = observed.sum(axis=-1, keepdims=True), observed.sum(axis=-2, keepdims=True)
+    expected = (1 - np.eye(observed.shape[-1])) * (rows > 0) * (columns > 0)
     for _ in range(most):
         before = expected
-        sums = expected.sum(axis=1)
-        expected = expected * np.divide(rows, sums, out=np.zeros_like(rows), where=sums > 0)[:, None]
-        sums = expected.sum(axis=0)
-        expected = expected * np.divide(columns, sums, out=np.zeros_like(columns), where=sums > 0)
+        for axis, totals in ((-1, rows), (-2, columns)):
+            sums = expected.sum(axis=axis, keepdims=True)
+            expected = expected * np.divide(totals, sums, out=np.zeros_like(totals), where=sums > 0)
         if np.max(np.abs(expected - before), initial=0.0) < tolerance:
             break
     return expected
@@ -123,10 +123,26 @@ def degrees_of_freedom(counts: npt.ArrayLike) -> int:
     return cells - int(rows.sum()) - int(columns.sum()) + 1
 
 
-def chi_square(counts: npt.ArrayLike, expected: npt.ArrayLike) -> float:
-    """Sum of (n - E)^2/E over the cells with an expectation."""
+def chi_square(counts: npt.ArrayLike, expected: npt.ArrayLike) -> Array:
+    """Sum of (n - E)^2/E over the cells with an expectation, for each of (..., k, k) tables."""
     n, e = np.asarray(counts, float), np.asarray(expected, float)
-    return float(np.sum(np.divide((n - e) ** 2, e, out=np.zeros_like(n), where=e > 0)))
+    cells = np.divide((n - e) ** 2, e, out=np.zeros_like(e), where=e > 1e-12)
+    result: Array = cells.sum(axis=(-2, -1))
+    return result
+
+
+def simulated_p(counts: npt.ArrayLike, expected: npt.ArrayLike, copies: int = 499) -> float:
+    """Share of simulated tables whose chi-square is at least as large as that of the counts.
+
+    Tables are drawn from the expected counts with the same total and fitted anew, which holds where
+    expected counts are too small for the chi-square distribution. The seed comes from the counts.
+    """
+    n, e = np.asarray(counts, float), np.asarray(expected, float)
+    generator = np.random.default_rng(int(np.sum(n * np.arange(n.size).reshape(n.shape))))
+    chances = e.ravel() / e.sum()
+    drawn = generator.multinomial(int(n.sum()), chances, size=copies).reshape(copies, *n.shape).astype(float)
+    theirs = chi_square(drawn, quasi_independent(drawn, tolerance=1e-6, most=300))
+    return float((1 + np.sum(theirs >= chi_square(n, e) - 1e-9)) / (copies + 1))
 
 
 @formula(
@@ -200,7 +216,7 @@ def markov_chi_square(sequence: Sequence[str]) -> float:
     davis_2002, powers_easterling_1982
     """
     counts = count_transitions([sequence])[1]
-    return chi_square(counts, quasi_independent(counts))
+    return float(chi_square(counts, quasi_independent(counts)))
 
 
 @formula(

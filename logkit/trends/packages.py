@@ -83,8 +83,8 @@ def find_packages(
     -----
     Half the level goes to the search: cuts are made only where the gain from cutting is rarer in random
     order than that half, shared over the quantities. The other half goes to the trends: Kendall's p of
-    every package of every quantity, adjusted together by Benjamini-Hochberg, must be below it. So both
-    errors together stay within the level, whatever the cut finds.
+    every package of every quantity is adjusted by Benjamini-Hochberg and doubled. So both errors together
+    stay within the level, whatever the cut finds.
 
     A flat piece costs 1.3 ln(n) times the noise variance, a sloping one 2.3. The noise is estimated from
     bed-to-bed steps, then from what a first cut leaves, and is never below that of the size classes.
@@ -115,7 +115,7 @@ def find_packages(
                 candidates.append((quantity, _Candidate(run, piece, depth, test_of)))
     adjusted = adjusted_p([c.test.p for _, c in candidates])
     packages = [
-        _package(quantity, c, float(p), level / 2)
+        _package(quantity, c, min(2 * float(p), 1.0), level)
         for (quantity, c), p in zip(candidates, adjusted, strict=True)
     ]
     packages.sort(key=lambda p: (p.quantity, p.base_m, p.level))

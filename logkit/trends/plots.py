@@ -15,6 +15,7 @@ import numpy as np
 from logkit.errors import ArgumentError
 from logkit.model import CurrentSummary, Package
 from logkit.trends.circular import rose_radius
+from logkit.trends.results import indicator_words
 from logkit.trends.thickness import Thickness, cumulative
 from logkit.trends.transitions import Transitions, spoken
 
@@ -50,8 +51,7 @@ def rose(ax: Axes, summary: CurrentSummary, class_width_deg: float = 20.0) -> Ax
     _bare(ax)
     ax.set_xlim(-1.3, 1.3)
     ax.set_ylim(-1.3, 1.3)
-    name = summary.indicator.replace("_", " ")
-    ax.set_title(f"{name}, n = {summary.n}", fontsize=SIZE, color=INK)
+    ax.set_title(f"{indicator_words(summary.indicator)}, n = {summary.n}", fontsize=SIZE, color=INK)
     axis = summary.sense == "axis"
     span = 180.0 if axis else 360.0
     classes = round(span / class_width_deg)

@@ -15,6 +15,7 @@ from logkit.trends.order import OrderTest
 from logkit.trends.packages import Boundary
 from logkit.trends.thickness import Thickness
 from logkit.trends.transitions import Transitions
+from logkit.vocabulary import vocabulary
 
 if TYPE_CHECKING:
     import pandas as pd
@@ -165,6 +166,14 @@ class Trends:
         lines += self.thickness.sentences()
         lines += self.transitions.sentences()
         lines += [current_sentence(summary) for summary in self.currents]
+        for turn in self.current_trends:
+            if turn.p <= self.level:
+                way = "clockwise" if turn.turn_deg_per_m > 0 else "anticlockwise"
+                lines.append(
+                    f"Palaeocurrents, {indicator_words(turn.indicator)}: turn {way} up-section, "
+                    f"{abs(turn.turn_deg_per_m):.2g}° a metre (n = {turn.n}, tau {turn.tau:.2f}, "
+                    f"p {_chance(turn.p)})."
+                )
         return lines
 
     def _grading_sentence(self) -> str:
@@ -176,9 +185,15 @@ class Trends:
         return f"Grading of {len(self.gradings)} intervals: {', '.join(parts)}."
 
 
+def indicator_words(indicator: str) -> str:
+    """An indicator in words: its label, or what it says when several kinds are put together."""
+    known = vocabulary("indicators")
+    return known[indicator].label if indicator in known else indicator.replace("_", " ")
+
+
 def current_sentence(summary: CurrentSummary) -> str:
     """One summary of palaeocurrents in words."""
-    name = summary.indicator.replace("_", " ")
+    name = indicator_words(summary.indicator)
     if summary.mean_deg is None:
         return " ".join(
             [f"Palaeocurrents, {name} ({summary.n} readings): no mean direction.", *summary.notes]

@@ -1,7 +1,8 @@
 """A log as series of numbers and states: what of a bed goes into the statistics, and what stays out.
 
 Gaps break a series and never count. A bed without a written size takes the usual range of its lithology,
-which is counted and said; a layer of a written pattern is left out of thickness statistics.
+which is counted and said. Layers of a written pattern ("6 x (8 vfs / 4 mdst)") are left out: neither their
+order nor their thickness was measured.
 """
 
 from __future__ import annotations
@@ -98,10 +99,10 @@ def series(log: Log, quantity: Quantity) -> tuple[Run, ...]:
 
 
 def _value(bed: Bed, quantity: Quantity) -> tuple[float, float] | None:
-    if bed.thickness_m <= 0:
+    if bed.thickness_m <= 0 or not bed.measured:
         return None
     if quantity == "thickness":
-        return (math.log(bed.thickness_m), 0.0) if bed.measured else None
+        return math.log(bed.thickness_m), 0.0
     size = bed_size(bed)
     return None if size is None else (size.middle_phi, size.fine_phi - size.coarse_phi)
 

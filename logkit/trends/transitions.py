@@ -5,7 +5,6 @@ The arithmetic is in `chains`; here beds become states and the result becomes ta
 
 from __future__ import annotations
 
-import math
 from collections.abc import Callable
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, Literal
@@ -15,7 +14,13 @@ import numpy.typing as npt
 
 from logkit.errors import ArgumentError
 from logkit.model import Bed, Log
-from logkit.trends.chains import chi_square, count_transitions, degrees_of_freedom, quasi_independent
+from logkit.trends.chains import (
+    chi_square,
+    count_transitions,
+    degrees_of_freedom,
+    quasi_independent,
+    simulated_p,
+)
 from logkit.trends.ranks import adjusted_p
 from logkit.trends.series import bed_size, size_class
 from logkit.vocabulary import vocabulary
@@ -48,9 +53,11 @@ class Transitions:
     Attributes
     ----------
     states, counts, expected : names; (k, k) counts and counts expected, rows below, columns above
-    chi_square, df, p : test against quasi-independence; None when not determinable
+    chi_square, df, p : test against quasi-independence; None when not determinable; p is from simulated
+        tables where more than a fifth of the expected counts is below 5
     pairs : every cell with an expectation; `significant` those with adjusted p below the level
-    breaks : gaps and stateless beds that broke the chain; merged : contacts of a state with itself
+    breaks : times the chain was broken by gaps, faults, written patterns and beds without a state
+    merged : contacts of a state with itself
     notes : what limits the result
     """
 
@@ -139,7 +146,8 @@ def find_transitions(log: Log, by: States = "lithology", level: float = 0.05) ->
 
     Parameters
     ----------
-    log : the log; gaps and faults break the chain, and so do beds without a state
+    log : the log; gaps and faults break the chain, and so do beds without a state and layers of a
+        written pattern, whose order was not measured
     by : what a state is
     level : level of the test and of the adjusted cells
 
@@ -148,14 +156,14 @@ def find_transitions(log: Log, by: States = "lithology", level: float = 0.05) ->
     davis_2002, powers_easterling_1982, benjamini_hochberg_1995
     """
     pieces: list[list[str]] = []
-    breaks = merged = 0
+    merged = 0
     for run in log.runs:
         piece: list[str] = []
         for bed in run:
             if bed.contact is not None and bed.contact.kind == "faulted" and piece:
                 pieces.append(piece)
                 piece = []
-            state = state_of(bed, by)
+            state = state_of(bed, by) if bed.measured else ""
             if state:
                 merged += bool(piece) and piece[-1] == state
                 piece.append(state)
@@ -181,7 +189,7 @@ def _tested(
                            notes=tuple(notes))  # fmt: skip
     from scipy.special import chdtrc, pdtr, pdtrc
 
-    statistic = chi_square(counts, expected)
+    statistic = float(chi_square(counts, expected))
     cells = np.argwhere(expected > 1e-9)
     n, e = counts[tuple(cells.T)], expected[tuple(cells.T)]
     tail = np.minimum(np.where(n > 0, pdtrc(n - 1, e), 1.0), pdtr(n, e))
@@ -196,9 +204,11 @@ def _tested(
     )
     small = int(np.sum(e < 5))
     if small > 0.2 * e.size:
+        chance = simulated_p(counts, expected)
         notes.append(
-            f"{small} of {e.size} expected counts are below 5: the chi-square of the transitions is rough."
+            f"{small} of {e.size} expected counts are below 5: p of the transitions is from simulated tables."
         )
-    chance = float(chdtrc(df, statistic))
-    return Transitions(by, states, counts, expected, statistic, df, chance if math.isfinite(chance) else None,
+    else:
+        chance = float(chdtrc(df, statistic))
+    return Transitions(by, states, counts, expected, statistic, df, chance,
                        pairs, breaks, merged, level, notes=tuple(notes))  # fmt: skip

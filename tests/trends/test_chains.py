@@ -6,6 +6,7 @@ import numpy as np
 import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
+from scipy import stats
 
 from logkit.errors import LogkitError
 from logkit.model import Bed, Contact, Log
@@ -15,6 +16,7 @@ from logkit.trends.chains import (
     degrees_of_freedom,
     quasi_independent,
     shipped_sequence,
+    simulated_p,
 )
 from logkit.trends.transitions import find_transitions
 
@@ -100,6 +102,16 @@ def test_gaps_and_faults_break_the_chain(states: str, total: int, breaks: int, m
     assert (result.total, result.breaks, result.merged) == (total, breaks, merged)
 
 
+def test_a_written_pattern_breaks_the_chain() -> None:
+    """Layers of a pattern were not measured one by one: their alternation is not counted."""
+    beds = [
+        Bed(str(k), k, k + 1.0, lithology=state, measured=not 2 <= k < 8)
+        for k, state in enumerate("ABCDCDCDAB")
+    ]
+    result = find_transitions(Log(beds=tuple(beds)))
+    assert (result.total, result.breaks) == (2, 1)
+
+
 def test_two_states_say_nothing() -> None:
     """Two alternating states must follow one another: not determinable, in words."""
     result = find_transitions(log_of("ABABABAB"))
@@ -115,12 +127,21 @@ def test_an_empty_row_costs_its_degrees_of_freedom() -> None:
     assert degrees_of_freedom(counts) == 9 - 3 - 4 + 1
 
 
-def test_random_states_are_rejected_at_the_nominal_rate() -> None:
-    """Chains of random states are rejected about as often as the level says."""
+def test_simulated_tables_agree_with_the_distribution_where_both_hold() -> None:
+    """With large expected counts the simulated p is near that of the chi-square distribution."""
+    counts = count_transitions([np.random.default_rng(21).choice(list("ABCD"), 900).tolist()])[1]
+    expected = quasi_independent(counts)
+    theirs = stats.chi2.sf(chi_square(counts, expected), degrees_of_freedom(counts))
+    assert simulated_p(counts, expected) == pytest.approx(theirs, abs=0.06)
+
+
+@pytest.mark.parametrize("beds", [40, 200])
+def test_random_states_are_rejected_at_the_nominal_rate(beds: int) -> None:
+    """Long and short chains of random states are rejected about as often as the level says."""
     generator = np.random.default_rng(8)
     rejected = 0
-    for _ in range(300):
-        states = generator.choice(list("ABCD"), 200)
+    for _ in range(200):
+        states = generator.choice(list("ABCD"), beds)
         result = find_transitions(log_of("".join(states)))
         rejected += result.p is not None and result.p <= 0.05
-    assert 0.02 <= rejected / 300 <= 0.09
+    assert 0.015 <= rejected / 200 <= 0.09

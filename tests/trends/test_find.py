@@ -67,7 +67,7 @@ def test_the_summary_says_what_was_found(log: Log) -> None:
     assert "Fining-up package from" in text
     assert "Order of grain size" in text
     assert "Net to gross at 0.0625 mm" in text
-    assert "Palaeocurrents, cross bedding: mean toward" in text
+    assert "Palaeocurrents, cross-bedding: mean toward" in text
 
 
 def test_net_to_gross_counts_gaps_both_ways() -> None:
@@ -215,7 +215,7 @@ def test_an_axis_is_drawn_at_both_ends_and_counted_once() -> None:
     figure, ax = plt.subplots()
     plots.rose(ax, CurrentSummary("groove", "axis", (30.0, 31.0), 30.5, 1.0, 0.5, None))
     assert len([p for p in ax.patches if isinstance(p, Wedge)]) == 2
-    assert ax.get_title() == "groove, n = 2"
+    assert ax.get_title() == "groove casts, n = 2"
     with pytest.raises(ArgumentError):
         plots.rose(ax, CurrentSummary("groove", "axis", (30.0,), 30.0, 1.0, 0.0, None), 25)
     plt.close(figure)
