@@ -44,4 +44,4 @@ def command(name: str | None, symbols: bool, output: str | None, quiet: bool) ->
         else:
             click.echo(text, nl=False)
     else:
-        print_table(("style", "for"), list_styles())
+        print_table(("style", "for"), list_styles().items())
