@@ -8,10 +8,10 @@ from __future__ import annotations
 import numpy as np
 
 from logkit.grains.numbers import dimensionless_diameter
-from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values
+from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, formula
 from logkit.hydraulics.resistance import _DEPTH_OVER_D90, grain_chezy
 from logkit.hydraulics.threshold import van_rijn_shields
-from logkit.registry import GRAVITY_M_S2, Limit, formula
+from logkit.registry import GRAVITY_M_S2, Limit
 
 _FLOW = ("velocity_m_s", "flow_depth_m", "d50_m", "d90_m", "submerged_gravity")
 _RIPPLE_DSTAR = Limit(
@@ -446,8 +446,8 @@ def van_rijn_classes(transport_stage: Values, dstar: Values, froude: Values) -> 
     )
     row = np.minimum(np.searchsorted(_STAGE_EDGES, stage, side="right"), len(_STAGE_EDGES))
     upper = np.where(fr < 0.8, "symmetrical sand waves", "plane bed or antidunes")
-    low_row = np.minimum(row, len(_FINE_CLASSES) - 1)
-    low = np.where(size <= 10, np.take(_FINE_CLASSES, low_row), np.take(_COARSE_CLASSES, low_row))
+    fine, coarse = (np.take(names, row, mode="clip") for names in (_FINE_CLASSES, _COARSE_CLASSES))
+    low = np.where(size <= 10, fine, coarse)
     name = np.where(row == len(_STAGE_EDGES), upper, low)
     name = np.where(np.isnan(stage) | np.isnan(size) | np.isnan(fr), "", name)
     return str(name) if name.ndim == 0 else name

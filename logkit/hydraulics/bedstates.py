@@ -13,10 +13,10 @@ import numpy as np
 
 from logkit.grains.numbers import dimensionless_diameter
 from logkit.hydraulics.bedforms import UPPER_PLANE_THETA, froude, skin_shields
-from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values
+from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, formula
 from logkit.hydraulics.resistance import _DEPTH_OVER_D90
 from logkit.hydraulics.threshold import MEASURED_SIGMA_LOG10, soulsby_whitehouse
-from logkit.registry import GRAVITY_M_S2, Limit, formula
+from logkit.registry import GRAVITY_M_S2, Limit
 
 STATES = ("still", "ripple", "dune", "lower_plane", "upper_plane", "antidune")
 """Order of the first axis of `soft_criterion`."""
@@ -26,8 +26,8 @@ STATES = ("still", "ripple", "dune", "lower_plane", "upper_plane", "antidune")
 class Edge:
     """A soft limit: its centre and one sigma in log10 units."""
 
-    centre: float
-    sigma: float
+    centre: Values
+    sigma: Values
 
 
 @dataclass(frozen=True, slots=True)
@@ -68,8 +68,14 @@ def soft_edge(x: Values, centre: Values, sigma: Values) -> Values:
     -------
     L = 1/(1 + exp(-1.702 log10(x/centre)/sigma)), close to a cumulative normal
     """
-    with np.errstate(divide="ignore", over="ignore"):
-        return 1 / (1 + np.exp(-1.702 * np.log10(np.divide(x, centre)) / sigma))
+    with np.errstate(divide="ignore"):
+        return _passed(np.log10(x), Edge(centre, sigma))
+
+
+def _passed(log10_x: Values, edge: Edge) -> Values:
+    """Probability that an edge has been passed, from the logarithm, which several edges share."""
+    with np.errstate(over="ignore"):
+        return 1 / (1 + np.exp((np.log10(edge.centre) - log10_x) * (1.702 / edge.sigma)))
 
 
 def state_probabilities(
@@ -89,15 +95,16 @@ def state_probabilities(
     -------
     array of shape (6, ...) in the order of `STATES`; sums to one along the first axis
     """
-    theta_cr = soulsby_whitehouse(dstar)
-    theta_skin = np.asarray(theta_skin, dtype=float)
-    moves = soft_edge(theta_skin, theta_cr * edges.motion.centre, edges.motion.sigma)
-    past_ripple = soft_edge(theta_skin, theta_cr * edges.ripple_dune.centre, edges.ripple_dune.sigma)
-    past_lower = soft_edge(theta_skin, theta_cr * edges.lower_plane_dune.centre, edges.lower_plane_dune.sigma)
-    plane = soft_edge(theta_skin, edges.upper_plane.centre, edges.upper_plane.sigma)
-    anti = soft_edge(froude, edges.antidune.centre, edges.antidune.sigma)
-    ripples = 1 - soft_edge(dstar, edges.ripples_end.centre, edges.ripples_end.sigma)
-    dunes = soft_edge(d50_m, edges.dunes_begin.centre, edges.dunes_begin.sigma)
+    motion = np.log10(soulsby_whitehouse(dstar))
+    with np.errstate(divide="ignore"):
+        theta, size, fr = np.log10(theta_skin), np.log10(dstar), np.log10(froude)
+    moves = _passed(theta - motion, edges.motion)
+    past_ripple = _passed(theta - motion, edges.ripple_dune)
+    past_lower = _passed(theta - motion, edges.lower_plane_dune)
+    plane = _passed(theta, edges.upper_plane)
+    anti = _passed(fr, edges.antidune)
+    ripples = 1 - _passed(size, edges.ripples_end)
+    dunes = _passed(np.log10(d50_m), edges.dunes_begin)
     w_ripple = ripples * ((1 - past_ripple) + past_ripple * (1 - dunes))
     w_dune = dunes * (ripples * past_ripple + (1 - ripples) * past_lower)
     w_lower = (1 - ripples) * (1 - past_lower)

@@ -8,9 +8,9 @@ from __future__ import annotations
 
 import numpy as np
 
-from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, chosen
+from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, chosen, formula
 from logkit.hydraulics.rest import hjulstrom_deposition
-from logkit.registry import GRAVITY_M_S2, Limit, formula
+from logkit.registry import GRAVITY_M_S2, Limit
 
 
 def _mm(d_m: Values) -> Values:

@@ -7,10 +7,10 @@ from __future__ import annotations
 
 import numpy as np
 
-from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, above_one
+from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, above_one, formula
 from logkit.hydraulics.resistance import ks_grain, log_law
 from logkit.hydraulics.threshold import critical_shear_velocity
-from logkit.registry import GRAVITY_M_S2, Limit, formula
+from logkit.registry import GRAVITY_M_S2, Limit
 
 
 @formula(

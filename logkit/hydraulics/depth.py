@@ -10,8 +10,8 @@ from functools import cache
 import numpy as np
 
 from logkit.errors import ArgumentError
-from logkit.hydraulics.inputs import SYMBOLS, Values, chosen
-from logkit.registry import Limit, formula
+from logkit.hydraulics.inputs import SYMBOLS, Values, chosen, formula
+from logkit.registry import Limit
 
 DUNE_LENGTH_OVER_DEPTH = 7.3
 SET_FACTOR = (2.9, 0.7)

@@ -8,9 +8,9 @@ from __future__ import annotations
 
 import numpy as np
 
-from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values
+from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, formula
 from logkit.hydraulics.resistance import KAPPA
-from logkit.registry import GRAVITY_M_S2, Limit, formula
+from logkit.registry import GRAVITY_M_S2, Limit
 
 DRAG_COEFFICIENT = 0.45
 LIFT_COEFFICIENT = 0.2

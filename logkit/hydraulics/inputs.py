@@ -8,6 +8,7 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from dataclasses import dataclass
+from functools import partial
 from typing import Any, TypeAlias
 
 import numpy as np
@@ -15,7 +16,11 @@ import numpy as np
 from logkit.errors import ArgumentError
 from logkit.grains.numbers import dimensionless_diameter, particle_reynolds_number
 from logkit.registry import GRAVITY_M_S2
+from logkit.registry import formula as register
 from logkit.units import split_suffix
+
+formula = partial(register, elementwise=True)
+"""Registers a hydraulics formula: every one works value by value."""
 
 Values: TypeAlias = Any
 """A float or an array of floats; formulas are vectorised and broadcast over all their arguments."""

@@ -9,9 +9,9 @@ import numpy as np
 
 from logkit.hydraulics.bedforms import transport_stage
 from logkit.hydraulics.depth import DUNE_LENGTH_OVER_DEPTH, van_rijn_dune_height
-from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, above_one, chosen
+from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, above_one, chosen, formula
 from logkit.hydraulics.resistance import bedform_roughness, engelund_hansen, ks_grain, log_law
-from logkit.registry import GRAVITY_M_S2, Limit, formula
+from logkit.registry import GRAVITY_M_S2, Limit
 
 
 @formula(

@@ -7,8 +7,8 @@ from __future__ import annotations
 
 import numpy as np
 
-from logkit.hydraulics.inputs import Values
-from logkit.registry import Limit, formula
+from logkit.hydraulics.inputs import Values, formula
+from logkit.registry import Limit
 
 _TRANSPORT_JOIN = 1.35
 _EGIAZAROFF_JOIN = 0.38889

@@ -7,8 +7,8 @@ from __future__ import annotations
 
 import numpy as np
 
-from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, above_one, chosen
-from logkit.registry import GRAVITY_M_S2, Limit, formula
+from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, above_one, chosen, formula
+from logkit.registry import GRAVITY_M_S2, Limit
 
 KAPPA = 0.40
 CHEZY_GRAIN = 18.0

@@ -9,11 +9,11 @@ import numpy as np
 
 from logkit.grains.numbers import dimensionless_diameter
 from logkit.hydraulics.bedforms import velocity_from_skin_shields
-from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values
+from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, formula
 from logkit.hydraulics.resistance import _DEPTH_OVER_D90, grain_chezy
 from logkit.hydraulics.settling import ferguson_church
 from logkit.hydraulics.threshold import soulsby_whitehouse
-from logkit.registry import GRAVITY_M_S2, Limit, formula
+from logkit.registry import GRAVITY_M_S2, Limit
 
 TWO_THIRDS_CESSATION = 4 / 9
 """Cessation ratio that makes the stopping velocity two thirds of the entrainment velocity."""

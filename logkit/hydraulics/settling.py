@@ -8,8 +8,8 @@ from __future__ import annotations
 import numpy as np
 
 from logkit.grains.numbers import dimensionless_diameter
-from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, chosen
-from logkit.registry import GRAVITY_M_S2, Limit, formula
+from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, chosen, formula
+from logkit.registry import GRAVITY_M_S2, Limit
 
 FERGUSON_CHURCH = {
     "sphere": (18.0, 0.4),

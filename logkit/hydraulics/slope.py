@@ -7,8 +7,8 @@ from __future__ import annotations
 
 import numpy as np
 
-from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values
-from logkit.registry import Limit, formula
+from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, formula
+from logkit.registry import Limit
 
 RESIDUAL_FACTOR = 2.0
 """One sigma of the slope about the regression as a factor; parameter errors alone are far too small."""

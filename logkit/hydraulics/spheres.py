@@ -6,9 +6,9 @@ from functools import cache
 
 import numpy as np
 
-from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values
+from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, formula
 from logkit.hydraulics.settling import galileo
-from logkit.registry import GRAVITY_M_S2, Limit, formula
+from logkit.registry import GRAVITY_M_S2, Limit
 
 
 @formula(

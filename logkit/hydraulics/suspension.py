@@ -8,11 +8,11 @@ from __future__ import annotations
 import numpy as np
 
 from logkit.grains.numbers import dimensionless_diameter
-from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, chosen
+from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, chosen, formula
 from logkit.hydraulics.resistance import KAPPA
 from logkit.hydraulics.settling import ferguson_church
 from logkit.hydraulics.threshold import critical_shear_velocity
-from logkit.registry import GRAVITY_M_S2, Limit, formula
+from logkit.registry import GRAVITY_M_S2, Limit
 
 MODES = ("at rest", "traction", "saltation", "saltation or suspension", "suspension")
 SALTATION_STAGE = 1.5

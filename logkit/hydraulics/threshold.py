@@ -9,8 +9,8 @@ from __future__ import annotations
 import numpy as np
 
 from logkit.grains.numbers import dimensionless_diameter
-from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, chosen
-from logkit.registry import GRAVITY_M_S2, Limit, formula
+from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, chosen, formula
+from logkit.registry import GRAVITY_M_S2, Limit
 
 MEASURED_SIGMA_LOG10 = 0.20
 """One sigma of log10 of the critical Shields number about its centre, sand and gravel."""

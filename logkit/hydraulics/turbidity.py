@@ -7,8 +7,8 @@ from __future__ import annotations
 
 import numpy as np
 
-from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, chosen
-from logkit.registry import GRAVITY_M_S2, Limit, formula
+from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, chosen, formula
+from logkit.registry import GRAVITY_M_S2, Limit
 
 DRAG = 0.004
 INTERFACE_SHARE = 0.43

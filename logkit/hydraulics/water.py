@@ -7,8 +7,8 @@ from __future__ import annotations
 
 import numpy as np
 
-from logkit.hydraulics.inputs import SYMBOLS, Values
-from logkit.registry import Limit, formula
+from logkit.hydraulics.inputs import SYMBOLS, Values, formula
+from logkit.registry import Limit
 
 KELVIN = 273.15
 _EOS_TEMPERATURE = Limit("temp_c", 0, 40, lambda temp_c, **_: temp_c)

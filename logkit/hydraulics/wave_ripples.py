@@ -7,9 +7,9 @@ from __future__ import annotations
 
 import numpy as np
 
-from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values
+from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, formula
 from logkit.hydraulics.waves import KOMAR_MILLER_RANGE, komar_miller_threshold
-from logkit.registry import GRAVITY_M_S2, Limit, formula
+from logkit.registry import GRAVITY_M_S2, Limit
 
 ORBITAL_COEFFICIENT = 0.65
 STEEPNESS_CAP = 0.17

@@ -8,8 +8,8 @@ from __future__ import annotations
 import numpy as np
 
 from logkit.errors import LogkitError
-from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, chosen
-from logkit.registry import GRAVITY_M_S2, Limit, formula
+from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, chosen, formula
+from logkit.registry import GRAVITY_M_S2, Limit
 
 KOMAR_MILLER_RANGE = (0.21, 0.30)
 """Published values of the coefficient of the threshold of fine sand: carry both."""

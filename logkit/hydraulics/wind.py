@@ -9,8 +9,8 @@ from functools import cache
 
 import numpy as np
 
-from logkit.hydraulics.inputs import AIR_KG_M3, AIR_NU_M2_S, QUARTZ_KG_M3, SYMBOLS, Values
-from logkit.registry import GRAVITY_M_S2, Limit, formula
+from logkit.hydraulics.inputs import AIR_KG_M3, AIR_NU_M2_S, QUARTZ_KG_M3, SYMBOLS, Values, formula
+from logkit.registry import GRAVITY_M_S2, Limit
 
 _MEANINGS = SYMBOLS | {
     "coefficient": "coefficient A",
