@@ -102,7 +102,7 @@ FAMILIES: dict[str, tuple[str, ...]] = {
     ),
     "suspension": ("logkit.hydraulics.suspension",),
     "resistance": ("logkit.hydraulics.resistance", "logkit.hydraulics.manning"),
-    "bedforms": ("logkit.hydraulics.bedforms", "logkit.hydraulics.bedstates"),
+    "bedforms": ("logkit.hydraulics.bedforms", "logkit.hydraulics.bedstates", "logkit.hydraulics.ripples"),
     "depth": ("logkit.hydraulics.depth",),
     "slope": ("logkit.hydraulics.slope",),
     "waves": ("logkit.hydraulics.waves", "logkit.hydraulics.wave_ripples"),

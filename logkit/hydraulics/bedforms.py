@@ -1,6 +1,6 @@
-"""Bed states under a current: the coordinates (D*, theta', Fr), published classifications, ripple geometry.
+"""Bed states under a current: the coordinates (D*, theta', Fr), published classifications.
 
-Our own soft edges are kept apart in `bedstates`; dune height and depth are in `depth`.
+Our own soft edges are kept apart in `bedstates`; ripple geometry is in `ripples`, dunes are in `depth`.
 """
 
 from __future__ import annotations
@@ -14,14 +14,6 @@ from logkit.hydraulics.threshold import van_rijn_shields
 from logkit.registry import GRAVITY_M_S2, Limit
 
 _FLOW = ("velocity_m_s", "flow_depth_m", "d50_m", "d90_m", "submerged_gravity")
-_RIPPLE_DSTAR = Limit(
-    "D*",
-    1.2,
-    16,
-    lambda d50_m, submerged_gravity, nu_m2_s, g_m_s2, **_: dimensionless_diameter(
-        d50_m, submerged_gravity, nu_m2_s, g_m_s2
-    ),
-)
 UPPER_PLANE_THETA = 0.70
 """Skin-friction Shields number at which plane beds begin, geometric middle of the observations."""
 MU_10C_PA_S = 1.307e-3
@@ -327,82 +319,6 @@ def ten_degree_velocity_factor(mu_pa_s: Values) -> Values:
     boguchwal_1977, southard_boguchwal_1990
     """
     return np.cbrt(MU_10C_PA_S / np.asarray(mu_pa_s))
-
-
-@formula(
-    "bedforms.ripple_height",
-    gives="equilibrium height of current ripples",
-    unit="mm",
-    equation="eta = 202 D50 D*^-0.554",
-    source="soulsby_2012",
-    domain="1.2 < D* < 16",
-    scatter="observed heights within 1-15 %",
-    status="secondary",
-    inputs=SYMBOLS,
-    limits=(_RIPPLE_DSTAR,),
-    positive=("d50_m", "submerged_gravity", "nu_m2_s"),
-    resolve=Fluid(("submerged_gravity", "nu_m2_s")),
-    pitfalls="Ripple size depends neither on depth nor on velocity: it gives no depth.",
-)
-def ripple_height(
-    d50_m: Values, submerged_gravity: Values, nu_m2_s: Values, g_m_s2: Values = GRAVITY_M_S2
-) -> Values:
-    """Height of current ripples at equilibrium.
-
-    Parameters
-    ----------
-    d50_m : median diameter, m
-    submerged_gravity : R
-    nu_m2_s : kinematic viscosity, m2/s
-
-    Returns
-    -------
-    eta, m (shown in mm)
-
-    References
-    ----------
-    soulsby_2012, baas_1994
-    """
-    dstar = dimensionless_diameter(d50_m, submerged_gravity, nu_m2_s, g_m_s2)
-    return 202 * np.asarray(d50_m) * dstar**-0.554
-
-
-@formula(
-    "bedforms.ripple_length",
-    gives="equilibrium length of current ripples",
-    unit="mm",
-    equation="lambda = D50 (500 + 1881 D*^-1.5)",
-    source="soulsby_2012",
-    domain="1.2 < D* < 16",
-    scatter="observed lengths within 5-15 %",
-    status="secondary",
-    inputs=SYMBOLS,
-    limits=(_RIPPLE_DSTAR,),
-    positive=("d50_m", "submerged_gravity", "nu_m2_s"),
-    resolve=Fluid(("submerged_gravity", "nu_m2_s")),
-    pitfalls="Ripple size depends neither on depth nor on velocity: it gives no depth.",
-)
-def ripple_length(
-    d50_m: Values, submerged_gravity: Values, nu_m2_s: Values, g_m_s2: Values = GRAVITY_M_S2
-) -> Values:
-    """Length of current ripples at equilibrium.
-
-    Parameters
-    ----------
-    d50_m : median diameter, m
-    submerged_gravity : R
-    nu_m2_s : kinematic viscosity, m2/s
-
-    Returns
-    -------
-    lambda, m (shown in mm)
-
-    References
-    ----------
-    soulsby_2012, baas_1994
-    """
-    dstar = dimensionless_diameter(d50_m, submerged_gravity, nu_m2_s, g_m_s2)
-    return d50_m * (500 + 1881 * dstar**-1.5)
 
 
 _STAGE_EDGES = (0.0, 3.0, 10.0, 15.0, 25.0)

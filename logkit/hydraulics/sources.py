@@ -10,9 +10,22 @@ from dataclasses import dataclass
 from typing import Any
 
 from logkit.hydraulics.checks import CheckResult, outside_checks, run_check
+from logkit.hydraulics.inputs import QUARTZ_KG_M3, SALINITY, TEMPERATURE_C
 from logkit.references import all_references
 from logkit.registry import FORMULAS, Formula
 from logkit.units import split_suffix
+
+_FILLED = {
+    "temp_c": TEMPERATURE_C,
+    "salinity": SALINITY,
+    "rho_s_kg_m3": QUARTZ_KG_M3,
+    "rho_kg_m3": "from temp_c and salinity",
+    "mu_pa_s": "from temp_c and salinity",
+    "nu_m2_s": "from temp_c and salinity",
+    "submerged_gravity": "from temp_c, salinity and rho_s_kg_m3; 1.65 where nu_m2_s alone is given",
+    "dstar": "from a size and the fluid",
+    "rep": "from a size and the fluid",
+}
 
 
 @dataclass(frozen=True, slots=True)
@@ -130,7 +143,7 @@ def _inputs(record: Formula) -> list[InputRow]:
         quantity = meanings.get(name)
         default = None if parameter.default is inspect.Parameter.empty else parameter.default
         if default is None and name in filled:
-            default = "from temp_c, salinity and rho_s_kg_m3"
+            default = _FILLED[name]
         unit = split_suffix(name)[1]
         rows.append(
             InputRow(

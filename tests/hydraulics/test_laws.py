@@ -255,3 +255,30 @@ def test_modes_follow_each_other(size: float) -> None:
     ranks = [MODES.index(m) for m in modes]
     assert ranks == sorted(ranks)
     assert (ranks[0], ranks[-1]) == (0, 4)
+
+
+@pytest.mark.parametrize(
+    ("size", "depth", "velocity", "temp", "state"),
+    [
+        (1.08e-4, 0.25, 0.60, 10.0, "ripple"),
+        (1.08e-4, 0.25, 0.98, 10.0, "upper_plane"),
+        (5.0e-4, 0.15, 0.45, 20.0, "dune"),
+        (5.0e-4, 0.15, 0.55, 20.0, "dune"),
+    ],
+)
+def test_observed_bed_state_is_the_most_likely_one(
+    size: float, depth: float, velocity: float, temp: float, state: str
+) -> None:
+    """Published flume observations (0.108 mm ripples and plane bed, 0.5 mm dunes) come out as observed."""
+    inputs = {"d50_m": size, "d90_m": 1.5 * size, "flow_depth_m": depth, "velocity_m_s": velocity}
+    p = evaluate("bedforms.soft_criterion", temp_c=temp, **inputs)
+    assert STATES[int(np.argmax(p))] == state
+
+
+def test_long_arrays_give_what_short_ones_give() -> None:
+    """Taking a long array in blocks changes nothing, for numbers, for several results and for words."""
+    sizes = np.geomspace(1e-4, 2e-3, 70_000).reshape(2, -1)
+    for law in (ferguson_church, band, lambda d, r, n: transport_mode(0.05, d, r, n)):
+        whole = law(sizes, R, NU)
+        assert whole.shape[-2:] == sizes.shape
+        assert np.array_equal(whole[..., 1, -500:], law(sizes[1, -500:], R, NU))
