@@ -142,7 +142,9 @@ class FlowHistory:
     def _ledger(self, place: int) -> list[LedgerRow]:
         phase = self.estimates[place].phase
         if place in self.readings:
-            return ledger_rows(self.solver, self.readings[place].case, phase.section, phase.bed, phase.index)
+            return ledger_rows(
+                self.solver, self.readings[place].case, phase.section, phase.bed, phase.index + 1
+            )
         return list(self.rows.get(place, ()))
 
 

@@ -24,6 +24,9 @@ from logkit.model import Log, Phase, PhaseEstimate, Quantiles
 RIM_LIMIT = 0.05
 """Mass on the rim of the grid above which the answer is one of the grid's limits."""
 
+NEAR_CRITICAL = 0.8
+"""Froude number from which plane beds and antidunes are not told apart: both were seen at 0.83-0.96."""
+
 OPEN_ABOVE = ("upper_plane", "antidune")
 """Bed states that no faster flow under a deep water ends."""
 
@@ -135,6 +138,8 @@ def estimate_phases(solver: Solver, phases: Sequence[Phase], readings: Sequence[
         quantities: dict[str, Any] = {q: Quantiles(*numbers[q][i]) for q in _quantities_of(phase)}
         if answer.rim[i] > RIM_LIMIT:
             common["notes"] = (*reading.notes, "The answer reaches the limits of the grid.")
+        if states[i] == "upper_plane" and quantities["froude"].p90 > NEAR_CRITICAL:
+            common["notes"] = (*common["notes"], "Near Fr 0.9 plane beds and antidunes pass into each other.")
         return PhaseEstimate(
             phase, "estimated", bound="range", **common, transport_mode=modes[i],
             **quantities,

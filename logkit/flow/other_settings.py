@@ -207,7 +207,7 @@ def _row(phase: Phase, criterion: str, words: str, bound: str, velocity: Quantil
     text = criterion_texts()[criterion]
     one_sided = bound != "band"
     return LedgerRow(
-        phase.section, phase.bed, phase.index, criterion, text.label, words, bound,
+        phase.section, phase.bed, phase.index + 1, criterion, text.label, words, bound,
         alone_p10_m_s=velocity.p10 if velocity and bound != "below" else None,
         alone_p50_m_s=None if one_sided or velocity is None else velocity.p50,
         alone_p90_m_s=velocity.p90 if velocity and bound != "above" else None,

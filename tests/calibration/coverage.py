@@ -46,7 +46,9 @@ class Row:
         )
 
 
-def coverage_row(key: str, words: str, velocities: Sequence[float], ranges: np.ndarray, wanted: str = "") -> Row:
+def coverage_row(
+    key: str, words: str, velocities: Sequence[float], ranges: np.ndarray, wanted: str = ""
+) -> Row:
     """Coverage of ranges (low, middle, high) of shape (3, rivers)."""
     u = np.asarray(velocities)
     inside = (ranges[0] <= u) & (u <= ranges[2])
