@@ -12,7 +12,8 @@ import os
 import re
 import tempfile
 from collections.abc import Callable, Sequence
-from dataclasses import asdict, dataclass, is_dataclass
+from dataclasses import dataclass, fields, is_dataclass
+from functools import cache
 from pathlib import Path
 from typing import IO, TYPE_CHECKING, Any
 
@@ -69,16 +70,18 @@ Where a bed has several phases its velocity and depth span all their ranges; the
 "bound" says whether an answer is a range or one-sided; a one-sided answer has no numbers here.
 Curves in LAS files are samples at equal steps and miss beds thinner than a step; intervals.csv has every bed.
 A facies number is 1000 x lithology + structure; codes.csv and the parameter section of each LAS file explain it.
+JSON files hold the logs and results in full; a field that is missing there was empty.
 findings.csv lists what was asked, assumed or normalised when the logs were read.
 """
 
 
 @dataclass(frozen=True, slots=True)
 class WellFiles:
-    """The hand-over of one well before it is written: table parts, LAS and JSON text."""
+    """The hand-over of one well before it is written: CSV parts of the tables, intervals, LAS and JSON text."""
 
     name: str
-    frames: dict[str, pd.DataFrame]
+    parts: dict[str, str]
+    intervals: pd.DataFrame
     las: str
     json: str
     notes: tuple[str, ...]
@@ -186,15 +189,15 @@ class HandoverWriter:
         import pyarrow.parquet as pq
 
         name = self._free_name(well.name)
-        for table, frame in well.frames.items():
-            self._open[table].write(_csv(frame, header=False))
-        part = pa.Table.from_pandas(well.frames["intervals"], preserve_index=False)
+        for table, part in well.parts.items():
+            self._open[table].write(part)
+        rows = pa.Table.from_pandas(well.intervals, preserve_index=False)
         if self._parquet is None:
             handle, temporary = tempfile.mkstemp(dir=self.folder, prefix=".intervals.", suffix=".tmp")
             os.close(handle)
             self._parquet_path = Path(temporary)
-            self._parquet = pq.ParquetWriter(self._parquet_path, part.schema)
-        self._parquet.write_table(part)
+            self._parquet = pq.ParquetWriter(self._parquet_path, rows.schema)
+        self._parquet.write_table(rows)
         if well.las:
             self._singles.append(_written(self.folder / "las" / f"{name}.las", well.las))
         self._singles.append(_written(self.folder / "json" / f"{name}.json", well.json))
@@ -265,7 +268,9 @@ def well_files(
         "depth_shifts": shifts_frame(p),
         "findings": typed(findings, TABLES["findings"]),
     }
-    return WellFiles(p.name, frames, las, _json(_well_record(p, history, trends)), tuple(notes))
+    parts = {name: _csv(frame, header=False) for name, frame in frames.items()}
+    record = _json(_well_record(p, history, trends))
+    return WellFiles(p.name, parts, frames["intervals"], las, record, tuple(notes))
 
 
 def _check(logs: tuple[Log, ...], histories: Sequence[Any] | None, trends: Sequence[Any] | None) -> None:
@@ -295,12 +300,12 @@ def _well_record(p: PlacedLog, history: Any, trends: Any) -> dict[str, Any]:
         "made_by": f"logkit {logkit.__version__}",
         "limits": CAUTION,
         "section": p.name,
-        "header": asdict(p.log.header),
-        "beds": [asdict(bed) for bed in p.log.beds],
-        "flow": [asdict(e) for e in history.estimates] if history is not None else [],
-        "grading": [asdict(g) for g in trends.gradings] if trends is not None else [],
-        "packages": [asdict(g) for g in trends.packages] if trends is not None else [],
-        "findings": [asdict(f) for f in p.log.findings],
+        "header": p.log.header,
+        "beds": p.log.beds,
+        "flow": history.estimates if history is not None else (),
+        "grading": trends.gradings if trends is not None else (),
+        "packages": trends.packages if trends is not None else (),
+        "findings": p.log.findings,
     }
 
 
@@ -309,19 +314,25 @@ def _json(content: Any) -> str:
 
 
 def _plain(value: Any) -> Any:
-    """Data that JSON can hold: numbers that are none become null."""
-    if isinstance(value, dict):
-        return {str(k): _plain(v) for k, v in value.items()}
-    if isinstance(value, list | tuple):
-        return [_plain(v) for v in value]
-    if is_dataclass(value) and not isinstance(value, type):
-        return _plain(asdict(value))
+    """Data that JSON can hold. Numbers that are none become null; empty fields of records are left out."""
+    if value is None or isinstance(value, str | bool | int):
+        return value
     if isinstance(value, float):
         return value if math.isfinite(value) else None
-    if value is None or isinstance(value, bool | int | str):
-        return value
+    if isinstance(value, list | tuple):
+        return [_plain(v) for v in value]
+    if isinstance(value, dict):
+        return {str(k): _plain(v) for k, v in value.items()}
+    if is_dataclass(value) and not isinstance(value, type):
+        items = ((name, getattr(value, name)) for name in _field_names(type(value)))
+        return {name: _plain(v) for name, v in items if v is not None and v != "" and v != ()}
     item: Callable[[], Any] | None = getattr(value, "item", None)
     return _plain(item()) if item is not None else str(value)
+
+
+@cache
+def _field_names(record: type) -> tuple[str, ...]:
+    return tuple(f.name for f in fields(record))
 
 
 def _csv(frame: pd.DataFrame, header: bool = True) -> str:

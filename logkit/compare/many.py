@@ -201,6 +201,8 @@ def _one(
         return digests
     except LogkitError as problem:
         return str(problem)
+    except Exception as problem:  # a fault of ours in one well must not cost the others
+        return f"Unexpected {type(problem).__name__}: {problem}. This is a fault of logkit; please report it."
 
 
 def _free(name: str, taken: dict[str, Any]) -> str:

@@ -105,14 +105,16 @@ def many(wells: int, processes: int, folder: Path) -> None:
     for _ in process_wells(sources, folder / f"out{wells}", kept, processes=processes):
         pass
     wall = time.perf_counter() - start
-    own = resource.getrusage(resource.RUSAGE_SELF).ru_maxrss / 1024
-    worker = resource.getrusage(resource.RUSAGE_CHILDREN).ru_maxrss / 1024
+    usage = [resource.getrusage(who) for who in (resource.RUSAGE_SELF, resource.RUSAGE_CHILDREN)]
+    cpu = sum(u.ru_utime + u.ru_stime for u in usage)
+    own, worker = (u.ru_maxrss / 1024 for u in usage)
     start = time.perf_counter()
     for source in sources:
         pd.read_csv(source, comment="#").to_csv()
     plain = time.perf_counter() - start
     print(
-        f"{wells:>4} wells of 200 beds, {processes} processes: {wall:.1f} s, {wall / plain:.1f} x pandas reading and "
+        f"{wells:>4} wells of 200 beds, {processes} processes: {wall:.1f} s ({cpu:.1f} s of processor time), "
+        f"{wall / plain:.1f} x pandas reading and "
         f"writing the same tables; peak memory {own:.0f} MB, largest worker {worker:.0f} MB; "
         f"{len(kept.failures)} failures",
         flush=True,

@@ -175,6 +175,7 @@ def test_json_holds_no_number_that_is_none(tmp_path: Path) -> None:
     (path,) = export(replace(log, beds=(first, *log.beds[1:])), tmp_path / "a.json")
     record = json.loads(path.read_text(), parse_constant=lambda text: pytest.fail(f"{text} in JSON"))
     assert record[0]["beds"][0]["ripple_height_m"] is None
+    assert "ripple_height_m" not in record[0]["beds"][1]
 
 
 def test_points_hold_readings_samples_and_photos(tmp_path: Path) -> None:
