@@ -58,7 +58,7 @@ def inside(points: Array, polygon: Array) -> NDArray[np.bool_]:
     x, y = points[:, 0, None], points[:, 1, None]
     ax, ay = polygon[:, 0], polygon[:, 1]
     bx, by = np.roll(ax, -1), np.roll(ay, -1)
-    with np.errstate(divide="ignore", invalid="ignore"):
+    with np.errstate(divide="ignore", invalid="ignore", over="ignore", under="ignore"):
         at = ax + (y - ay) * ((bx - ax) / (by - ay))
     crosses = ((ay > y) != (by > y)) & (x < at)
     return np.asarray(crosses.sum(axis=1) % 2 == 1)
@@ -69,7 +69,7 @@ def _crossings(start: Array, step: Array, polygon: Array) -> tuple[NDArray[np.in
     edge = np.roll(polygon, -1, axis=0) - polygon
     cross = step[:, None, 0] * edge[None, :, 1] - step[:, None, 1] * edge[None, :, 0]
     gap = polygon[None, :, :] - start[:, None, :]
-    with np.errstate(divide="ignore", invalid="ignore"):
+    with np.errstate(divide="ignore", invalid="ignore", over="ignore", under="ignore"):
         t = (gap[..., 0] * edge[None, :, 1] - gap[..., 1] * edge[None, :, 0]) / cross
         u = (gap[..., 0] * step[:, None, 1] - gap[..., 1] * step[:, None, 0]) / cross
     hit = (cross != 0) & (t > 0) & (t < 1) & (u >= 0) & (u <= 1)

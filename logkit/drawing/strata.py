@@ -84,7 +84,7 @@ class Troughs:
         younger = np.array(troughs[number + 1 :]).reshape(-1, 4)
         step = max(1.55, 0.29 * depth)
         for arc in range(int(0.96 * depth / step) + 1):
-            u = np.linspace(-1, 1, max(13, int(half * 2 / 0.25)))
+            u = np.linspace(-1, 1, max(13, int(half * 2 / (0.6 if arc else 0.25))))
             x = cx + half * u + (arc * step * self.skew)
             y = bottom - arc * step - (depth) * u**2 * (1.0 - 0.06 * arc)
             own = y >= bottom - depth

@@ -9,7 +9,7 @@ from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, field
 
 from logkit.drawing.drawing import Drawing
-from logkit.drawing.metrics import wrap
+from logkit.drawing.metrics import width_mm, wrap
 from logkit.drawing.motifs import GENERIC, Motif, all_motifs, glyph, structure_lines
 from logkit.drawing.noise import seed_of
 from logkit.drawing.palette import family_mark, fill, state_label, state_letter, state_tints
@@ -82,7 +82,7 @@ class _Canvas:
         size = self.style.fonts.label + 1.5
         self.say(x, y, text, bold=True, points=size)
         if aside:
-            self.say(x + 0.245 * size * len(text) + 2.5, y, aside, quiet=True)
+            self.say(x + width_mm(text, size, bold=True) + 2.5, y, aside, quiet=True)
 
     def bed(
         self,

@@ -11,14 +11,13 @@ from collections.abc import Sequence
 from math import isfinite
 
 import numpy as np
-from numpy.typing import NDArray
 
 from logkit.drawing.ground import Array, Ground, LineSegment
 from logkit.drawing.noise import FINEST_MM, seed_of
 from logkit.drawing.palette import stipple
 from logkit.drawing.shapes import Dots, Paint, Path, Point, Segment, Shape
 from logkit.drawing.style import Style, TextureStyle
-from logkit.drawing.textures_rock import ROCK_MARKS, organic_flecks
+from logkit.drawing.textures_rock import ROCK_MARKS, organic_flecks, rounded
 from logkit.errors import ArgumentError
 
 __all__ = ["bed_texture", "dot_diameter", "dot_spacing", "seed_of"]
@@ -122,7 +121,10 @@ def _dots(ground: Ground, style: Style, ink: str, lithic: bool, density: float) 
         mixing = np.where(phi <= SAND_FINEST, 1.0, 0.55 * (MUD_ONLY - phi) / 2)
         kept &= ground.random.random(x.size) < mixing
     x, y, diameter = x[kept], y[kept], dot_diameter(phi[kept], texture)
-    held = ground.holds(x, y, texture.clear + diameter / 2)
+    needed = (
+        np.maximum(texture.clear + diameter / 2, 1.1 * diameter) if lithic else texture.clear + diameter / 2
+    )
+    held = ground.holds(x, y, needed)
     x, y, diameter = x[held], y[held], diameter[held]
     shapes: list[Shape] = []
     if lithic:
@@ -183,40 +185,43 @@ def _clasts(ground: Ground, style: Style) -> tuple[Shape, ...]:
     sizes = Ground(
         ((extent[0], extent[1]), (extent[2], extent[1]), (extent[2], extent[3])), [(0, 0)], ground.seed
     )
-    u, v, reach = sizes.points(0.5 * fits, salt=211)
+    smallest = (1.0 + 0.34 * max(0.0, SAND_COARSEST - ground.phi_range[1])) * fits * enlarged
+    u, v, reach = sizes.points(0.52 * smallest, salt=211)
     x, y = _unsqueeze(u, v)
     phi = ground.phi_at(y)
     axis = (1.0 + 0.34 * (SAND_COARSEST - np.clip(phi, -8, SAND_COARSEST))) * fits * enlarged
     kept = (phi < SAND_COARSEST + 1e-9) & (reach >= 0.52 * axis) & (x > x0) & (x < x1) & (y > y0) & (y < y1)
-    u, v, x, y, axis, reach = (a[kept] for a in (u, v, x, y, axis, reach))
+    u, v, axis = u[kept], v[kept], axis[kept]
     wish = axis * (0.6 + 0.6 * ground.random.random(u.size))
-    radius = _packed(u, v, wish / 2, np.argsort(-reach, kind="stable"), gap=0.14)
+    radius = _packed(u, v, wish / 2, gap=0.14)
     index = np.flatnonzero(radius > 0.22 * axis)
     turn = np.arange(7) * (2 * np.pi / 7) + ground.random.random((index.size, 1)) * 2 * np.pi
     wobble = 0.93 + 0.22 * (ground.random.random((index.size, 7)) - 0.5)
     r = radius[index, None] * wobble
     px, py = _unsqueeze(u[index, None] + r * np.cos(turn), v[index, None] + r * np.sin(turn))
     held = ground.holds_marks(px, py, 0.1)
-    steps: list[Segment] = []
-    for xs, ys in zip(px[held].tolist(), py[held].tolist(), strict=True):
-        steps += _rounded(xs, ys)
+    steps = rounded(px[held], py[held])
     if not steps:
         return ()
     paint = Paint(fill=style.colours.clast, stroke=style.colours.ink, width=style.lines.clast, join="round")
-    return (Path(tuple(steps), paint),)
+    return (Path(steps, paint),)
 
 
-def _packed(u: Array, v: Array, radius: Array, order: NDArray[np.int64], gap: float) -> Array:
-    """Radii lowered, in the order given, so that no circle comes nearer than `gap` to an earlier one; or 0."""
-    u, v, wanted = u[order], v[order], radius[order].tolist()
-    apart = np.hypot(u[:, None] - u, v[:, None] - v)
-    placed = np.full(u.size, -1e9)
-    for i, wish in enumerate(wanted):
-        room = float((apart[i, :i] - placed[:i]).min()) - gap if i else wish
-        if room > 0.3 * wish:
-            placed[i] = min(wish, room)
+def _packed(u: Array, v: Array, wish: Array, gap: float) -> Array:
+    """Radii so that no two circles come nearer than `gap`: room between neighbours is shared as they wish."""
+    if u.size < 2:
+        return wish
+    order = np.argsort(u, kind="stable")
+    su, sv, sw = u[order], v[order], wish[order]
+    reach = np.searchsorted(su, su + 2 * float(wish.max()) + gap) - np.arange(u.size)
+    radius = sw.copy()
+    for step in range(1, int(reach.max())):
+        room = np.hypot(su[step:] - su[:-step], sv[step:] - sv[:-step]) - gap
+        share = sw[:-step] / (sw[:-step] + sw[step:])
+        np.minimum(radius[:-step], room * share, out=radius[:-step])
+        np.minimum(radius[step:], room * (1 - share), out=radius[step:])
     result = np.empty(u.size)
-    result[order] = np.maximum(placed, 0.0)
+    result[order] = np.maximum(radius, 0.0)
     return result
 
 
@@ -230,15 +235,3 @@ def _unsqueeze(u: Array, v: Array) -> tuple[Array, Array]:
     cos, sin = math.cos(_CLAST_TILT), math.sin(_CLAST_TILT)
     w = v * _CLAST_RATIO
     return u * cos - w * sin, u * sin + w * cos
-
-
-def _rounded(xs: list[float], ys: list[float]) -> list[Segment]:
-    """A closed smooth curve through the middles of a polygon's sides."""
-    middles = [
-        ((a + b) / 2, (c + d) / 2)
-        for a, b, c, d in zip(xs, xs[1:] + xs[:1], ys, ys[1:] + ys[:1], strict=True)
-    ]
-    steps: list[Segment] = [("M", middles[-1])]
-    steps += [("Q", (x, y, *m)) for x, y, m in zip(xs, ys, middles, strict=True)]
-    steps.append(("Z", ()))
-    return steps

@@ -240,11 +240,16 @@ def _filled(
 
 
 def _loops(px: Array, py: Array, paint: Paint) -> tuple[Shape, ...]:
-    """Closed smooth curves through the middles of the sides."""
+    steps = rounded(px, py)
+    return (Path(steps, paint),) if steps else ()
+
+
+def rounded(px: Array, py: Array) -> tuple[Segment, ...]:
+    """Closed smooth curves through the middles of the sides of polygons (points on the last axis)."""
     steps: list[Segment] = []
     mx, my = (px + np.roll(px, -1, axis=1)) / 2, (py + np.roll(py, -1, axis=1)) / 2
     for xs, ys, us, vs in zip(px.tolist(), py.tolist(), mx.tolist(), my.tolist(), strict=True):
         steps.append(("M", (us[-1], vs[-1])))
-        steps += [("Q", (x, y, u, v)) for x, y, u, v in zip(xs, ys, us, vs, strict=True)]
+        steps += [("Q", step) for step in zip(xs, ys, us, vs, strict=True)]
         steps.append(("Z", ()))
-    return (Path(tuple(steps), paint),) if steps else ()
+    return tuple(steps)
