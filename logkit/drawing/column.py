@@ -189,7 +189,7 @@ class _Column:
     def _place(self, bodies: list[_Body], closing: list[str]) -> list[Sheet]:
         """Add legend and note table, on more sheets where the last has no room; then titles and closing lines."""
         scene, style = self.scene, self.scene.style
-        top = style.page.heads - 4.0
+        top = style.page.heads - 1.0
         margin = style.page.margin + titles.closing_height(scene, closing)
         bottom = float("inf") if self.page_height is None else self.page_height - margin
         bodies = bodies or [_Body(None, (), (), top)]

@@ -121,7 +121,11 @@ def _axis(
     for x in short:
         steps.extend(polyline(((x, y), (x, y + side * 0.8))))
     baseline = y + (-2.1 if side < 0 else 2.1 + 0.74 * size * MM_PER_POINT)
-    texts = tuple(Text((x, baseline), text, size, ink, anchor="middle") for x, text in labels)
+    edge = x1 + style.page.margin - 0.3
+    texts = tuple(
+        Text((min(x, edge - width_mm(text, size) / 2), baseline), text, size, ink, anchor="middle")
+        for x, text in labels
+    )
     return [Path(tuple(steps), Paint(stroke=ink, width=style.lines.contact)), Group(texts)]
 
 

@@ -6,6 +6,7 @@ from collections.abc import Sequence
 from typing import Any
 
 from logkit.drawing.axes import LogAxis, PhiAxis, round_ends
+from logkit.drawing.metrics import width_mm
 from logkit.drawing.scene import Column, Scene, match_estimates, measure_beds
 from logkit.drawing.style import Style
 from logkit.drawing.tracks import TRACKS, Material
@@ -19,6 +20,14 @@ LEAST_SHARE = {"notes": 0.62, "texture": 0.55, "velocity": 0.55, "depth": 0.7, "
 
 MOST_NOTES_MM = 70.0
 """Widest column of notes; longer lines are hard to read."""
+
+
+GROWING = ("texture", "velocity", "depth")
+"""Tracks that take what is left over beside the notes, up to `MOST_GROWTH` times their width."""
+
+MOST_GROWTH = 1.4
+MOST_NAMES_MM = 12.0
+"""Widest column of bed names."""
 
 
 def lay_out(
@@ -56,7 +65,7 @@ def lay_out(
     names = [name for name in (tracks if tracks is not None else style.order) if TRACKS[name].shown(material)]
     start = style.page.margin if left is None else left
     room = style.page_size_mm()[0] - 2 * style.page.margin if width is None else width
-    columns = _columns(style, names, start, room)
+    columns = _columns(style, names, start, room, _name_width(log, style))
     by_bed = match_estimates(log, estimates)
     velocity = flow_depth = None
     if "velocity" in columns:
@@ -78,9 +87,20 @@ def lay_out(
     )  # fmt: skip
 
 
-def _columns(style: Style, names: Sequence[str], left: float, room: float) -> dict[str, Column]:
+def _name_width(log: Log, style: Style) -> float:
+    """Width that the bed names need, mm; a few very long ones are cut instead."""
+    widths = sorted(width_mm(bed.name, style.fonts.label) for bed in log.real_beds)
+    usual = widths[int(0.98 * (len(widths) - 1))] if widths else 0.0
+    return min(usual + 0.2, MOST_NAMES_MM)
+
+
+def _columns(
+    style: Style, names: Sequence[str], left: float, room: float, name_mm: float
+) -> dict[str, Column]:
     """Places of the tracks: notes take what is left over; where the page is narrow, the wide tracks shrink."""
     widths = {name: style.tracks[name].width for name in names}
+    if "names" in widths:
+        widths["names"] = max(widths["names"], name_mm)
     gaps = {name: style.tracks[name].gap for name in names}
     if names:
         gaps[names[0]] = 0.0
@@ -95,8 +115,16 @@ def _columns(style: Style, names: Sequence[str], left: float, room: float) -> di
             )
         for name in widths:
             widths[name] += most[name] * spare / total
-    elif "notes" in widths:
-        widths["notes"] = max(widths["notes"], min(MOST_NOTES_MM, widths["notes"] + spare))
+    else:
+        if "notes" in widths:
+            grown = min(spare, max(0.0, MOST_NOTES_MM - widths["notes"]))
+            widths["notes"] += grown
+            spare -= grown
+        wide = [name for name in GROWING if name in widths]
+        total = sum(widths[name] for name in wide)
+        share = min(MOST_GROWTH - 1, spare / total) if total else 0.0
+        for name in wide:
+            widths[name] *= 1 + share
     columns: dict[str, Column] = {}
     x = left
     for name in names:

@@ -42,22 +42,23 @@ class _Block:
 
 @dataclass(frozen=True, slots=True)
 class Legend:
-    """A legend, or one page of it, that has been measured but not yet placed; `rose` when it holds the rose."""
+    """A legend, or one page of it, that has been measured but not yet placed; the first page holds the rose."""
 
     scene: Scene
     blocks: tuple[tuple[_Block, float, float], ...]
     height: float
-    rose: bool = False
+    page: int = 1
 
     def draw(self, y: float) -> Group:
         """Its shapes with the upper edge at `y`, mm."""
         shapes: list[Shape] = []
-        rose = rose_block(self.scene) if self.rose else None
+        rose = rose_block(self.scene) if self.page == 1 else None
         if rose is not None:
             shapes.extend(rose.draw(self.scene.style.page.margin, y))
         for block, x, dy in self.blocks:
             shapes.extend(_draw_block(self.scene, block, x, y + dy))
-        return Group(tuple(shapes), id="legend", layer="legend")
+        name = "legend" if self.page == 1 else f"legend-{self.page}"
+        return Group(tuple(shapes), id=name, layer="legend")
 
 
 def measure_legend(scene: Scene, tally: Tally, width: float) -> Legend | None:
@@ -85,7 +86,7 @@ def legend_pages(scene: Scene, tally: Tally, width: float, room: float) -> list[
             x, y, tallest = left, y + tallest + 2.0, 0.0
             block = _fit(scene, title, items, right - x)
         if y + block.height > room and placed:
-            pages.append(Legend(scene, tuple(placed), y + tallest + 1.0, rose is not None and not pages))
+            pages.append(Legend(scene, tuple(placed), y + tallest + 1.0, len(pages) + 1))
             placed, x, y, tallest = [], left, 0.0, 0.0
             block = _fit(scene, title, items, right - x)
         rows = max(len(column) for column in block.columns)
@@ -97,7 +98,7 @@ def legend_pages(scene: Scene, tally: Tally, width: float, room: float) -> list[
         x += block.width + BLOCK_GAP_MM
         tallest = max(tallest, block.height)
     if placed or (rose is not None and not pages):
-        pages.append(Legend(scene, tuple(placed), y + tallest + 1.0, rose is not None and not pages))
+        pages.append(Legend(scene, tuple(placed), y + tallest + 1.0, len(pages) + 1))
     return pages
 
 

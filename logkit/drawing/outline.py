@@ -14,6 +14,9 @@ from logkit.drawing.scene import MeasuredBed
 from logkit.drawing.shapes import Point, Segment
 from logkit.drawing.style import TextureStyle
 
+LOWEST_RELIEF_MM = 1.6
+"""Most relief of the lowest bed on a sheet, on paper."""
+
 Curve = tuple[Point, tuple[tuple[float, ...], ...]]
 """Start point and cubic steps (x1, y1, x2, y2, x, y) or straight steps (x, y)."""
 
@@ -42,6 +45,13 @@ class Outline:
     def width(self) -> float:
         """Widest reach of the profile from the spine, mm."""
         return max(x for x, _ in self.profile) - self.x0
+
+    @property
+    def y_low(self) -> float:
+        """Lowest reach of the base, mm; a scour's deepest point lies three quarters down its control points."""
+        if not self.scoured:
+            return self.y_base
+        return max(0.25 * step[-1] + 0.75 * step[1] for step in self.base[1])
 
     def closed(self) -> tuple[Segment, ...]:
         """The whole outline as a closed path."""
@@ -118,6 +128,8 @@ def bed_outline(
     if kind in _SHAPED and tall >= 1.0 and right - axis.x0 > 3:
         logged = contact.relief_m if contact and contact.relief_m else 0.0
         relief = max(style.least_relief, logged * 1000 / scale)
+        if y_base >= position.y_base:  # the axes stand close below a sheet's lowest bed
+            relief = min(relief, LOWEST_RELIEF_MM)
         base = _SHAPED[kind](axis.x0, right, y_base, relief, style.scallop, random.Random(item.seed))
         return Outline(axis.x0, y_base, y_top, profile, sizes, base, scoured=kind == "erosive")
     return Outline(axis.x0, y_base, y_top, profile, sizes, ((axis.x0, y_base), ((right, y_base),)))

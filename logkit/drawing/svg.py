@@ -129,7 +129,7 @@ def sheet_svg(sheet: Sheet) -> str:
     for shape in sheet.shapes:
         writer.write(root, shape)
     if sheet.title:
-        drawing.set_desc(title=sheet.title, desc=sheet.desc or None)
+        drawing.set_desc(title=xml_text(sheet.title), desc=xml_text(sheet.desc) or None)
     definitions = _Element("defs")
     for gradient in sheet.gradients:
         writer.gradient(definitions, gradient.id, gradient.stops)
@@ -174,7 +174,7 @@ class _Writer:
         if group.layer:
             attributes["data-layer"] = group.layer
         for name, value in group.data:
-            attributes[f"data-{name}"] = value
+            attributes[f"data-{name}"] = xml_text(value)
         if group.clip:
             clip_id = f"clip{len(self.clips) + 1}"
             clip = _Element("clipPath", {"id": clip_id})

@@ -15,6 +15,7 @@ CAUTION = (
     "Blank means no estimate, not still water."
 )
 CAUTION_PLAIN = "Drawn from a typed log; check the source before any use that matters."
+LINE_SPACING = 1.2
 LEAST_TITLE = 0.7
 """A long title shrinks to this part of its size before it is cut."""
 
@@ -116,16 +117,19 @@ def summary(scene: Scene) -> str:
 
 
 def summary_block(scene: Scene, words: str, width: float) -> list[Shape]:
-    """The summary line, broken into two where the page is narrow."""
+    """The summary above the heads, in as many lines as there is room for; its counts come first."""
     style = scene.style
+    room = width - 2 * style.page.margin
+    free = style.page.heads - style.page.summary - 3.0
     size = style.fonts.subtitle
-    lines = wrap(words, width - 2 * style.page.margin, size)
-    pitch = 1.25 * size * MM_PER_POINT
-    room = max(1, int((style.page.heads - style.page.summary) / pitch))
-    if len(lines) > room:
+    lines = wrap(words, room, size)
+    if (len(lines) - 1) * LINE_SPACING * size * MM_PER_POINT > free:
         size = style.fonts.label
-        lines = wrap(words, width - 2 * style.page.margin, size)
-        pitch = 1.2 * size * MM_PER_POINT
+        lines = wrap(words, room, size)
+    pitch = LINE_SPACING * size * MM_PER_POINT
+    most = 1 + max(0, int(free / pitch + 1e-6))
+    if len(lines) > most:
+        lines = (*lines[: most - 1], shorten(" ".join(lines[most - 1 :]), room, size))
     return [
         Text((style.page.margin, style.page.summary + number * pitch), line, size, style.colours.ink2)
         for number, line in enumerate(lines)

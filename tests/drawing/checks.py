@@ -3,11 +3,21 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
+from dataclasses import replace
+from io import BytesIO
 
+import numpy as np
+from PIL import Image
+
+from logkit.drawing import Drawing
 from logkit.drawing.metrics import Box, text_box
-from logkit.drawing.shapes import Circle, Dots, Group, Path, Sheet, Text, walk
+from logkit.drawing.shapes import Circle, Dots, Group, Path, Shape, Sheet, Text, walk
 
 TOUCH_MM = 0.15
+DARK = 140
+"""Grey below which ink is dark."""
+MOST_DARK = 0.02
+"""Part of a text's box that dark ink may cover: a crossing hairline is below it."""
 
 
 def texts_of(sheet: Sheet) -> list[tuple[Text, Box]]:
@@ -60,3 +70,28 @@ def bed_ids(sheet: Sheet) -> list[str]:
         if isinstance(shape, Group) and shape.id == "beds":
             return [child.id for child in shape.children if isinstance(child, Group)]
     return []
+
+
+def inked_texts(drawing: Drawing, number: int, dpi: float = 150.0) -> list[str]:
+    """Texts that stand on dark ink: the sheet is rendered without texts and looked at under every box."""
+    sheet = drawing.sheets[number - 1]
+    bare = replace(drawing, sheets=(replace(sheet, shapes=tuple(_without_text(s) for s in sheet.shapes)),))
+    picture = np.asarray(Image.open(BytesIO(bare.png(1, dpi=dpi))).convert("L"))
+    rate = dpi / 25.4
+    found = []
+    for text, box in texts_of(sheet):
+        part = picture[
+            int((box.y0 + 0.1) * rate) : int((box.y1 - 0.3) * rate) + 1,
+            int(box.x0 * rate) : int(box.x1 * rate) + 1,
+        ]
+        share = float((part < DARK).mean()) if part.size else 0.0
+        if share > MOST_DARK:
+            found.append(f"{text.text!r} at {text.at}: {share:.1%} dark")
+    return found
+
+
+def _without_text(shape: Shape) -> Shape:
+    if isinstance(shape, Group):
+        kept = tuple(_without_text(child) for child in shape.children if not isinstance(child, Text))
+        return replace(shape, children=kept)
+    return shape

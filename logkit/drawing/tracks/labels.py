@@ -67,6 +67,6 @@ def placed_labels(scene: Scene, view: View) -> dict[int, tuple[float, float, str
 def _widest(outlines: list[Outline], tops: list[float], y: float) -> float:
     """Widest reach of the profiles that a label at this height could meet; outlines run downward."""
     low, high = y - PITCH_MM / 2, y + PITCH_MM / 2
-    first = max(0, bisect_right(tops, low) - 1)
+    first = max(0, bisect_right(tops, low) - 3)  # a scoured base may reach down from a bed above
     last = bisect_right(tops, high)
-    return max((o.x0 + o.width for o in outlines[first:last] if o.y_base > low), default=0.0)
+    return max((o.x0 + o.width for o in outlines[first:last] if o.y_low > low), default=0.0)

@@ -216,7 +216,9 @@ def _gap(scene: Scene, view: View, item: MeasuredBed, span: tuple[float, float],
     """A gap: nothing but its reason and height in words, where they fit."""
     column = scene.columns["texture"]
     style = scene.style
-    tall = span[0] - span[1]
+    above = view.outlines.get(item.index + 1)
+    y_free = max(span[1], above.y_low) if above else span[1]
+    tall = span[0] - y_free
     unit, metres = position_unit(scene)
     height = f"{item.bed.thickness_m / metres:.3g}\u00a0{unit}"
     words = f"{gap_reason(item)}: {height}"
@@ -224,9 +226,9 @@ def _gap(scene: Scene, view: View, item: MeasuredBed, span: tuple[float, float],
     cut = any(piece.cut and piece.base_m <= item.bed.base_m < piece.top_m for piece in view.position.pieces)
     texts: list[Shape] = []
     size = style.fonts.label
-    middle = (span[0] + span[1]) / 2
+    middle = (span[0] + y_free) / 2
     if cut:
-        below = f"scale cut here: {height} drawn as {tall:.0f}\u00a0mm"
+        below = f"scale cut here: {height} drawn as {span[0] - span[1]:.0f}\u00a0mm"
         tally.marks.add("cut")
         texts.append(
             Text(

@@ -1,0 +1,253 @@
+"""Whole sheets: nothing overlaps, nothing leaves the page, every bed is there, the file is well-formed."""
+
+from __future__ import annotations
+
+import re
+from pathlib import Path
+from xml.etree import ElementTree
+
+import pytest
+from checks import bed_ids, inked_texts, outside, overlaps, texts_of
+from random_logs import quantiles, random_log
+
+from logkit.drawing import Drawing, draw_column
+from logkit.drawing.shapes import Group, walk
+from logkit.errors import ArgumentError
+from logkit.model import Bed, Clash, Contact, GrainState, Header, Log, Phase, PhaseEstimate, SizeInterval
+
+SCALES = (20, 50, 100, 200, 500)
+PAGES = ("A4", "A3", "Letter", "Tabloid", "roll")
+
+
+def sand(name: str, base: float, top: float, notes: str = "", **more: object) -> Bed:
+    """A plain bed of medium sand."""
+    grain = (GrainState(0.5, SizeInterval(0.25, 0.5, "m")),)
+    return Bed(name, base, top, lithology="sandstone", grain=grain, notes=notes, **more)  # type: ignore[arg-type]
+
+
+def words_on(drawing: Drawing) -> str:
+    """All texts of a drawing, one after the other."""
+    return " ".join(text.text for sheet in drawing.sheets for text, _ in texts_of(sheet))
+
+
+def check_sheets(drawing: Drawing, log: Log) -> None:
+    """The laws that hold for every drawing."""
+    for number, sheet in enumerate(drawing.sheets, 1):
+        assert overlaps(sheet) == [], f"sheet {number}"
+        assert outside(sheet) == [], f"sheet {number}"
+        root = ElementTree.fromstring(drawing.svg(number))
+        ids = [element.get("id") for element in root.iter() if element.get("id")]
+        assert len(ids) == len(set(ids)), "an id is used twice on a sheet"
+    drawn = [name for sheet in drawing.sheets for name in bed_ids(sheet)]
+    assert len(set(drawn)) == len(log.beds)
+
+
+@pytest.mark.parametrize("part", range(10))
+def test_random_logs_keep_the_laws(part: int) -> None:
+    """200 random logs over scales and pages: no text on text, nothing off the page, every bed, well-formed XML."""
+    for seed in range(20 * part, 20 * part + 20):
+        log, results = random_log(seed)
+        scale = SCALES[seed % 5]
+        if log.thickness_m * 1000 / scale > 1200:  # more than a few sheets show nothing new
+            scale = 500
+        drawing = draw_column(
+            log, results, results, scale=scale, page=PAGES[seed // 5 % 5], cut_gaps=seed % 2 == 0
+        )
+        check_sheets(drawing, log)
+
+
+def test_same_input_same_bytes() -> None:
+    """Drawing twice gives the same SVG and the same PDF."""
+    log, results = random_log(6, beds=20)
+    first, second = (draw_column(log, results, results) for _ in range(2))
+    assert [first.svg(n + 1) for n in range(len(first.sheets))] == [
+        second.svg(n + 1) for n in range(len(second.sheets))
+    ]
+    assert first.pdf() == second.pdf()
+
+
+@pytest.mark.parametrize(
+    "style", ["report", "field-mono", "journal-single", "journal-double", "poster", "dark"]
+)
+def test_every_style_keeps_the_laws(style: str) -> None:
+    """The laws hold in all shipped styles."""
+    log, results = random_log(11, beds=30, thickness_m=(0.05, 0.8))
+    check_sheets(draw_column(log, results, results, style=style), log)
+
+
+@pytest.mark.parametrize(("seed", "scale"), [(1, 50), (2, 100), (3, 20)])
+def test_no_text_stands_on_ink(seed: int, scale: float) -> None:
+    """Rendered without its texts, a sheet is light under every one of them."""
+    log, results = random_log(seed, beds=25, thickness_m=(0.05, 0.8))
+    assert inked_texts(draw_column(log, results, results, scale=scale), 1) == []
+
+
+def test_a_millimetre_bed_is_drawn() -> None:
+    """A bed of 1 mm at 1:50 is 0.02 mm on paper: still a group of its own, merged only by name."""
+    beds = [sand("1", 0, 0.5), sand("2", 0.5, 0.501), sand("3", 0.501, 0.502), sand("4", 0.502, 1.0)]
+    log = Log(Header(title="Thin"), tuple(beds))
+    drawing = draw_column(log)
+    check_sheets(drawing, log)
+    assert "2–3" in words_on(drawing)
+
+
+def test_a_long_note_is_complete() -> None:
+    """A note of 400 characters stands in the margin, every word of it."""
+    note = " ".join(f"word{number}" for number in range(57))
+    log = Log(Header(title="Note"), (sand("1", 0, 2.0, note), sand("2", 2.0, 4.0)))
+    drawing = draw_column(log)
+    check_sheets(drawing, log)
+    assert set(note.split()) - {"word0"} <= set(words_on(drawing).split())
+
+
+def test_sixty_notes_in_a_metre() -> None:
+    """Notes that find no room beside the column are in the note table and counted; none is lost."""
+    beds = tuple(sand(str(n), n / 60, (n + 1) / 60, f"note number {n:03d}") for n in range(60))
+    log = Log(Header(title="Crowd"), beds)
+    drawing = draw_column(log)
+    check_sheets(drawing, log)
+    said = words_on(drawing)
+    assert all(f"{n:03d}" in said for n in range(60))
+    assert dict(drawing.counts)["notes moved to the note table"] > 40
+    assert "In the note table" in said
+
+
+def test_conflict_notes_stay_beside_the_column() -> None:
+    """Where notes are too many, those on conflicts stay."""
+    beds = tuple(sand(str(n), n / 60, (n + 1) / 60, f"note number {n:03d}") for n in range(60))
+    phase = Phase("", "30", 0, beds[30].base_m, beds[30].top_m, "bed", "river")
+    clash = Clash(
+        "bed_state",
+        "motion",
+        0.9,
+        "ripples say slow",
+        "grains say fast",
+        quantiles(0.2, 0.1),
+        quantiles(1, 0.1),
+    )
+    estimate = PhaseEstimate(phase, "estimated", bound="range", velocity=quantiles(0.2, 0.1), clash=clash)
+
+    class History:
+        estimates = (estimate,)
+
+    drawing = draw_column(Log(Header(title="Crowd"), beds), History())
+    beside = [
+        shape
+        for shape in walk(drawing.sheets[0].shapes)
+        if isinstance(shape, Group) and shape.id == "track-notes"
+    ]
+    said = " ".join(t.text for t in walk((beside[0],)) if hasattr(t, "text"))
+    assert "Ripples say" in said
+
+
+def test_a_single_bed_and_gaps_only() -> None:
+    """The smallest logs make a sheet: one bed, gaps alone, nothing at all."""
+    gaps = tuple(Bed(f"gap {n}", n, n + 1, kind="gap", gap_reason="no_exposure") for n in range(3))
+    for beds in ((sand("1", 0, 0.1),), gaps, ()):
+        log = Log(Header(title="Small"), beds)
+        check_sheets(draw_column(log), log)
+    assert "No exposure" in words_on(draw_column(Log(Header(title="Small"), gaps)))
+
+
+def test_long_sections_break_at_beds() -> None:
+    """Sheets break at bed boundaries, carry their number, and the legend stands on the last."""
+    beds = tuple(sand(str(n), n * 0.7, (n + 1) * 0.7, contact=Contact("sharp")) for n in range(60))
+    drawing = draw_column(Log(Header(title="Long"), beds), scale=50)
+    assert len(drawing.sheets) > 3
+    counted = [bed_ids(sheet) for sheet in drawing.sheets]
+    assert sum(map(len, counted)) == 60, "a bed was broken over two sheets"
+    for number, sheet in enumerate(drawing.sheets, 1):
+        said = " ".join(text.text for text, _ in texts_of(sheet))
+        assert f"Sheet {number} of {len(drawing.sheets)}" in said
+        assert ("sand, quartz-rich" in said) == (number == len(drawing.sheets))
+
+
+def test_a_bed_taller_than_a_sheet_goes_on() -> None:
+    """A bed that fills more than a sheet is drawn on as many as it needs."""
+    log = Log(Header(title="Tall"), (sand("1", 0, 30.0),))
+    drawing = draw_column(log, scale=50)
+    assert [bed_ids(sheet) for sheet in drawing.sheets][:2] == [bed_ids(drawing.sheets[0])] * 2
+
+
+def test_a_well_counts_depth_downward() -> None:
+    """A well's axis shows depths in the log's unit with their reference; the first sheet holds the top."""
+    beds = (
+        sand("2", -101.0, -100.6, depth_base=331.36, depth_top=330.05),
+        sand("1", -100.6, -100.0, depth_base=330.05, depth_top=328.08),
+    )
+    header = Header(title="Well", direction="down", unit="ft", depth_reference="kelly bushing")
+    said = words_on(draw_column(Log(header, beds), scale=20))
+    assert "Depth" in said
+    assert "ft below kelly bushing" in said
+    assert "330" in said
+    assert "Height" not in said
+
+
+def test_part_of_a_section() -> None:
+    """`from_m` and `to_m` draw a part; a part outside the section is refused."""
+    log = Log(Header(title="Part"), tuple(sand(str(n), n, n + 1) for n in range(10)))
+    drawing = draw_column(log, from_m=2.0, to_m=5.0)
+    assert len(bed_ids(drawing.sheets[0])) == 3
+    with pytest.raises(ArgumentError, match="from 0 to 10 m"):
+        draw_column(log, from_m=11.0)
+
+
+def test_fit_to_height_prints_its_scale() -> None:
+    """Fitting sets the scale and prints it."""
+    log = Log(Header(title="Fit"), tuple(sand(str(n), n, n + 1) for n in range(10)))
+    drawing = draw_column(log, fit_height_mm=125.0)
+    assert drawing.scale == pytest.approx(80.0)
+    assert len(drawing.sheets) == 1
+    assert "1:80" in words_on(drawing)
+    assert "fitted" in words_on(drawing)
+
+
+def test_a_cut_gap_says_so() -> None:
+    """A cut gap is 10 mm tall, and words give its true height; without the option it keeps its height."""
+    beds = (sand("1", 0, 1), Bed("gap 1", 1, 9, kind="gap", gap_reason="no_exposure"), sand("2", 9, 10))
+    log = Log(Header(title="Gap"), beds)
+    assert "scale cut here: 8 m drawn as 10 mm" in words_on(draw_column(log, cut_gaps=True)).replace(
+        "\u00a0", " "
+    )
+    assert "scale cut" not in words_on(draw_column(log))
+
+
+@pytest.mark.parametrize("bad", [0, -5, float("nan"), float("inf")])
+def test_impossible_scales_are_refused(bad: float) -> None:
+    """A scale must be a positive finite number."""
+    with pytest.raises(ArgumentError, match="50 for 1:50"):
+        draw_column(Log(Header(title="x"), (sand("1", 0, 1),)), scale=bad)
+
+
+def test_too_narrow_a_page_is_refused() -> None:
+    """A page too narrow for the tracks says how wide it must be."""
+    log, results = random_log(4, beds=10)
+    with pytest.raises(ArgumentError, match="mm wide"):
+        draw_column(log, results, results, page=(60, 300))
+
+
+def test_beds_carry_what_a_page_filters_by() -> None:
+    """Every bed is a group with a stable id, a title and data attributes."""
+    log, results = random_log(12, beds=15, thickness_m=(0.2, 0.6))
+    svg = draw_column(log, results, results, page="roll").svg()
+    bed = log.real_beds[0]
+    found = re.search(rf'<g id="(b-[0-9a-f]+)" data-bed="{re.escape(bed.name)}"[^>]*><title>', svg)
+    assert found
+    again = draw_column(log, page="roll", scale=200).svg()
+    assert f'id="{found[1]}"' in again, "the id depends on more than the bed"
+
+
+def test_saving_by_ending(tmp_path: Path) -> None:
+    """One file for a PDF, a file a sheet for SVG and PNG; another ending is refused."""
+    log = Log(Header(title="Save"), tuple(sand(str(n), n, n + 1) for n in range(20)))
+    drawing = draw_column(log)
+    assert [path.name for path in drawing.save(tmp_path / "a.svg")] == ["a-1.svg", "a-2.svg"]
+    assert [path.name for path in drawing.save(tmp_path / "a.pdf")] == ["a.pdf"]
+    assert (tmp_path / "a.pdf").read_bytes().startswith(b"%PDF")
+    pngs = drawing.save(tmp_path / "a.png", dpi=50)
+    assert all(path.read_bytes().startswith(b"\x89PNG") for path in pngs)
+    with pytest.raises(ArgumentError, match=r"\.svg, \.pdf, \.png"):
+        drawing.save(tmp_path / "a.docx")
+    assert drawing._repr_svg_() == drawing.svg(1)
+    with pytest.raises(ArgumentError, match="from 1 to 2"):
+        drawing.svg(3)

@@ -1,0 +1,112 @@
+"""Shapes written as SVG: exact text of small drawings, inert user text, finite numbers."""
+
+from __future__ import annotations
+
+from xml.etree import ElementTree
+
+import pytest
+from hypothesis import given
+from hypothesis import strategies as st
+
+from logkit.drawing.shapes import Circle, Dots, Gradient, Group, Paint, Path, Sheet, Text, polyline
+from logkit.drawing.svg import path_data, sheet_svg
+from logkit.errors import LogkitError
+
+NAMESPACE = "{http://www.w3.org/2000/svg}"
+
+
+def body(*shapes: object) -> str:
+    """What stands inside the root group of a sheet."""
+    text = sheet_svg(Sheet(10, 10, shapes))  # type: ignore[arg-type]
+    return text.split('<g id="sheet">')[1].rsplit("</g></svg>", 1)[0]
+
+
+def test_path_is_written_as_steps() -> None:
+    """Coordinates are whole hundredths of a millimetre, each step relative to the point before."""
+    line = Path(
+        polyline(((1.0, 2.0), (3.004, 2.0), (3.0, 1.5), (2.0, 1.0)), closed=True), Paint(fill="#ffffff")
+    )
+    assert body(line) == '<path d="M100 200h200v-50l-100-50z" fill="#ffffff" />'
+
+
+def test_curves_and_strokes() -> None:
+    """Stroke attributes are in the same unit; curves are relative as well."""
+    curve = Path(
+        (("M", (0.0, 0.0)), ("C", (1.0, 0.0, 1.0, 1.0, 2.0, -1.0))),
+        Paint(stroke="#000000", width=0.125, dash=(1.2, 0.8), cap="round"),
+    )
+    assert body(curve) == (
+        '<path d="M0 0c100 0 100 100 200-100" fill="none" stroke="#000000" stroke-width="12.5" '
+        'stroke-dasharray="120 80" stroke-linecap="round" />'
+    )
+
+
+def test_texts_of_a_group_share_their_style() -> None:
+    """What texts have in common is written once; what differs is written on the text; a child group is not fooled."""
+    one = Text((1, 1), "a", 6.0, "#111111", bold=True)
+    two = Text((2, 2), "b", 6.0, "#222222", bold=True)
+    inner = Group((Text((3, 3), "c", 6.0, "#111111"),))
+    assert body(Group((one, two, inner), id="x")) == (
+        '<g id="x" font-size="211.7" fill="#111111" font-weight="bold"><text x="100" y="100">a</text>'
+        '<text x="200" y="200" fill="#222222">b</text>'
+        '<g><text x="300" y="300" font-weight="normal">c</text></g></g>'
+    )
+
+
+def test_dots_are_one_path() -> None:
+    """Dots are zero-length strokes of one path; no dots write nothing."""
+    assert body(Dots(((1, 1), (1.5, 0.5)), 0.3, "#333333")) == (
+        '<path d="m100 100h0m50-50h0" stroke="#333333" stroke-width="30" stroke-linecap="round" fill="none" />'
+    )
+    assert body(Dots((), 0.3, "#333333"), Circle((1, 1), 0.5, Paint(fill="#000000"))) == (
+        '<circle cx="100" cy="100" r="50" fill="#000000" />'
+    )
+
+
+@given(st.text(max_size=60))
+def test_user_text_stays_text(text: str) -> None:
+    """Markup, quotes and control characters of a user are never read as markup, and the file stays well-formed."""
+    sheet = Sheet(
+        10,
+        10,
+        (Group((Text((1, 1), text, 6, "#000000"),), title=text, data=(("bed", text),)),),
+        title=text or "x",
+    )
+    root = ElementTree.fromstring(sheet_svg(sheet))
+    assert {element.tag.removeprefix(NAMESPACE) for element in root.iter()} <= {
+        "svg",
+        "g",
+        "title",
+        "desc",
+        "rect",
+        "text",
+    }
+
+
+@pytest.mark.parametrize("bad", [float("nan"), float("inf")])
+def test_numbers_are_finite(bad: float) -> None:
+    """A coordinate that is not finite stops the drawing with a word, it never reaches a file."""
+    with pytest.raises(LogkitError, match="not a finite number"):
+        path_data((("M", (0.0, bad)),))
+
+
+@given(st.lists(st.tuples(st.floats(-300, 300), st.floats(-300, 300)), min_size=2, max_size=30))
+def test_rounding_does_not_add_up(points: list[tuple[float, float]]) -> None:
+    """Adding up the steps of the dots gives every position back to half a hundredth."""
+    text = body(Dots(tuple(points), 0.3, "#333333"))
+    steps = text.split('d="')[1].split('"')[0].split("h0")[:-1]
+    x = y = 0
+    for (x_wanted, y_wanted), step in zip(points, steps, strict=True):
+        dx, dy = step[1:].replace("-", " -").split()
+        x, y = x + int(dx), y + int(dy)
+        assert abs(x / 100 - x_wanted) <= 0.00501
+        assert abs(y / 100 - y_wanted) <= 0.00501
+
+
+def test_gradient_is_defined_where_it_is_used() -> None:
+    """A gradient runs between its first and last height on the page."""
+    fade = Gradient("g1", ((1.0, "#000000"), (3.0, "#ffffff")))
+    sheet = Sheet(10, 10, (Path(polyline(((0, 1), (1, 3))), Paint(fill="gradient:g1")),), (fade,))
+    text = sheet_svg(sheet)
+    assert 'fill="url(#g1)"' in text
+    assert '<linearGradient id="g1" gradientUnits="userSpaceOnUse" x1="0" x2="0" y1="100" y2="300">' in text
