@@ -6,13 +6,16 @@ What a found term means for a bed belongs to the cell readers.
 from __future__ import annotations
 
 from dataclasses import dataclass
+from difflib import get_close_matches
 from functools import cache
 
-from logkit.errors import nearest
 from logkit.vocabulary.ambiguity import Ambiguity, ambiguities
 from logkit.vocabulary.loading import load_toml
 from logkit.vocabulary.terms import Term, vocabulary
 from logkit.vocabulary.words import Token, normal, tokens, word
+
+_ALIKE = 0.78
+"""Likeness from which a word counts as a slip of another."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -45,6 +48,7 @@ class Lexicon:
             for phrase, id in terms.phrases.items():
                 self._index.setdefault(phrase, (name, terms[id]))
         self._ambiguous = ambiguities()
+        self._words = {w: None for phrase in self._index for w in phrase.split() if len(w) > 3}
         self._longest = max((phrase.count(" ") + 1 for phrase in self._index), default=1)
 
     def scan(self, text: str) -> tuple[Piece, ...]:
@@ -64,10 +68,18 @@ class Lexicon:
             at += length
         return tuple(pieces)
 
-    def nearest(self, text: str) -> str | None:
-        """Label of the term most like the text, None when nothing is near."""
-        match = nearest(normal(text), self._index)
-        return self._index[match][1].label if match else None
+    def suggest(self, text: str) -> str | None:
+        """Label of the term that was probably meant: unknown words are put right one by one, None without a hint."""
+        mended = []
+        for token in tokens(text):
+            known = token.written[0].isdigit() or all(w in self._words for w in token.form)
+            near = None if known else get_close_matches(token.form[0], self._words, n=1, cutoff=_ALIKE)
+            mended.append(near[0] if near else token.written)
+        terms = [piece.term for piece in self.scan(" ".join(mended)) if piece.term]
+        if terms and " ".join(mended) != " ".join(token.written for token in tokens(text)):
+            return terms[0].label
+        whole = get_close_matches(normal(text), self._index, n=1, cutoff=_ALIKE)
+        return self._index[whole[0]][1].label if whole else None
 
     def _known(self, parts: tuple[Token, ...], text: str) -> Piece | None:
         written = text[parts[0].start : parts[-1].end]

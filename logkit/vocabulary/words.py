@@ -12,7 +12,7 @@ from typing import NamedTuple
 
 from logkit.vocabulary.loading import load_toml
 
-_PARTS = re.compile(r"//|[^\W_]+(?:'[^\W_]+)?|[&?%+]", re.UNICODE)
+_PARTS = re.compile(r"//|\d+[.,]\d+[^\W\d_]*|[^\W_]+(?:'[^\W_]+)?|[&?%+]", re.UNICODE)
 
 
 class Token(NamedTuple):

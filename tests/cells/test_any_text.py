@@ -8,6 +8,7 @@ from hypothesis import strategies as st
 
 from logkit.tables import cells
 from logkit.tables.cells import Reading
+from logkit.tables.cells.reading import clean
 
 READERS = {
     "length": lambda t: cells.read_length(t, "cm"),
@@ -135,7 +136,7 @@ def check(name: str, text: str) -> None:
             assert remark.remedy
         if remark.level == "question":
             assert len(remark.choices) >= 2
-    if reading.value is None and text.strip() and name not in OPTIONAL and any(c.isalnum() for c in text):
+    if reading.value is None and clean(text) and name not in OPTIONAL and any(c.isalnum() for c in text):
         assert any(remark.level == "error" for remark in reading.remarks), reading
 
 

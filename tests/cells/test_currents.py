@@ -98,3 +98,23 @@ def test_three_digits_are_the_azimuth(azimuth: int, dip: int) -> None:
         readings = read_currents(text).value
         assert readings is not None
         assert [(r.azimuth_deg, r.dip_deg, r.sure) for r in readings] == [(azimuth % 360, dip, True)]
+
+
+@pytest.mark.parametrize(
+    ("text", "bearings"),
+    [("350,10,185", [350, 10, 185]), ("045 ± 10", [45]), ("090(3)", [90, 90, 90]), ("PCL 030/210", [30])],
+)
+def test_lists_spreads_and_counts(text: str, bearings: list[float]) -> None:
+    """A comma parts bearings, a spread is left out, a count repeats, opposite bearings are one line."""
+    readings = read_currents(text).value
+    assert readings is not None
+    assert [r.azimuth_deg for r in readings] == bearings
+    assert all(r.dip_deg is None for r in readings)
+
+
+@pytest.mark.parametrize("text", ["fs 25 to 130", "fs 25° to 130°", "fs 25 @ 130", "fs 25/130"])
+def test_dip_towards(text: str) -> None:
+    """A dip with the word `to` before a three-digit azimuth is one reading of a plane."""
+    readings = read_currents(text).value
+    assert readings is not None
+    assert [(r.nature, r.azimuth_deg, r.dip_deg) for r in readings] == [("plane", 130, 25)]

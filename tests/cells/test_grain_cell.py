@@ -183,3 +183,27 @@ def test_measured_labels_round_trip(value: float, unit: str) -> None:
     first = read_size(f"{value if unit != 'phi' else value / 100:.6g} {unit}").value
     if first is not None:
         assert read_size(first.label).value == first
+
+
+def test_fine_to_medium_is_graded_but_asked() -> None:
+    """The order of a range with the word `to` is read as grading and asked; `up to` says the direction."""
+    assert labels("f to m") == ["f", "m"]
+    assert only_question(read_grain("f to m")) == ("f → m graded upward", "range f-m")
+    assert not [r for r in read_grain("f up to m").remarks if r.level == "question"]
+
+
+def test_a_bare_number_is_read_by_its_size() -> None:
+    """300 is taken as micrometres, -1 as phi, 0.3 as mm, each asked."""
+    for text, taken in (("300", "300 µm"), ("-1", "-1 phi"), ("0.3", "0.3 mm")):
+        reading = read_grain(text)
+        assert labels(text) == [taken]
+        assert only_question(reading)[0] == taken
+
+
+def test_boulders_with_their_largest_size() -> None:
+    """`boulders to 1.2 m` is a class with a largest clast."""
+    cell = read_grain("boulders to 1.2 m").value
+    assert cell is not None
+    assert [s.size.label for s in cell.states] == ["boulder"]
+    assert cell.largest is not None
+    assert cell.largest.mean_mm == pytest.approx(1200)

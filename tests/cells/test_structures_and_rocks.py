@@ -246,3 +246,56 @@ def test_small_cells() -> None:
     assert colour is not None
     assert (colour.text, colour.munsell) == ("5yr4/4 moist", "5YR 4/4")
     assert read_colour("N5 medium grey").remarks == ()
+
+
+def test_trends_and_contacts_in_a_structures_cell_are_said() -> None:
+    """What belongs into another column is named with that column, and is no structure."""
+    reading = read_structures("ripples, fining up, sharp base")
+    assert reading.value is not None
+    assert [s.term for s in reading.value.structures] == ["current_ripples"]
+    assert [r.code for r in reading.remarks] == ["structures.trend", "structures.contact"]
+    assert not [r for r in read_structures("coarsening up").remarks if r.level == "error"]
+
+
+def test_doubted_divisions_are_unsure() -> None:
+    """A division in brackets makes the sequence unsure."""
+    cell = read_structures("Ta(b)c").value
+    assert cell is not None
+    assert [(s.code, s.sure) for s in cell.structures] == [("Ta", False), ("Tb", False), ("Tc", False)]
+
+
+def test_cross_bedding_named_twice_is_one_structure() -> None:
+    """`cross-bedded (trough)` is trough cross-bedding, not both."""
+    assert terms("cross-bedded (trough)") == ["trough_cross_bedding"]
+
+
+def test_a_range_of_wavelengths_gives_its_middle_with_a_note() -> None:
+    """The geometric middle is taken and said."""
+    reading = read_structures("HCS λ 0.8-1.2 m")
+    assert reading.value is not None
+    assert reading.value.ripple_wavelength_m == pytest.approx(0.98, abs=0.001)
+    assert [r.code for r in reading.remarks] == ["ripples.range"]
+
+
+def test_range_words_beside_a_rock() -> None:
+    """`fine to medium sst` is a range and asks; `lst (packstone)` is one rock; a lone size is a size."""
+    reading = read_lithology("fine to medium sst")
+    assert reading.value is not None
+    assert [s.size.label for s in reading.value.grain] == ["f-m"]
+    assert reading.remarks[0].choices == ("range f-m", "f → m graded upward")
+    packstone = read_lithology("lst (packstone)")
+    assert packstone.value is not None
+    assert packstone.value.lithology == "packstone"
+    assert packstone.remarks == ()
+    size = read_lithology("vfs").value
+    assert size is not None
+    assert size.grain[0].size.label == "vf"
+
+
+@pytest.mark.parametrize("text", ["-", "–", "?", "n/a", " -- "])
+def test_marks_for_nothing_are_empty_cells(text: str) -> None:
+    """A dash or `n/a` says nothing, so there is neither value nor remark."""
+    for reader in (read_structures, read_lithology, read_contact, read_colour):
+        reading = reader(text)
+        assert reading.value is None
+        assert reading.remarks == ()

@@ -19,13 +19,13 @@ COMPASS = {name: index * 22.5 for index, name in enumerate((
 """Compass point -> degrees."""
 
 _POINT = "|".join(sorted(COMPASS, key=lambda p: -len(p)))
-_D = r"\d{1,3}(?:[.,]\d+)?"
+_D = r"\d{1,3}(?:\.\d+)?"
 _DEG = r"(?:°|deg\b)?"
 TOKEN = re.compile(
     rf"""(?<![\w.])(?:
       (?P<q1>[NS])\s?(?P<qa>\d{{1,2}}(?:\.\d+)?)\s?{_DEG}\s?(?P<q2>[EW])(?:\s*[,/;\s]\s*(?P<qdip>\d{{1,2}}(?:\.\d+)?)\s?{_DEG}\s?(?P<qdir>{_POINT}))?
      |(?P<strike>{_D})\s?{_DEG}\s*[/,\s]\s*(?P<sdip>\d{{1,2}}(?:\.\d+)?)\s?{_DEG}\s?(?P<sdir>{_POINT})
-     |(?P<plunge>\d{{1,2}}(?:\.\d+)?)\s?{_DEG}\s*(?:→|->|=>|>)\s*(?P<trend>{_D})\s?{_DEG}
+     |(?P<plunge>\d{{1,2}}(?:\.\d+)?)\s?{_DEG}\s*(?:→|->|=>|>|@|(?:to(?:wards?)?|dir)\s(?=\d{{3}}))\s*(?P<trend>{_D})\s?{_DEG}
      |(?P<first>{_D})\s?{_DEG}\s*/\s*(?P<second>{_D})\s?{_DEG}
      |(?P<from>{_D})\s?{_DEG}\s*-\s*(?P<until>{_D})\s?{_DEG}
      |(?P<p1>{_POINT})\s*[-/]\s*(?P<p2>{_POINT})
@@ -140,6 +140,8 @@ def _checked(
 def _pair(match: re.Match[str], azimuth_second: bool | None, remarks: list[Remark]) -> list[Attitude]:
     first, second = match["first"], match["second"]
     a, b = number(first)[0] or 0.0, number(second)[0] or 0.0
+    if abs(a - b) == 180 and max(a, b) <= 360:
+        return [Attitude("axis", min(a, b) % 360, None, match.start(), match.end())]
     if a > 90 and b > 90:
         remarks.append(
             error("currents.two_azimuths", f"{quoted(match[0])} holds two azimuths and no dip",

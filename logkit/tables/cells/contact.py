@@ -27,12 +27,12 @@ _AFTER = re.compile(
     rf"(?P<value>{_NUM})\s*(?P<unit>{_UNIT})?\s*(?:of\s+)?(?P<word>relief|scour|zone|transition)\b", re.I
 )
 _ZONE = re.compile(
-    rf"\b(?:over|across|within|zone|grad\w*|transition\w*)\s*(?:of|:|=|~|over)?\s*"
-    rf"(?P<value>{_NUM})\s*(?P<unit>{_UNIT})?(?![A-Za-z])",
+    rf"\b(?:over|across|within|zone|grad\w*|transition\w*)\s*(?:of|:|=|~|over)?\s*\(?\s*"
+    rf"(?P<value>{_NUM})\s*(?P<unit>{_UNIT})?(?![A-Za-z])\)?",
     re.I,
 )
 _MEASURE_WORDS = frozenset(
-    ("relief", "rel", "over", "across", "within", "zone", "amplitude", "depth", "down", "up", "of")
+    ("relief", "rel", "over", "across", "within", "zone", "amplitude", "depth", "down", "up", "of", "max")
 )
 _PRECEDENCE = ("faulted", "erosive", "loaded", "gradational", "undulose", "sharp", "not_seen", "unknown")
 _STRUCTURE_KIND = {

@@ -28,6 +28,8 @@ from logkit.vocabulary import Term, lexicon, vocabulary
 __all__ = ["read_attitude", "read_currents", "take_currents"]
 
 _COUNT = re.compile(r"\(?\bn\s*=\s*\d+\)?", re.I)
+_SPREAD = re.compile(r"(?:±|\+/-|\+-)\s*\d+(?:\.\d+)?\s*°?")
+_TIMES = re.compile(r"(?<![\d./])(?P<bearing>\d{3})\s*\(\s*x?\s*(?P<times>\d{1,2})\s*x?\s*\)")
 _FROM = re.compile(r"\bfrom\b(?:\s+the)?\s*$", re.I)
 _AXIS = re.compile(r"\b(?:axis|axes|axial|line|trend)\b", re.I)
 _NAMED_BEARING = re.compile(
@@ -54,7 +56,7 @@ def read_currents(text: str, hint: str = "") -> Reading[tuple[CurrentReading, ..
     if refused:
         return Reading(None, (refused,))
     remarks: list[Remark] = []
-    body = _COUNT.sub(" ", plain)
+    body = _repeated(_SPREAD.sub(" ", _COUNT.sub(" ", plain)), remarks)
     attitudes = find_attitudes(body, remarks)[:_MOST_READINGS]
     readings = _named(body, attitudes, hint, remarks)
     if not readings and not any(r.level == "error" for r in remarks):
@@ -64,6 +66,21 @@ def read_currents(text: str, hint: str = "") -> Reading[tuple[CurrentReading, ..
                   allowed=("075", "22/140", "N30E 40SE", "30→220", "030-210", "NNE"))
         )  # fmt: skip
     return Reading(readings or None, tuple(remarks))
+
+
+def _repeated(text: str, remarks: list[Remark]) -> str:
+    """The text with `090(3)` written out as three readings, which is asked."""
+
+    def written_out(match: re.Match[str]) -> str:
+        times = int(match["times"])
+        remarks.append(
+            question("currents.times", f"{quoted(match[0])} read as {times} readings of {match['bearing']}",
+                     "write each reading with & between",
+                     (f"{times} readings of {match['bearing']}", f"readings {match['bearing']} and {times}"))
+        )  # fmt: skip
+        return " & ".join([match["bearing"]] * times) or match["bearing"]
+
+    return _TIMES.sub(written_out, text)
 
 
 def take_currents(text: str, hint: str, remarks: list[Remark]) -> tuple[str, tuple[CurrentReading, ...]]:

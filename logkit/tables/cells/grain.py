@@ -261,10 +261,23 @@ def _states(text: str, scale: str, remarks: list[Remark]) -> _States:
         )  # fmt: skip
     if len(found) == 1:
         return _States(_single(found[0][0], text, trend, scale, remarks), rest, rock, measured)
+    if arrow:
+        # beside another size these labels cannot be a trend or a rock
+        remarks[:] = [r for r in remarks if r.code not in ("grain.sand_or_rock", "grain.upper_or_upward")]
     if arrow == "to":
-        labels = " → ".join(s.size.label for s, _ in found if s.size)
-        remarks.append(note("grain.graded_by_words", f"read as grading, upward: {labels}"))
+        remarks.append(_graded_by_words([s.size for s, _ in found if s.size], text))
     return _States(_placed(found, remarks), rest, rock, measured)
+
+
+def _graded_by_words(sizes: list[SizeInterval], text: str) -> Remark:
+    """What is said on `m to f`: grading; `f to m` is the usual order of a range as well and is asked."""
+    labels = " → ".join(size.label for size in sizes)
+    rising = len(sizes) == 2 and sizes[0].middle_mm < sizes[1].middle_mm
+    if rising and not re.search(r"\bup|base|into\b", text, re.I):
+        return question("grain.to", f"{quoted(text)} is read as grading upward and could be a range",
+                        "write an arrow for grading, a hyphen for a range",
+                        (f"{labels} graded upward", f"range {sizes[0].label}-{sizes[1].label}"))  # fmt: skip
+    return note("grain.graded_by_words", f"read as grading, upward: {labels}")
 
 
 def _parts(text: str, scale: str) -> tuple[list[str], str]:

@@ -13,7 +13,7 @@ _NUM = r"(?:\d+(?:\.\d+)?|\.\d+)"
 _UNIT = r"mm|cm|m|µm|um|in"
 _LARGEST = re.compile(
     rf"""(?<!\w)(?P<word>MPS|D\s?max|max(?:imum)?\.?(?:\s+(?:clasts?|size|grain\s*size|particle\s*size))?
-        |largest(?:\s+clasts?)?|(?:clasts?|pbls?|pebbles?|cobbles?|cbls?)\s+(?:up\s+)?to
+        |largest(?:\s+clasts?)?|(?:clasts?|pbls?|pebbles?|cobbles?|cbls?|boulders?|blds?|blocks?)\s+(?:up\s+)?to
         |up\s+to(?=\s*~?\s*[\d.]+\s*(?:mm|cm|m)\b))
         \s*(?:\(?\s*(?:n\s*=\s*)?(?P<n>5|10)\s*\)\s*)?[:=~≤<]*\s*
         (?P<numbers>{_NUM}(?:\s*[,;/&+x]\s*{_NUM}|\s+{_NUM})*)\s*(?P<unit>{_UNIT})?(?![A-Za-z0-9])
@@ -25,6 +25,9 @@ _MEDIAN = re.compile(
     rf"\s*(?P<unit>{_UNIT}|phi|φ)?(?![A-Za-z0-9])",
     re.I,
 )
+_OTHER_PERCENTILE = re.compile(rf"(?<!\w)D\s?_?(?!50)\d{{1,2}}\s*[:=~≈]+\s*{_NUM}\s*(?:{_UNIT})?(?![A-Za-z0-9])"
+                               rf"|(?<!\w)D_?(?!50)\d{{2}}\s+{_NUM}\s*(?:{_UNIT})?(?![A-Za-z0-9])", re.I)  # fmt: skip
+_CLAST_WORD = re.compile(r"(?:pbl|pebble|cobble|cbl|boulder|bld|block)s?", re.I)
 _SPLIT = re.compile(r"\s*[,;/&+x]\s*|\s+")
 
 
@@ -59,11 +62,23 @@ def take_largest(text: str, remarks: list[Remark]) -> tuple[str, LargestClasts |
                  + ("" if match["axis"] else ", axis not stated"))
         )  # fmt: skip
     clasts = LargestClasts(sizes, _mean(sizes), (match["axis"] or "").casefold())
-    return f"{text[: match.start()]} | {text[match.end() :]}", clasts
+    # `boulders to 1.2 m`: the class in front of the size stays in the text
+    kept = word[0] if (word := _CLAST_WORD.match(match["word"])) else ""
+    return f"{text[: match.start()]}{kept} | {text[match.end() :]}", clasts
 
 
 def take_median(text: str, largest: LargestClasts | None, remarks: list[Remark]) -> tuple[str, float | None]:
     """The text without its D50, and the D50 in mm; a missing unit is that of the largest clasts, and asked."""
+    percentile = _OTHER_PERCENTILE.search(text)
+    if percentile:
+        remarks.append(
+            note(
+                "grain.percentile",
+                f"{quoted(percentile[0])} is not read here",
+                "write it into the sheet sizes",
+            )
+        )
+        text = f"{text[: percentile.start()]} | {text[percentile.end() :]}"
     match = _MEDIAN.search(text)
     if match is None:
         return text, None

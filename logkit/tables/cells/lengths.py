@@ -45,6 +45,7 @@ _INCHES = re.compile(
 )
 _FRACTION = re.compile(r"^(?P<whole>\d+(?!\d*/))?\s*(?P<num>\d+)/(?P<den>\d+)\s*(?P<unit>[A-Za-zµ'\"]*)\.?$")
 _PLAIN = re.compile(rf"^(?P<number>{NUMBER})\s*(?P<unit>[A-Za-zµ]+|'+|\")?\.?$")
+_METRES_CM = re.compile(r"^(?P<m>\d+)\s*m\s*(?P<cm>\d{1,2})(?:\s*cm)?$", re.I)
 _THOUSANDS = re.compile(r"^\d{1,3}(?:,\d{3})+\.\d+$|^\d{1,3}(?:\.\d{3})+,\d+$|^\d{1,3}(?:,\d{3}){2,}$")
 _SPLIT = re.compile(r"\s*(?:(?<=[\d'\"a-zµ.)])\s*-\s*|\.\.+|…|\bto\b)\s*", re.I)
 _LONGEST_M = 1e7
@@ -158,14 +159,19 @@ def number(text: str) -> tuple[float | None, bool]:
 
 
 def _length(plain: str, unit: str | None) -> Reading[Length]:
-    body = _APPROXIMATE.sub("", plain)
-    sign = plain[: len(plain) - len(body)].strip()
-    approximate = bool(sign) or body.endswith("?") or body.endswith("+")
+    body = _APPROXIMATE.sub("", re.sub(r"\s*\(?(?:approx\.?|ca\.?|est\.?)\)?$", "", plain, flags=re.I))
+    sign = plain[:2].strip() if plain[:1] in ("~", "<", ">", "≤", "≥") else ""
+    approximate = body != plain or body.endswith("?") or body.endswith("+")
     body = body.rstrip("?+ ").strip()
     remarks: list[Remark] = []
     if sign[:1] in (">", "<", "≥", "≤"):
         word = "at least" if sign[0] in ">≥" else "at most"
         remarks.append(note("length.limit", f"{quoted(plain)} read as {body}, {word}"))
+    both = _METRES_CM.match(body)
+    if both:
+        return Reading(
+            Length(int(both["m"]) + int(both["cm"]) / 100, "m", True, False, approximate), tuple(remarks)
+        )
     feet = _feet_inches(body)
     if feet is not None:
         return Reading(Length(feet, "ft", True, False, approximate), tuple(remarks))

@@ -84,16 +84,22 @@ _FOLDS = str.maketrans(
         "≈": "~", "∼": "~", "ϕ": "φ", "ø": "φ", "Φ": "φ", "Ø": "φ", "\ufeff": "", "\u200b": "",
     }
 )  # fmt: skip
+_NOTHING = frozenset(("-", "--", "---", "?", "??", "n/a", "n.a.", "."))
 _SPACES = re.compile(r"\s+")
 
 
 def clean(text: str) -> str:
-    """Text as the readers compare it: one kind of dash, quote, arrow and space, no control characters."""
+    """Text as the readers compare it: one kind of dash, quote, arrow and space, no control characters.
+
+    Marks people put into a cell with nothing to say (`-`, `?`, `n/a`) come out as an empty text.
+    """
     if text.isascii() and text.isprintable() and "  " not in text:
-        return text.strip()
-    folded = text.translate(_FOLDS)
-    kept = "".join(c if unicodedata.category(c)[0] != "C" else " " for c in folded)
-    return _SPACES.sub(" ", kept).strip()
+        plain = text.strip()
+    else:
+        folded = text.translate(_FOLDS)
+        kept = "".join(c if unicodedata.category(c)[0] != "C" else " " for c in folded)
+        plain = _SPACES.sub(" ", kept).strip()
+    return "" if plain.casefold() in _NOTHING else plain
 
 
 def quoted(text: str, longest: int = 60) -> str:

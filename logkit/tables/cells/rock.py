@@ -14,6 +14,19 @@ from logkit.tables.cells.words import Collected, collect, unread
 from logkit.vocabulary import lexicon, vocabulary
 
 _SANDS = ("sandstone", "sand", "arkose", "lithic_sandstone", "greywacke", "pebbly_sandstone")
+_KINDS = {
+    "limestone": (
+        "lime_mudstone",
+        "wackestone",
+        "packstone",
+        "grainstone",
+        "rudstone",
+        "boundstone",
+        "chalk",
+    ),
+    "sandstone": ("arkose", "lithic_sandstone", "greywacke", "pebbly_sandstone"),
+    "mudstone": ("claystone", "shale", "black_shale"),
+}
 _SIZE_LETTERS = ("m", "c", "ms", "cs")
 _EDGES = " .,;:()[]-"
 _GAP_NUMBERS = re.compile(r"[~]?\d+(?:[.,]\d+)?\s*(?:mm|cm|m|ft|feet|in|'|\")?(?![A-Za-z])", re.I)
@@ -67,9 +80,15 @@ def read_lithology(text: str, scale: str = "wentworth") -> Reading[RockCell]:
     if sized and sized.value:
         return _with_sizes(sized.value, sized.remarks, words, "?" not in plain)
     named = dict.fromkeys(term.id for term, _, _ in rocks)
+    for generic, kinds in _KINDS.items():
+        if generic in named and any(kind in named for kind in kinds):
+            del named[generic]  # `lst (packstone)` names one rock
     mixed = _interbedded(plain, tuple(named))
     _say_mixture(tuple(named), mixed, remarks)
     if not named and not words.terms:
+        size = read_grain(plain, scale).value
+        if size and size.states:
+            return Reading(RockCell(grain=size.states, sure="?" not in plain))
         return Reading(None, (*remarks, _unknown(plain)))
     left = unread(words.unknown)
     if left:
@@ -107,6 +126,8 @@ def _sized(plain: str, rocks: int, scale: str) -> Reading[GrainCell] | None:
     if rocks > 1 or len(plain.split()) < 2:
         return None
     reading = read_grain(plain, scale)
+    if any(r.code in ("grain.to", "grain.graded_by_words") for r in reading.remarks) and " up" not in plain:
+        reading = _range_beside_rock(plain, reading, scale)
     cell = reading.value
     if cell is None or any(r.code == "grain.from_rock" for r in reading.remarks):
         return reading if cell and (cell.largest or cell.d50_mm) else None
@@ -118,6 +139,19 @@ def _sized(plain: str, rocks: int, scale: str) -> Reading[GrainCell] | None:
         r"\b(?:med|crs|medium|coarse)", plain, re.I
     )
     return None if lone and cell.lithology not in _SANDS else reading
+
+
+def _range_beside_rock(plain: str, graded: Reading[GrainCell], scale: str) -> Reading[GrainCell]:
+    """`fine to medium sandstone` names a range; grading is offered as the other reading."""
+    reading = read_grain(re.sub(r"\s+to\s+", "-", plain), scale)
+    if reading.value is None or graded.value is None or len(reading.value.states) != 1:
+        return graded
+    label = reading.value.states[0].size.label
+    order = " → ".join(state.size.label for state in graded.value.states)
+    asked = question("grain.to", f"{quoted(plain)} is read as a range and could be grading",
+                     "write the size into the column grain, with an arrow for grading",
+                     (f"range {label}", f"{order} graded upward"))  # fmt: skip
+    return Reading(reading.value, (asked, *reading.remarks))
 
 
 def _with_sizes(

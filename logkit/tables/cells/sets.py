@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 import re
 from functools import lru_cache
 
@@ -24,7 +25,7 @@ SETS = re.compile(
 )
 _COUNT = re.compile(r"(?:\bn\s*=?\s*|\bx\s*)(\d+)", re.I)
 _MEAN = re.compile(rf"(?:mean|avg?|average)\.?\s*[:=]?\s*({_NUM})\s*({_UNIT})?", re.I)
-_VALUE = rf"\s*[:=~]?\s*({_NUM})\s*({_UNIT})?(?![A-Za-z])"
+_VALUE = rf"\s*[:=~]?\s*({_NUM})\s*(?:-\s*({_NUM})\s*)?({_UNIT})?(?![A-Za-z])"
 _WAVELENGTH = re.compile(rf"(?:λ|\b(?:lambda|wavelength|wl|spacing)\b){_VALUE}", re.I)
 # the height of a set, a dune or a bar is not that of a ripple
 _HEIGHT = re.compile(
@@ -143,7 +144,10 @@ def _take_length(
     if match is None:
         return text, None
     value = number(match[1])[0]
-    symbol = _settled_unit(match[2], unit, match[0], remarks)
+    symbol = _settled_unit(match[3], unit, match[0], remarks)
+    if value and match[2]:
+        value = math.sqrt(value * (number(match[2])[0] or 0.0))
+        remarks.append(note("ripples.range", f"{quoted(match[0])} read as its middle, {value:.3g} {symbol}"))
     if not value:
         remarks.append(error("ripples.zero", f"{quoted(match[0])} is not above zero", "write it with a unit"))
         return _without(text, match), None

@@ -27,6 +27,7 @@ BARE = re.compile(rf"^(?P<a>-?(?:{_NUM}))(?:\s*(?:-|to)\s*(?P<b>-?(?:{_NUM})))?$
 _OR = re.compile(r"\b(?:poss\w*|prob\w*|perhaps|maybe|or)\b", re.I)
 _RANGE = re.compile(r"^\s*(?:-|--|…|\.\.)\s*$")
 _WITH = re.compile(r"^\s*(?:\(|\+|,?\s*(?:with|w/|and|&|some|minor|occ\w*|plus)\b.*)\s*$", re.I)
+_LIKELY_MICRONS = 63.0
 _SMALLEST_MM, _LARGEST_MM = 1e-5, 1e5
 
 
@@ -250,12 +251,15 @@ def _measured_label(label: str) -> bool:
 
 
 def _bare_number(match: re.Match[str], text: str) -> State:
-    size, remark = measured_size(match["a"], match["b"], "mm")
+    first = number(match["a"])[0] or 0.0
+    units = ["mm", "phi", "µm"]
+    units.insert(0, units.pop(1 if first < 0 else 2 if first >= _LIKELY_MICRONS else 0))
+    size, remark = measured_size(match["a"], match["b"], units[0])
     if size is None or remark:
         return State(None, "", remarks=(remark,) if remark else ())
-    shown = size.label.removesuffix(" mm")
+    shown = size.label.rpartition(" ")[0]
     asked = question("grain.no_unit", f"{quoted(text)} has no unit", "write mm, µm or phi behind the number",
-                     (f"{shown} mm", f"{shown} phi", f"{shown} µm"))  # fmt: skip
+                     tuple(f"{shown} {unit}" for unit in units))  # fmt: skip
     return State(replace(size, sure=False), "", remarks=(asked,))
 
 

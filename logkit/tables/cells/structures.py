@@ -14,7 +14,7 @@ from logkit.errors import UnknownNameError
 from logkit.model import Bioturbation, CurrentReading, SetThickness, Structure
 from logkit.tables.cells.codes import read_code_word
 from logkit.tables.cells.currents import take_currents
-from logkit.tables.cells.reading import CACHE_SIZE, Reading, Remark, clean, error, question, quoted
+from logkit.tables.cells.reading import CACHE_SIZE, Reading, Remark, clean, error, note, question, quoted
 from logkit.tables.cells.refused import refusal
 from logkit.tables.cells.sets import take_climb, take_height, take_sets, take_wavelength
 from logkit.tables.cells.traces import take_bioturbation
@@ -28,13 +28,22 @@ _UPWARD = re.compile(
 )
 _CLAUSE = re.compile(r"\s*[,;]\s*")
 _DIVISION_LIST = re.compile(r"\bT[a-e](?:[-/,][a-e])+\b")
+_DOUBTED_DIVISIONS = re.compile(r"\bT(?=[a-e/,\-]*\()(?:\(?[a-e]\)?[-/,]?){1,6}(?![A-Za-z])")
+_ASIDES = (
+    (re.compile(r"\b(?:fining|coarsening|thinning|thickening|fines|coarsens)[\s-]*up(?:wards?)?\b", re.I),
+     "structures.trend", "is a trend, not a structure", "write the sizes at base and top into the column grain"),
+    (re.compile(r"\b(?:sharp|gradational|erosive|erosional|scoured|loaded)\s+(?:base|contact|top)\b", re.I),
+     "structures.contact", "is a contact, not a structure", "write it into the column contact"),
+)  # fmt: skip
 _EXTENT = re.compile(
     r"[@\[(]\s*(?P<low>\d+(?:\.\d+)?(?:e-?\d+)?)\s*-\s*(?P<high>\d+(?:\.\d+)?(?:e-?\d+)?)"
     r"\s*(?P<percent>%)?\s*(?:of bed)?[\])]?",
     re.I,
 )
-_PLACES = ((re.compile(r"\b(?:at|near|in)\s+(?:the\s+)?(?:base|bottom)\b|\bbasal\b", re.I), 0),
-           (re.compile(r"\b(?:at|near|in)\s+(?:the\s+)?top\b|\bnear\s+top\b", re.I), 1))  # fmt: skip
+_PLACES = ((re.compile(r"\b(?:at|near|in) (?:the )?(?:base|bottom)\b|\bbasal\b|\blower(?:most)?\s+part\b", re.I), 0),
+           (re.compile(r"\b(?:at|near|in)\s+(?:the\s+)?top\b|\bupper(?:most)?\s+part\b", re.I), 1))  # fmt: skip
+_KINDS_OF_CROSS_BEDDING = ("trough_cross_bedding", "planar_cross_bedding", "herringbone_cross_bedding",
+                          "sigmoidal_cross_bedding", "low_angle_cross_bedding")  # fmt: skip
 _LONGEST_LIST = 60
 
 
@@ -98,13 +107,21 @@ def read_structures(text: str, codes: str = "fluvial", unit: str | None = None) 
     rest, wavelength = take_wavelength(rest, unit, remarks)
     rest, height = take_height(rest, unit, remarks)
     rest, currents = take_currents(rest, "", remarks)
+    rest = _take_asides(rest, remarks)
     found, words, upward, lithology = _structures(rest, table, remarks)
     if currents and found:
         currents = _on_structure(currents, found[0].term)
     measured = currents or sets or bioturbation or any(v is not None for v in (climb, wavelength, height))
-    if not (found or words.terms or words.unknown or measured or any(r.level == "error" for r in remarks)):
-        words.unknown.extend(plain.split())  # fillers alone say nothing
-    _say_unknown(words, found, remarks)
+    if not (
+        found
+        or words.terms
+        or words.unknown
+        or measured
+        or lithology
+        or any(r.level == "error" for r in remarks)
+    ):
+        words.unknown.extend(w for w in rest.split() if w != ",")  # fillers alone say nothing
+    _say_unknown(rest, words, found, remarks)
     cell = StructuresCell(
         found, upward and len(found) > 1, sets, climb, wavelength, height,
         words.first("lithologies") or lithology, words.ids("qualifiers"), bioturbation,
@@ -122,6 +139,7 @@ def _structures(
     words = Collected()
     found: list[Structure] = []
     rocks: set[str] = set()
+    text = _DOUBTED_DIVISIONS.sub(lambda m: re.sub(r"[()]", "", m[0]) + "?", text)
     parts = _split_upward(_DIVISION_LIST.sub(lambda m: m[0].replace(",", "/"), text), table)
     upward = len(parts) > 1
     placed: list[tuple[int, int, Structure]] = []
@@ -185,9 +203,12 @@ def _clause(
         own = collect(
             rest, lexicon("structures", "lithologies", "qualifiers", "fossils"), sure="?" not in rest
         )
-        found.extend(
-            Structure(t.id, written, sure=sure) for t, written, sure in own.terms.get("structures", ())
-        )
+        named = own.terms.get("structures", [])
+        if any(t.id in _KINDS_OF_CROSS_BEDDING for t, _, _ in named):
+            named = [
+                n for n in named if n[0].id != "cross_bedding"
+            ]  # `cross-bedded (trough)` is one structure
+        found.extend(Structure(t.id, written, sure=sure) for t, written, sure in named)
         for name, terms in own.terms.items():
             if name != "structures":
                 words.terms.setdefault(name, []).extend(terms)
@@ -196,6 +217,16 @@ def _clause(
     if extent:
         found = [replace(s, base_fraction=low, top_fraction=high) for s in found]
     return found, sequence, rocks.pop() if len(rocks) == 1 else ""
+
+
+def _take_asides(text: str, remarks: list[Remark]) -> str:
+    """The text without trends and contacts, which other columns hold."""
+    for pattern, code, message, remedy in _ASIDES:
+        match = pattern.search(text)
+        if match:
+            remarks.append(note(code, f"{quoted(match[0])} {message}", remedy))
+            text = f"{text[: match.start()]} , {text[match.end() :]}"
+    return text
 
 
 def _on_structure(currents: tuple[CurrentReading, ...], structure: str) -> tuple[CurrentReading, ...]:
@@ -219,14 +250,15 @@ def _on_structure(currents: tuple[CurrentReading, ...], structure: str) -> tuple
     )
 
 
-def _say_unknown(words: Collected, found: tuple[Structure, ...], remarks: list[Remark]) -> None:
+def _say_unknown(text: str, words: Collected, found: tuple[Structure, ...], remarks: list[Remark]) -> None:
     """Words nobody knows: an error when they stand alone or are close to a term, else a note."""
     unknown = [w for w in words.unknown if any(c.isalpha() for c in w) or len(w) > 1]
     if not unknown:
         return
-    known = lexicon("structures")
     phrase = " ".join(unknown)
-    near = known.nearest(phrase) or next((n for w in unknown if len(w) > 4 and (n := known.nearest(w))), None)
+    near = lexicon("structures").suggest(text if found else phrase)
+    if near in [vocabulary("structures")[structure.term].label for structure in found]:
+        near = None
     anything = found or words.terms
     if anything and not near:
         left = unread(unknown)

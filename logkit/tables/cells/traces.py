@@ -84,7 +84,17 @@ def read_bioturbation_cell(text: str) -> Reading[BioturbationCell]:
 def read_bioturbation(text: str) -> Reading[Bioturbation]:
     """The grade of a bioturbation cell; traces written beside it are in `read_bioturbation_cell`."""
     reading = read_bioturbation_cell(text)
-    return Reading(reading.value.bioturbation if reading.value else None, reading.remarks)
+    if reading.value is None:
+        return Reading(None, reading.remarks)
+    remarks = reading.remarks
+    if reading.value.fossils:
+        named = ", ".join(reading.value.fossils)
+        remarks += (
+            note(
+                "bioturbation.fossils", f"traces stand beside the grade: {named}", "write them into fossils"
+            ),
+        )
+    return Reading(reading.value.bioturbation, remarks)
 
 
 def take_bioturbation(text: str, remarks: list[Remark]) -> tuple[str, Bioturbation | None]:
@@ -172,7 +182,7 @@ def read_fossils(text: str) -> Reading[tuple[str, ...]]:
                 new.append(piece.written)
         if new:
             words = " ".join(new)
-            near = known.nearest(words)
+            near = known.suggest(words)
             hint = f"; nearest known: {near}" if near else ""
             remarks.append(
                 note("fossils.as_written", f"{quoted(words)} is not in the list and is kept as written{hint}")
