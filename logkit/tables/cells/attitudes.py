@@ -140,7 +140,8 @@ def _checked(
 def _pair(match: re.Match[str], azimuth_second: bool | None, remarks: list[Remark]) -> list[Attitude]:
     first, second = match["first"], match["second"]
     a, b = number(first)[0] or 0.0, number(second)[0] or 0.0
-    if abs(a - b) == 180 and max(a, b) <= 360:
+    if abs(a - b) == 180 and max(a, b) <= 360 and len(first) == len(second) == 3:
+        # three digits on both sides: the two ends of a line; `30/210` is a dip with its direction
         return [Attitude("axis", min(a, b) % 360, None, match.start(), match.end())]
     if a > 90 and b > 90:
         remarks.append(
