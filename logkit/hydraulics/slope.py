@@ -10,9 +10,6 @@ import numpy as np
 from logkit.hydraulics.inputs import SYMBOLS, Fluid, Values, formula
 from logkit.registry import Limit
 
-RESIDUAL_FACTOR = 2.0
-"""One sigma of the slope about the regression as a factor; parameter errors alone are far too small."""
-
 _MEANINGS = SYMBOLS | {
     "bankfull_depth_m": "bankfull depth Hbf",
     "depth_m": "depth H",
