@@ -152,31 +152,49 @@ def _compare(
     readings: Mapping[int, Reading],
 ) -> dict[tuple[int, int], tuple[float, float]]:
     """P(faster) and P(steady) of pairs that the solver answers."""
-    result: dict[tuple[int, int], tuple[float, float]] = {}
-    known: dict[tuple[Case, Case, bool], tuple[float, float]] = {}
-    kernels: dict[float, Array] = {}
+    settings = flow_settings()
     used = sorted({k for pair in pairs for k in pair})
-    place = {k: n for n, k in enumerate(used)}
-    mass = solver.velocity_mass(solver.compile([readings[k].case for k in used]), sharp=True)
+    cases = {k: _case_of(estimates[k], readings[k]) for k in used}
+    kernels: dict[tuple[str, str], Array] = {}
+    mistaken: dict[tuple[str, str], float] = {}
+    apart: dict[tuple[str, str], list[tuple[int, int]]] = {}
+    chances: dict[tuple[int, int], tuple[float, float]] = {}
+    inside: dict[tuple[Case, Case], tuple[float, float]] = {}
     for i, j in pairs:
-        first, second = readings[i].case, readings[j].case
-        within = estimates[i].phase.bed_index == estimates[j].phase.bed_index
-        key = (first, second, within)
-        if key not in known:
-            settings = flow_settings()
-            priors = [settings.prior(c.signature.prior) for c in (first, second)]
-            own = math.sqrt((1 - settings.tendency["shared_share"]) * sum(p.delta**2 for p in priors))
-            if own not in kernels:
-                kernels[own] = solver.grid.kernel(own)
-            if within:
-                chances = _together(solver, first, second, kernels[own])
-            else:
-                i_mass, j_mass = mass[:, [place[i]]], mass[:, [place[j]]]
-                chances = _chances(i_mass, kernels[own] @ j_mass, solver)
-            mistaken = max(p.eps for p in priors)
-            known[key] = (chances[0] * (1 - 2 * mistaken) + mistaken, chances[1])
-        result[(i, j)] = known[key]
+        names = (cases[i].signature.prior, cases[j].signature.prior)
+        if names not in kernels:
+            priors = [settings.prior(name) for name in names]
+            own = (1 - settings.tendency["shared_share"]) * sum(p.delta**2 for p in priors)
+            kernels[names], mistaken[names] = solver.grid.kernel(math.sqrt(own)), max(p.eps for p in priors)
+        if estimates[i].phase.bed_index != estimates[j].phase.bed_index:
+            apart.setdefault(names, []).append((i, j))
+            continue
+        key = (cases[i], cases[j])
+        if key not in inside:
+            inside[key] = _together(solver, *key, kernels[names])
+        chances[i, j] = inside[key]
+    if apart:
+        mass = solver.velocity_mass(solver.compile([cases[k] for k in used]), sharp=True)
+        place = {k: n for n, k in enumerate(used)}
+        for names, found in apart.items():
+            first, second = (mass[:, [place[pair[end]] for pair in found]] for end in (0, 1))
+            waxing, steady = _chances(first, kernels[names] @ second, solver)
+            chances |= dict(zip(found, zip(waxing.tolist(), steady.tolist(), strict=True), strict=True))
+    result = {}
+    for (i, j), (waxing_ij, steady_ij) in chances.items():
+        wrong = mistaken[cases[i].signature.prior, cases[j].signature.prior]
+        result[i, j] = (waxing_ij * (1 - 2 * wrong) + wrong, steady_ij)
     return result
+
+
+def _case_of(estimate: PhaseEstimate, reading: Reading) -> Case:
+    """What the range of a phase rests on: in a conflict without the criterion that gave way."""
+    if estimate.clash is None:
+        return reading.case
+    left_out = estimate.clash.second
+    return Case(
+        reading.case.signature.without(left_out), tuple(d for d in reading.case.depths if d[0] != left_out)
+    )
 
 
 def _together(solver: Solver, first: Case, second: Case, own: Array) -> tuple[float, float]:
@@ -185,23 +203,26 @@ def _together(solver: Solver, first: Case, second: Case, own: Array) -> tuple[fl
     believed = solver.slices.believed_depth(first.signature.prior)
     shared = np.where(believed > 0, weights / np.maximum(believed, 1e-30), 0.0)
     planes = [solver.plane(case.signature, sharp=True) for case in (first, second)]
-    return _chances(planes[0] * shared, own @ planes[1], solver)
-
-
-def _chances(first: Array, second: Array, solver: Solver) -> tuple[float, float]:
-    """P(second faster) and P(within the steady ratio), for masses of shape (velocity, columns)."""
-    first, second = first.astype(np.float64), second.astype(np.float64)
-    whole = float((first.sum(axis=0) * second.sum(axis=0)).sum())
-    if not whole > 0:
+    first_plane, second_plane = planes[0] * shared, own @ planes[1]
+    weight = first_plane.sum(axis=0) * second_plane.sum(axis=0)
+    if not weight.sum() > 0:
         return 0.5, 0.0
+    waxing, steady = _chances(first_plane, second_plane, solver)
+    return float(waxing @ weight / weight.sum()), float(steady @ weight / weight.sum())
+
+
+def _chances(first: Array, second: Array, solver: Solver) -> tuple[Array, Array]:
+    """P(second faster) and P(within the steady ratio) of each column, for masses of shape (velocity, columns)."""
+    first, second = first.astype(np.float64), second.astype(np.float64)
+    whole = np.maximum(first.sum(axis=0) * second.sum(axis=0), 1e-300)
     slower = np.cumsum(first, axis=0) - 0.5 * first
-    waxing = float((slower * second).sum()) / whole
+    waxing = (slower * second).sum(axis=0) / whole
     cells = max(round(math.log(flow_settings().tendency["steady_ratio"]) / solver.grid.velocity.step), 1)
     up = np.vstack([np.zeros_like(slower[:cells]), slower[:-cells]])
     faster = first.sum(axis=0, keepdims=True) - slower
     down = np.vstack([faster[cells:], np.zeros_like(faster[:cells])])
-    steady = 1.0 - float(((up + down) * second).sum()) / whole
-    return waxing, max(steady, 0.0)
+    steady = 1.0 - ((up + down) * second).sum(axis=0) / whole
+    return waxing, np.maximum(steady, 0.0)
 
 
 def _compare_density(

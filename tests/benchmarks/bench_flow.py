@@ -95,22 +95,13 @@ def main() -> None:
         f"tables ready in {1e3 * wall:.0f} ms ({1e3 * processor:.0f} ms processor); asked for: below 100 ms"
     )
 
-    cases = draw_cases(60)
-    solver, fine = Solver(), Solver(Grid(16, 288, 168))
-    found, expected = solver.solve(solver.compile(cases)), fine.solve(fine.compile(cases))
-    for name in QUANTITIES:
-        error = 100 * np.abs(getattr(found, name)[::2] / getattr(expected, name)[::2] - 1)
-        print(
-            f"error of P10/P50/P90 of {name:20s}: median {np.median(error):.2f} %, largest {error.max():.2f} %"
-        )
-    del fine
-
     plain = [
         c for c in draw_cases(400, seed=2) if all(id != "largest_clast" for id, _ in c.signature.factors)
     ]
+    tables = Solver()
     baseline = timed(lambda: monte_carlo(plain[:100]))
     naive_rate = 100 / baseline[1]
-    drawn, direct = monte_carlo(plain[:60]), solver.solve(solver.compile(plain[:60])).velocity[::2]
+    drawn, direct = monte_carlo(plain[:60]), tables.solve(tables.compile(plain[:60])).velocity[::2]
     error = 100 * np.abs(drawn / direct - 1)
     print(
         f"baseline, Monte Carlo of {DRAWS} draws a bed (velocity only): {naive_rate:,.0f} beds/s of processor time"
@@ -118,7 +109,7 @@ def main() -> None:
     print(f"  its velocity against the tables: median {np.median(error):.1f} %, largest {error.max():.1f} %")
 
     for count in (1_000, BEDS, 100_000):
-        batch = solver.compile(draw_cases(count, seed=4))
+        batch = tables.compile(draw_cases(count, seed=4))
         cold_solver = Solver()
         cold = timed(lambda s=cold_solver, b=batch: with_ledger(s, b))  # type: ignore[misc]
         warm = timed(lambda s=cold_solver, b=batch: with_ledger(s, b), 5)  # type: ignore[misc]
@@ -132,8 +123,8 @@ def main() -> None:
                 f"{count:7,d} beds, {len(batch.signatures):5d} signatures, {word}: {count / wall:9,.0f} beds/s wall, "
                 f"{count / processor:9,.0f} beds/s processor = {count / processor / naive_rate:6,.0f} x baseline"
             )
-    peak = resource.getrusage(resource.RUSAGE_SELF).ru_maxrss / 1024
-    print(f"peak memory so far {peak:.0f} MB (with the fine grid and 100,000 beds)")
+        peak = resource.getrusage(resource.RUSAGE_SELF).ru_maxrss / 1024
+        print(f"{count:7,d} beds: peak memory of the process so far {peak:.0f} MB")
 
     truth = river_log(2_000, seed=1)
     infer_flow(truth.log)
@@ -144,6 +135,15 @@ def main() -> None:
     short = river_log(300, seed=2)
     wall, processor = timed(lambda: infer_flow(short.log), 3)
     print(f"infer_flow on a log of 300 beds: {1e3 * processor:.0f} ms")
+
+    cases = draw_cases(60)
+    solver, fine = Solver(), Solver(Grid(16, 288, 168))
+    found, expected = solver.solve(solver.compile(cases)), fine.solve(fine.compile(cases))
+    for name in QUANTITIES:
+        error = 100 * np.abs(getattr(found, name)[::2] / getattr(expected, name)[::2] - 1)
+        print(
+            f"error of P10/P50/P90 of {name:20s}: median {np.median(error):.2f} %, largest {error.max():.2f} %"
+        )
 
 
 if __name__ == "__main__":
