@@ -5,6 +5,7 @@ Geometry only. All lines of a bed are cut in one pass, since array code pays per
 
 from __future__ import annotations
 
+import math
 from collections.abc import Sequence
 
 import numpy as np
@@ -96,27 +97,31 @@ def _joined(
 
 
 def simplified(line: Array) -> Array:
-    """The polyline without points that lie within the tolerance of what is kept."""
+    """The polyline without points that lie within the tolerance of what is kept.
+
+    From each kept point the directions are narrowed to those that pass all points since within the tolerance; the
+    first point outside of them, or nearer than the one before it, ends the piece.
+    """
     if len(line) < 3:
         return line
     points = line.tolist()
     keep = [0]
-    anchor = 0
-    while anchor < len(points) - 1:
-        reach = anchor + 1
-        while reach + 1 < len(points) and _fits(points, anchor, reach + 1):
-            reach += 1
-        keep.append(reach)
-        anchor = reach
+    x0, y0 = points[0]
+    reference = low = high = far = 0.0
+    fresh = True
+    for number in range(1, len(points)):
+        x, y = points[number]
+        away = math.hypot(x - x0, y - y0)
+        turn = 0.0 if fresh else (math.atan2(y - y0, x - x0) - reference + math.pi) % math.tau - math.pi
+        if not fresh and (away < far or not low <= turn <= high):
+            keep.append(number - 1)
+            x0, y0 = points[number - 1]
+            away, turn, fresh = math.hypot(x - x0, y - y0), 0.0, True
+        slack = math.asin(min(1.0, TOLERANCE_MM / away)) if away else math.pi
+        if fresh:
+            reference, low, high, fresh = math.atan2(y - y0, x - x0), -slack, slack, False
+        else:
+            low, high = max(low, turn - slack), min(high, turn + slack)
+        far = away
+    keep.append(len(points) - 1)
     return line[keep]
-
-
-def _fits(points: list[list[float]], first: int, last: int) -> bool:
-    """True when all points between two lie within the tolerance of the chord."""
-    x0, y0 = points[first]
-    dx, dy = points[last][0] - x0, points[last][1] - y0
-    size = (dx * dx + dy * dy) ** 0.5
-    if size == 0:
-        return False
-    limit = TOLERANCE_MM * size
-    return all(abs((x - x0) * dy - (y - y0) * dx) <= limit for x, y in points[first + 1 : last])
