@@ -125,7 +125,7 @@ def roses(summaries: list[CurrentSummary]) -> Picture | None:
         return None
     width, height = 52.0 * min(len(shown), 3), 58.0 * (1 + (len(shown) - 1) // 3)
     shape = {"nrows": 1 + (len(shown) - 1) // 3, "ncols": min(len(shown), 3), "squeeze": False}
-    with _figure(width, height, subplot_kw={"projection": "polar"}, **shape) as (figure, grid):
+    with _figure(width, height, **shape) as (figure, grid):
         for axes, summary in zip(grid.flat, shown, strict=False):
             rose(axes, summary)
         for axes in list(grid.flat)[len(shown) :]:
@@ -138,10 +138,13 @@ def _viscosity(water: dict[str, float]) -> dict[str, float]:
 
 
 def _edge(axes: Any, x: Any, y: Any, sigma_log10: float, label: str) -> None:
-    """A line with its scatter as a band, named at its left end."""
+    """A line with its scatter as a band, named at its right end; x rises."""
     axes.fill_between(x, y * 10**-sigma_log10, y * 10**sigma_log10, color="#e7ebef", lw=0, zorder=1)
     axes.plot(x, y, color=SOFT, lw=0.9, zorder=2)
-    axes.annotate(label, (x[2], y[2]), xytext=(2, 2), textcoords="offset points", fontsize=6, color=SOFT)
+    axes.annotate(
+        label, (x[-4], y[-4]), xytext=(0, 3), textcoords="offset points", ha="right", fontsize=6, color=INK,
+        bbox={"facecolor": "#ffffff", "edgecolor": "none", "alpha": 0.8, "pad": 0.6}, zorder=6,
+    )  # fmt: skip
 
 
 def _plain_ticks(axes: Any, sizes: tuple[float, ...]) -> None:

@@ -9,6 +9,7 @@ from __future__ import annotations
 from io import BytesIO
 from typing import Any
 
+from logkit.model import CAUTION_SHORT
 from logkit.report.document import Block, Document, Figure, Heading, Paragraph, Table, Terms
 from logkit.words import one_line
 
@@ -28,7 +29,7 @@ def document_docx(document: Document) -> bytes:
     file = docx.Document()
     properties = file.core_properties
     properties.title, properties.author = one_line(document.title), "; ".join(document.authors)
-    properties.comments = document.caution
+    properties.comments = CAUTION_SHORT
     # a fixed time: the same log gives the same bytes
     properties.created = properties.modified = datetime.datetime(2000, 1, 1)
     file.styles["Normal"].font.size = Pt(10)
@@ -123,10 +124,11 @@ def _add_picture(file: Any, figure: Figure) -> None:
     from docx.oxml import parse_xml
     from docx.shared import Mm
 
-    from logkit.drawing import svg_to_png
+    from logkit.drawing.render import png
 
     shrink = min(1.0, TEXT_WIDTH_MM / figure.width_mm, TEXT_HEIGHT_MM / figure.height_mm)
-    picture = file.add_picture(BytesIO(svg_to_png(figure.svg, dpi=200)), width=Mm(figure.width_mm * shrink))
+    pixels = png((figure.svg, figure.width_mm, figure.height_mm), 150.0)
+    picture = file.add_picture(BytesIO(pixels), width=Mm(figure.width_mm * shrink))
     picture._inline.docPr.set("descr", figure.alt)
     part = Part(
         PackURI(f"/word/media/{figure.id}.svg"), "image/svg+xml", figure.svg.encode(), file.part.package

@@ -18,7 +18,13 @@ def columns(well: Well, settings: ReportSettings, *, dots: bool = True) -> Itera
     from logkit.drawing import draw_column
 
     drawing = draw_column(
-        well.log, well.history, well.trends, style=settings.style, scale=settings.scale, page=settings.page
+        well.log,
+        well.history,
+        well.trends,
+        style=settings.style,
+        scale=settings.scale,
+        page=settings.page,
+        **({} if dots else {}),
     )
     of = len(drawing.sheets)
     for number, sheet in enumerate(drawing.sheets, 1):

@@ -27,7 +27,7 @@ def document_pdf(document: Document, *, paper: str = "a4", archive: bool = False
     """
     import typst
 
-    from logkit.drawing.fonts import font_folder
+    from logkit.drawing.render import font_folder
 
     pictures: dict[str, bytes] = {}
     content = _content(document, paper, pictures)
