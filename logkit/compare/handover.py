@@ -6,6 +6,8 @@ are written well by well, so that memory does not grow with their number.
 
 from __future__ import annotations
 
+import csv
+import io
 import json
 import math
 import os
@@ -55,6 +57,9 @@ TABLES: dict[str, dict[str, str]] = {
     },
 }  # fmt: skip
 """Tables of the set that grow by one part a well."""
+
+_AS_IT_IS = frozenset({str, int, bool, type(None)})
+_LIKE_FORMULA = ("=", "+", "-", "@", "\t", "\r")
 
 LIMITS = f"""Limits of this hand-over set
 
@@ -282,8 +287,6 @@ def _check(logs: tuple[Log, ...], histories: Sequence[Any] | None, trends: Seque
 
 
 def _write_intervals(target: Path, results: Sequence[tuple[PlacedLog, Any, Any]], ending: str) -> Path:
-    import io
-
     import pandas as pd
 
     frame = pd.concat([intervals_frame(*result) for result in results], ignore_index=True)
@@ -315,17 +318,22 @@ def _json(content: Any) -> str:
 
 def _plain(value: Any) -> Any:
     """Data that JSON can hold. Numbers that are none become null; empty fields of records are left out."""
-    if value is None or isinstance(value, str | bool | int):
+    kind = type(value)
+    if kind in _AS_IT_IS:
         return value
-    if isinstance(value, float):
+    if kind is float:
         return value if math.isfinite(value) else None
-    if isinstance(value, list | tuple):
-        return [_plain(v) for v in value]
-    if isinstance(value, dict):
+    if kind is tuple or kind is list:
+        return [v if type(v) in _AS_IT_IS else _plain(v) for v in value]
+    if kind is dict:
         return {str(k): _plain(v) for k, v in value.items()}
-    if is_dataclass(value) and not isinstance(value, type):
-        items = ((name, getattr(value, name)) for name in _field_names(type(value)))
-        return {name: _plain(v) for name, v in items if v is not None and v != "" and v != ()}
+    if is_dataclass(kind):
+        plain = {}
+        for name in _field_names(kind):
+            v = getattr(value, name)
+            if v is not None and v != "" and v != ():
+                plain[name] = v if type(v) in _AS_IT_IS else _plain(v)
+        return plain
     item: Callable[[], Any] | None = getattr(value, "item", None)
     return _plain(item()) if item is not None else str(value)
 
@@ -337,16 +345,19 @@ def _field_names(record: type) -> tuple[str, ...]:
 
 def _csv(frame: pd.DataFrame, header: bool = True) -> str:
     """A table as CSV; text that a spreadsheet would take for a formula is kept text by a leading apostrophe."""
-    safe = frame
-    for name in frame.columns:
-        if frame[name].dtype != "string" and frame[name].dtype != object:
-            continue
-        risky = frame[name].str.match(r"[=+\-@\t\r]", na=False)
-        if risky.any():
-            safe = safe.copy() if safe is frame else safe
-            safe.loc[risky, name] = "'" + frame.loc[risky, name]
-    text: str = safe.to_csv(index=False, header=header, lineterminator="\n")
-    return text
+    file = io.StringIO()
+    writer = csv.writer(file, lineterminator="\n")
+    if header:
+        writer.writerow(frame.columns)
+    writer.writerows(zip(*(_cells(frame[name]) for name in frame.columns), strict=True))
+    return file.getvalue()
+
+
+def _cells(column: pd.Series[Any]) -> list[Any]:
+    """Values of a column as they stand in CSV; what is missing is empty."""
+    missing = column.isna().tolist()
+    values = ["" if gone else value for value, gone in zip(column.tolist(), missing, strict=True)]
+    return [f"'{v}" if isinstance(v, str) and v.startswith(_LIKE_FORMULA) else v for v in values]
 
 
 def _renamed(file: IO[str], target: Path) -> Path:

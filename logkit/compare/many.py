@@ -27,6 +27,8 @@ if TYPE_CHECKING:
     import pandas as pd
     from numpy.typing import NDArray
 
+    from logkit.model import Grading, Log, Package
+
 AHEAD = 3
 """Wells a process may be ahead of the writer; more would only fill memory."""
 
@@ -91,6 +93,15 @@ class ManyWells:
 
 
 @dataclass(frozen=True, slots=True)
+class _BedTrends:
+    """Grading and palaeocurrents of a log: what can be said bed by bed."""
+
+    gradings: tuple[Grading, ...]
+    current_results: Any
+    packages: tuple[Package, ...] = ()
+
+
+@dataclass(frozen=True, slots=True)
 class _Digest:
     files: WellFiles
     rows: dict[str, Any]
@@ -106,6 +117,7 @@ def process_wells(
     step_m: float | None = None,
     flow: bool = True,
     trends: bool = True,
+    packages: bool = False,
     reading: dict[str, Any] | None = None,
 ) -> Iterator[WellDone]:
     """Write the hand-over set and the tables of many wells, one source after another.
@@ -117,7 +129,9 @@ def process_wells(
     kept : receives tables and failures; pass one to look at them afterwards
     processes : how many work side by side
     step_m : step of LAS curves, m
-    flow, trends : whether these results are taken
+    flow, trends : whether flow, and grading and palaeocurrents, are taken
+    packages : whether packages of beds are looked for as well; their test against random order takes longer
+        than everything else together
     reading : options of `read_log`
 
     Yields
@@ -135,7 +149,7 @@ def process_wells(
         raise ArgumentError("processes", processes, "one or more")
     kept = ManyWells() if kept is None else kept
     target = Path(folder)
-    jobs = [(str(source), step_m, flow, trends, reading or {}) for source in sources]
+    jobs = [(str(source), step_m, flow, trends, packages, reading or {}) for source in sources]
     with HandoverWriter(target) as writer:
         for number, (job, answer) in enumerate(_answers(jobs, processes), start=1):
             if isinstance(answer, str):
@@ -174,18 +188,17 @@ def _answers(
 
 
 def _one(
-    source: str, step_m: float | None, flow: bool, trends: bool, reading: dict[str, Any]
+    source: str, step_m: float | None, flow: bool, trends: bool, packages: bool, reading: dict[str, Any]
 ) -> list[_Digest] | str:
     """Everything about the logs of one source, or what went wrong with it."""
     from logkit.flow import infer_flow
     from logkit.tables import read_logs
-    from logkit.trends import find_trends
 
     try:
         digests = []
         for log in read_logs(source, **reading):
             history = infer_flow(log) if flow else None
-            found = find_trends(log) if trends else None
+            found = _trends(log, packages) if trends else None
             placed, _ = place_logs([log], "base", "true", [find_companions(log)])
             tables = {
                 "wells": measures.wells_table(placed),
@@ -194,6 +207,7 @@ def _one(
                 "facies": measures.facies_table(placed),
                 "flow": measures.flow_table(placed, [history]),
                 "grading": measures.grading_table(placed, [found]),
+                "packages": measures.packages_table(placed, [found]),
             }
             values = {k: v.astype(np.float32) for k, v in gather(placed[0], history).items()}
             rows = {name: table for name, table in tables.items() if len(table)}
@@ -203,6 +217,16 @@ def _one(
         return str(problem)
     except Exception as problem:  # a fault of ours in one well must not cost the others
         return f"Unexpected {type(problem).__name__}: {problem}. This is a fault of logkit; please report it."
+
+
+def _trends(log: Log, packages: bool) -> Any:
+    """All trends, or only those of single beds."""
+    from logkit.trends import find_trends, grade_bed
+    from logkit.trends.currents import find_currents
+
+    if packages:
+        return find_trends(log)
+    return _BedTrends(tuple(grade_bed(bed) for bed in log.beds), find_currents(log))
 
 
 def _free(name: str, taken: dict[str, Any]) -> str:

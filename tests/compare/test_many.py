@@ -64,3 +64,15 @@ def test_nothing_to_do_is_an_error(tmp_path: Path) -> None:
         list(process_wells([], tmp_path))
     with pytest.raises(ArgumentError, match="processes is 0"):
         list(process_wells(["a.csv"], tmp_path, processes=0))
+
+
+def test_packages_are_looked_for_on_wish(folder: Path) -> None:
+    """Grading is always there; packages only when asked for."""
+    section(5, 60, "cycles", "P").write(folder / "p.csv")
+    kept = ManyWells()
+    list(process_wells([folder / "p.csv"], folder / "with", kept, packages=True))
+    assert len(kept.tables()["packages"]) > 0
+    kept = ManyWells()
+    list(process_wells([folder / "p.csv"], folder / "without", kept))
+    assert "packages" not in kept.tables()
+    assert kept.tables()["grading"]["count"].sum() == 60
