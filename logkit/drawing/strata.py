@@ -212,6 +212,9 @@ class Domes:
 
 def runs(points: Array, keep: np.ndarray) -> Iterator[Array]:
     """The unbroken stretches of a polyline where `keep` is True, at least two points long."""
+    if keep.all():
+        yield points
+        return
     edges = np.flatnonzero(np.diff(np.concatenate([[False], keep, [False]]).astype(np.int8)))
     for first, last in zip(edges[::2], edges[1::2], strict=True):
         if last - first > 1:

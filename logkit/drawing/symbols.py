@@ -24,6 +24,7 @@ _MUD_BEDS = (
     "mud_cracks", "rain_prints", "roots", "palaeosol", "lenticular_bedding", "fine_lamination", "varves", "tubes",
 )  # fmt: skip
 _CARBONATE_BEDS = ("stylolites", "fenestrae", "vugs", "stromatolites", "microbial_lamination")
+_VOLCANIC_BEDS = ("pumice_clasts", "accretionary_lapilli")
 _FLOW_STATES = ("ripple", "dune", "upper_plane", "gravel", "antidune", "lower_plane", "wave_ripple", "other")
 _FAMILY_WORDS = {
     "quartz": "quartz sand",
@@ -285,8 +286,8 @@ def _small_symbols(style: Style, k: float) -> _Canvas:
 
 
 def _in_beds() -> list[Motif]:
-    """Motifs that are shown in a bed: all but fossils and boundaries."""
-    apart = ("trace fossils", "body fossils", "plants and microbes", "boundaries")
+    """Motifs that are shown in a bed: all but fossils, boundaries and the mark of other terms."""
+    apart = ("trace fossils", "body fossils", "plants and microbes", "boundaries", "other")
     return [motif for motif in all_motifs().values() if motif.group not in apart]
 
 
@@ -304,4 +305,8 @@ def _bed_of(motif: Motif) -> tuple[str, float]:
         return "mud", 6.5
     if motif.term in _CARBONATE_BEDS:
         return "carbonate", 6.0
-    return {"evaporite": ("evaporite", 3.0), "volcanic": ("volcanic", 2.0)}.get(motif.group, ("quartz", 2.2))
+    if motif.term in _VOLCANIC_BEDS:
+        return "volcanic", 2.0
+    if motif.group == "evaporite and volcanic":
+        return "evaporite", 3.0
+    return "quartz", 2.2
