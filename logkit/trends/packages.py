@@ -75,7 +75,8 @@ def find_packages(
 
     Parameters
     ----------
-    series : quantity, its runs and its test against random order
+    series : quantity, its runs and its test against random order; where the beds of a quantity are in random
+        order, its trends are tested in the packages of the one before as well
     level : share of logs in random order that may get a significant package
     minimum : fewest beds of a package
 
@@ -97,22 +98,19 @@ def find_packages(
     gate = level / 2 / max(len(series), 1)
     candidates: list[tuple[Quantity, _Candidate]] = []
     boundaries: list[Boundary] = []
+    cut_before: list[_Candidate] = []
     for quantity, runs, test in series:
         ordered = test.p_packages is not None and test.p_packages <= gate
-        longest = sum(run.values.size for run in runs)
-        noise = _noise(runs, minimum) if ordered else 0.0
-        for run in runs:
-            if run.values.size < minimum:
-                continue
-            found = _run_pieces(run, noise, longest, minimum, level / 2) if ordered else None
-            if found is None:
-                found = [(Piece(0, run.values.size, False, 0.0), 0)]
-            else:
-                finest = [piece for piece, _ in found if not _holds_others(piece, found)]
-                boundaries += _boundaries(quantity, run, finest, noise, longest, minimum)
-            for piece, depth in found:
-                test_of = trend_test(run.values[piece.start : piece.stop])
-                candidates.append((quantity, _Candidate(run, piece, depth, test_of)))
+        own, between = _cut_all(quantity, runs, minimum, level / 2) if ordered else ([], [])
+        whole = [
+            _candidate(run, Piece(0, run.values.size, False, 0.0), 0)
+            for run in runs
+            if run.values.size >= minimum and not any(c.run is run for c in own)
+        ]
+        shared = [] if own else [c for run in runs for c in _shared(run, cut_before, minimum)]
+        candidates += [(quantity, candidate) for candidate in (*own, *whole, *shared)]
+        boundaries += between
+        cut_before = own
     adjusted = adjusted_p([c.test.p for _, c in candidates])
     packages = [
         _package(quantity, c, min(2 * float(p), 1.0), level)
@@ -120,6 +118,42 @@ def find_packages(
     ]
     packages.sort(key=lambda p: (p.quantity, p.base_m, p.level))
     return tuple(packages), tuple(boundaries)
+
+
+def _candidate(run: Run, piece: Piece, level: int) -> _Candidate:
+    return _Candidate(run, piece, level, trend_test(run.values[piece.start : piece.stop]))
+
+
+def _cut_all(
+    quantity: Quantity, runs: Sequence[Run], minimum: int, level: float
+) -> tuple[list[_Candidate], list[Boundary]]:
+    """Packages of the runs that fall into pieces, and the boundaries between them."""
+    candidates: list[_Candidate] = []
+    boundaries: list[Boundary] = []
+    beds = sum(run.values.size for run in runs)
+    noise = _noise(runs, minimum)
+    for run in runs:
+        found = _run_pieces(run, noise, beds, minimum, level) if run.values.size >= minimum else None
+        if found is None:
+            continue
+        candidates += [_candidate(run, piece, depth) for piece, depth in found]
+        finest = [piece for piece, _ in found if not _holds_others(piece, found)]
+        boundaries += _boundaries(quantity, run, finest, noise, beds, minimum)
+    return candidates, boundaries
+
+
+def _shared(run: Run, packages: Sequence[_Candidate], minimum: int) -> list[_Candidate]:
+    """The packages of the quantity before, for a run that is not cut by its own: nested in the run."""
+    bases = np.array([bed.base_m for bed in run.beds])
+    found: list[tuple[Piece, int]] = []
+    for package in packages:
+        beds = package.run.beds[package.piece.start : package.piece.stop]
+        start = int(np.searchsorted(bases, beds[0].base_m - 1e-9))
+        stop = int(np.searchsorted(bases, beds[-1].top_m - 1e-9))
+        if minimum <= stop - start < run.values.size:
+            found.append((Piece(start, stop, False, 0.0), package.level))
+    outermost = min((level for _, level in found), default=0)
+    return [_candidate(run, piece, level - outermost + 1) for piece, level in found]
 
 
 def _package(quantity: Quantity, candidate: _Candidate, p_adjusted: float, level: float) -> Package:

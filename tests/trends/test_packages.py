@@ -79,6 +79,19 @@ def test_a_log_that_thickens_upward_says_so() -> None:
     assert words == {"thickening-up"}
 
 
+def test_thickness_is_tested_in_the_packages_of_grain_size() -> None:
+    """Where thickness has no packages of its own, each grain-size package is tested for thickening as well."""
+    generator = np.random.default_rng(2)
+    phi, _ = cycles(generator, 0.3)
+    packages, _ = packages_of(section(phi, thicknesses(generator, phi.size)))
+    of = {
+        q: {(p.first_bed, p.last_bed) for p in packages if p.quantity == q}
+        for q in ("grain size", "thickness")
+    }
+    assert len(of["grain size"]) >= 5
+    assert of["thickness"] == of["grain size"] | {("0", str(phi.size - 1))}
+
+
 def test_gaps_end_packages() -> None:
     """No package spans a gap, and the beds of each run make packages of their own."""
     phi, _ = cycles(np.random.default_rng(9), 0.2)
