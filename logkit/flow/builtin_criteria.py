@@ -27,6 +27,7 @@ from logkit.flow.grid import Array, Grid
 from logkit.flow.phases import speaks, structure_term
 from logkit.flow.settings import flow_settings
 from logkit.flow.states import MOVING, skin_shear_velocity
+from logkit.hydraulics.settling import ferguson_church
 from logkit.hydraulics.threshold import GRAVEL_SHIFT_LOG10
 from logkit.model import Phase
 from logkit.registry import GRAVITY_M_S2
@@ -41,6 +42,12 @@ STATE_WORDS = {
 
 HIDING_EXPONENT = 0.8
 """Middle of the published power laws for mixed gravel, 0.6 to 0.98."""
+
+NEVER_SUSPENDED_MM = 1.0
+"""Coarser grains are not held up by turbulence alone (Lowe 1982)."""
+
+SUSPENSION_SIGMA = 0.20
+"""Spread of the criteria of suspension, log10."""
 
 GRAVEL_MM = 2.0
 MATRIX_OF_CLAST = 4.0
@@ -132,6 +139,22 @@ def _slope_likelihood(reading: tuple[float, float], cells: Cells) -> Array:
     return result
 
 
+def _suspension_ceiling(phase: Phase, context: Context) -> Hashable | None:
+    """Coarse grains in a bed of a current were not carried in full suspension."""
+    if phase.size is None or phase.size.middle_mm < NEVER_SUSPENDED_MM:
+        return None
+    return "not suspended"
+
+
+def _ceiling_likelihood(_: str, cells: Cells) -> Array:
+    """Soft edge of the skin shear velocity at the settling velocity; the criteria span 0.4 to 1.0."""
+    shear = skin_shear_velocity(cells.velocity_m_s, cells.flow_depth_m, cells.d_m)
+    settling = ferguson_church(cells.d_m, cells.fluid.submerged_gravity, cells.fluid.nu_m2_s)
+    passed = 1.702 * np.log10(shear / settling) / SUSPENSION_SIGMA
+    result: Array = -np.logaddexp(0.0, passed)
+    return result
+
+
 def _mud_chips(phase: Phase, context: Context) -> Hashable | None:
     return "torn up" if "mud_chips" in {s.term for s in context.bed.structures} and phase.index == 0 else None
 
@@ -196,20 +219,29 @@ def _register(
     CRITERIA.register(
         id,
         Criterion(id, text.label, kind, side, reads, words, text.source, text.validity, text.status,
-                  log_likelihood),
+                  log_likelihood,
+            text.formulas),
     )  # fmt: skip
 
 
-_register("stated_depth", "depth", "band", _stated_depth, _depth_words("stated"))
+_register("stated_depth", "depth", "band", _stated_depth, _depth_words("depth as stated"))
 _register("bed_state", "state", "band", _state, _state_words)
-_register("motion", "state", "above", _motion, lambda _: "the flow moved the bed sand")
+_register("motion", "state", "above", _motion, lambda _: "the flow moved the grains of the bed")
 _register(
     "stated_slope", "cells", "band", _stated_slope,
     lambda reading: f"slope {reading[0]:.2g} with the resistance of sand rivers", _slope_likelihood,
 )  # fmt: skip
-_register("dune_sets", "depth", "band", _dune_sets, _depth_words("from the sets"))
-_register("accretion_sets", "depth", "band", _accretion_sets, _depth_words("from the accretion sets"))
-_register("bar_front", "depth", "above", _bar_front, _depth_words("above the bar front"))
+_register("dune_sets", "depth", "band", _dune_sets, _depth_words("depth from the sets"))
+_register("accretion_sets", "depth", "band", _accretion_sets, _depth_words("depth from the accretion sets"))
+_register("bar_front", "depth", "above", _bar_front, _depth_words("depth above the bar front"))
+_register(
+    "suspension_ceiling",
+    "cells",
+    "below",
+    _suspension_ceiling,
+    lambda _: "the flow did not hold the grains in full suspension",
+    _ceiling_likelihood,
+)
 _register(
     "mud_chips", "cells", "above", _mud_chips, lambda _: "the flow tore up mud", _mud_chips_likelihood
 )  # fmt: skip

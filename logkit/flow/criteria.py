@@ -116,6 +116,25 @@ class Criterion:
     words : function of the reading that says in words what it means
     source, validity, status : as the ledger prints them
     log_likelihood : for the kind "cells" only
+    formulas : ids of the registered formulas it rests on
+
+    Examples
+    --------
+    A criterion of one's own: flutes are cut by fast currents (the number is invented).
+
+    >>> import numpy as np
+    >>> flutes = Criterion(
+    ...     id="flutes", label="flutes were cut", kind="cells", side="above", source="ours",
+    ...     validity="soles of sandstones", words=lambda reading: "the flow cut flutes",
+    ...     reads=lambda phase, context: "cut" if any(
+    ...         s.term == "flutes" for s in context.bed.structures) else None,
+    ...     log_likelihood=lambda reading, cells: -np.logaddexp(
+    ...         0.0, -1.702 * np.log10(cells.velocity_m_s / 1.0) / 0.2),
+    ... )
+    >>> flutes.side
+    'above'
+
+    `CRITERIA.register("flutes", flutes)` makes it take part in every later `infer_flow`.
     """
 
     id: str
@@ -128,6 +147,7 @@ class Criterion:
     validity: str
     status: str = "ours"
     log_likelihood: Callable[[Any, Cells], Array] | None = None
+    formulas: tuple[str, ...] = ()
 
     def __post_init__(self) -> None:
         if self.kind not in ("state", "clast", "depth", "cells"):
@@ -144,12 +164,13 @@ CRITERIA: Registry[Criterion] = Registry("criterion", ("logkit.flow.builtin_crit
 
 @dataclass(frozen=True, slots=True)
 class CriterionText:
-    """What the ledger prints of a criterion: label, source, validity, status."""
+    """What criteria.toml says of a criterion: label, source, validity, status, ids of its formulas."""
 
     label: str
     source: str
     validity: str
     status: str
+    formulas: tuple[str, ...]
 
 
 @cache
@@ -164,7 +185,7 @@ def criterion_texts() -> dict[str, CriterionText]:
     texts = {}
     for id, entry in file.data.get("criteria", {}).items():
         try:
-            texts[id] = CriterionText(**entry)
+            texts[id] = CriterionText(**entry | {"formulas": tuple(entry.get("formulas", ()))})
         except TypeError as problem:
             raise file.fail(f"{id}: {problem}.", f"criteria.{id}") from None
     return texts

@@ -10,6 +10,7 @@ from typing import TYPE_CHECKING, Any
 from logkit.errors import ArgumentError
 from logkit.flow import words
 from logkit.flow.conflict import CONFLICT_FROM
+from logkit.flow.criteria import CRITERIA, criterion_texts
 from logkit.flow.ledger import LedgerRow, ledger_frame, ledger_rows
 from logkit.flow.reading import Reading
 from logkit.flow.solver import Solver
@@ -18,6 +19,9 @@ from logkit.model import Log, PhaseEstimate
 
 if TYPE_CHECKING:
     import pandas as pd
+
+_GRID_FORMULAS = ("grain.dstar", "water.density", "resistance.grain_chezy", "bedforms.froude")
+"""Formulas behind the coordinates of every estimate on the grid."""
 
 QUANTITIES = {
     "velocity": "_m_s", "flow_depth": "_m", "shear_velocity": "_m_s", "total_shear_velocity": "_m_s",
@@ -116,6 +120,19 @@ class FlowHistory:
             if p.bed_index == self.estimates[places[0]].phase.bed_index and len(places) > 2
         ]  # fmt: skip
         return tuple(lines)
+
+    @property
+    def formulas(self) -> tuple[str, ...]:
+        """Ids of the registered formulas behind the estimates, in order of the alphabet."""
+        used: set[str] = set()
+        for reading in self.readings.values():
+            used.update(_GRID_FORMULAS)
+            for id, _ in (*reading.case.signature.factors, *reading.case.depths):
+                used.update(CRITERIA[id].formulas)
+        for rows in self.rows.values():
+            for row in rows:
+                used.update(criterion_texts()[row.criterion].formulas)
+        return tuple(sorted(used))
 
     def summary(self) -> dict[str, int]:
         """Numbers of phases: in all, ranges, bounds on one side, conflicts, no estimate; and of tendencies."""

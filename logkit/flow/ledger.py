@@ -15,6 +15,7 @@ import numpy as np
 from logkit.flow.criteria import CRITERIA, criterion_texts
 from logkit.flow.grid import Array, quantiles
 from logkit.flow.settings import flow_settings
+from logkit.flow.slices import Signature
 from logkit.flow.solver import LEDGER_LEVELS, Case, Solver
 
 if TYPE_CHECKING:
@@ -110,9 +111,10 @@ def _prior_row(
     text = criterion_texts()["setting"]
     alone = Case(replace(case.signature, factors=()))
     without = Case(replace(case.signature, prior="off"), case.depths)
-    return LedgerRow(section, bed, phase, "setting", text.label, prior.words, "band",
+    fitted = prior.source == "calibration"
+    return LedgerRow(section, bed, phase, "setting", text.label, f"believed beforehand: {prior.words}", "band",
                      *_alone(solver, alone, "band"), **_effect(solver, everything, without),
-                     source=text.source, validity=text.validity, status=text.status)  # fmt: skip
+                     source=text.source if fitted else "ours", validity=text.validity, status=text.status)  # fmt: skip
 
 
 def lower_limit(solver: Solver, case: Case) -> float:
@@ -126,14 +128,31 @@ def lower_limit(solver: Solver, case: Case) -> float:
     -------
     m/s
     """
-    free = replace(case.signature, prior="off")
-    likelihood = solver.plane(free)
-    depth = solver.slices.believed_depth(case.signature.prior)
-    depth = depth * solver.depth_weights(solver.compile([case]))[:, 0]
-    passed = np.maximum.accumulate(likelihood @ (depth / depth.sum()))
+    rising = [id for id, _ in case.signature.factors if CRITERIA[id].side != "below"]
+    passed = np.maximum.accumulate(_by_velocity(solver, case, case.signature.only(*rising)))
     passed = passed / passed[-1]
     axis = solver.grid.velocity
     return float(np.exp(np.interp(LEDGER_LEVELS[0], passed, axis.ln_nodes)))
+
+
+def upper_limit(solver: Solver, case: Case) -> float:
+    """Velocity that the flow did not exceed, with nine chances in ten, from edges that slower flows pass.
+
+    Returns
+    -------
+    m/s
+    """
+    kept = np.minimum.accumulate(_by_velocity(solver, case, case.signature))
+    axis = solver.grid.velocity
+    return float(np.exp(np.interp(1 - LEDGER_LEVELS[0], 1 - kept / kept[0], axis.ln_nodes)))
+
+
+def _by_velocity(solver: Solver, case: Case, signature: Signature) -> Array:
+    """Likelihood of each velocity, averaged over the depths that the prior and the evidence allow."""
+    depth = solver.slices.believed_depth(signature.prior)
+    depth = depth * solver.depth_weights(solver.compile([case]))[:, 0]
+    result: Array = solver.plane(signature.unbiased()) @ (depth / depth.sum())
+    return result
 
 
 def _posterior(solver: Solver, case: Case) -> Array:
@@ -153,6 +172,8 @@ def velocity_alone(solver: Solver, case: Case) -> tuple[float, float, float]:
 def _alone(solver: Solver, case: Case, side: str) -> tuple[float | None, float | None, float | None]:
     if side == "above":
         return lower_limit(solver, case), None, None
+    if side == "below":
+        return None, None, upper_limit(solver, case)
     return velocity_alone(solver, case)
 
 

@@ -54,7 +54,7 @@ def read_density_current(phase: Phase, context: Context, code: str, read_tb: boo
     code : Bouma letter of its structure ("Ta"), "" when written in words
     read_tb : read Tb as dilute upper plane bed, by the user's choice
     """
-    division = code or _division(phase.structure)
+    division = bouma_division(phase.structure, code)
     size = phase.base_size or phase.size
     if division in ("Td", "Te"):
         return no_estimate(
@@ -83,8 +83,10 @@ def read_density_current(phase: Phase, context: Context, code: str, read_tb: boo
     return _density_above(phase, context, size, "turbidite_motion", "the flow moved the sand along the bed")
 
 
-def _division(structure: str) -> str:
-    """Bouma division that a structure in words stands for; "" for traction of another kind."""
+def bouma_division(structure: str, code: str = "") -> str:
+    """Bouma division of a structure, from its letter or its words; "" for traction of another kind."""
+    if code:
+        return code
     term = structure_term(structure)
     if term is None:
         return ""

@@ -19,6 +19,7 @@ from logkit.flow.slices import Signature, size_steps
 from logkit.flow.solver import Case
 from logkit.flow.states import Fluid
 from logkit.hydraulics.inputs import QUARTZ_KG_M3
+from logkit.hydraulics.rest import fallout_velocity
 from logkit.model import Bed, Header, Log, Phase, SizeInterval
 from logkit.vocabulary.terms import vocabulary
 
@@ -191,7 +192,7 @@ class Reader:
             outside = phase.largest_mm is not None
             return no_estimate(phase, "outside validity" if outside else "no grain size")
         if size is not None and size.middle_mm < SAND_MM and "bed_state" not in ids:
-            return no_estimate(phase, "mud", *_mud_notes(context))
+            return no_estimate(phase, "mud", *_mud_notes(size, context))
         if size is None:
             clast = next(r.phi for _, r in factors if isinstance(r, ClastReading))
             size = SizeInterval(2.0 ** -(clast + 0.25), 2.0 ** -(clast - 0.25))
@@ -250,8 +251,15 @@ def _refusal(phase: Phase, bed: Bed) -> Answered | None:
     return None
 
 
-def _mud_notes(context: Context) -> tuple[str, ...]:
-    return ("Mud settles from nearly still water; flocs make a velocity from single grains too low.",)
+def _mud_notes(size: SizeInterval, context: Context) -> tuple[str, ...]:
+    """Where single grains would rain out of a metre of water; flocs fall sooner."""
+    d = 1e-3 * size.high_mm
+    fluid = context.fluid
+    fallout = fallout_velocity(d, 1.5 * d, 1.0, fluid.submerged_gravity, fluid.nu_m2_s)
+    return (
+        f"Its grains settle one by one from flows slower than about {float(fallout):.1g} m/s (1 m deep); "
+        "flocs settle sooner, so no velocity is read from mud.",
+    )
 
 
 def _notes(

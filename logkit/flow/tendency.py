@@ -15,6 +15,7 @@ from dataclasses import dataclass, replace
 import numpy as np
 
 from logkit.flow.grid import Array
+from logkit.flow.other_settings import bouma_division
 from logkit.flow.reading import Reading
 from logkit.flow.settings import flow_settings
 from logkit.flow.solver import Case, Solver
@@ -286,6 +287,11 @@ def _transition(
         chance = 0.5 - math.copysign(weight, change)
         base = 0.5 if waxing is None else min(max(waxing, 1e-6), 1 - 1e-6)
         waxing = base * chance / (base * chance + (1 - base) * (1 - chance))
+    steps = _divisions(below, above, log) if within else 0
+    if steps:
+        chance = 0.5 - math.copysign(numbers["division_weight"], steps)
+        base = 0.5 if waxing is None else min(max(waxing, 1e-6), 1 - 1e-6)
+        waxing = base * chance / (base * chance + (1 - base) * (1 - chance))
     tendency: Tendency = "not determinable"
     probability = None if waxing is None else max(waxing, 1 - waxing)
     if waxing is not None and steady is not None and steady >= numbers["steady_from"]:
@@ -296,8 +302,24 @@ def _transition(
         tendency = "waning"
     grading = "" if change is None or abs(change) < GRADED_PHI else ("fining" if change > 0 else "coarsening")
     agreement = _agreement(grading, structure if on_grid else None, within, thin, measured_by_size)
+    if steps:
+        order = "rising" if steps > 0 else "falling back"
+        agreement = "; ".join(filter(None, (f"Bouma divisions {order} in the bed", agreement)))
     return Transition(first.section, first.bed, first.index, second.bed, second.index, within, tendency,
                       probability, waxing, grading, agreement)  # fmt: skip
+
+
+def _divisions(below: PhaseEstimate, above: PhaseEstimate, log: Log) -> int:
+    """Steps between the Bouma divisions of two phases; 0 where they have none. Rising means falling stress."""
+    if below.phase.setting != "turbidity" or above.phase.setting != "turbidity":
+        return 0
+    order = []
+    for phase in (below.phase, above.phase):
+        codes = {s.term: s.code for s in log.beds[phase.bed_index].structures if s.code[:1] == "T"}
+        order.append(
+            " abcde".find(bouma_division(phase.structure, codes.get(phase.structure, ""))[1:] or "-")
+        )
+    return order[1] - order[0] if min(order) > 0 else 0
 
 
 def _size_change(below: PhaseEstimate, above: PhaseEstimate) -> float | None:

@@ -99,7 +99,7 @@ def _answer(estimate: PhaseEstimate) -> str:
 
 def _criterion(row: LedgerRow, estimate: PhaseEstimate) -> str:
     """What one criterion allows and what it is worth."""
-    text = f"{row.label}: {row.says}"
+    text = row.says
     if row.bound == "above" and row.alone_p10_m_s is not None:
         text += f"; alone above {row.alone_p10_m_s:.2g} m/s"
     elif row.bound == "below" and row.alone_p90_m_s is not None:
@@ -112,7 +112,7 @@ def _criterion(row: LedgerRow, estimate: PhaseEstimate) -> str:
         else:
             text += "; hardly narrows the velocity"
     status = "" if row.status == "published" else f", {_STATUS.get(row.status, row.status)}"
-    return f"{text} [{row.source}{status}]"
+    return f"{text} [{row.source}{status}]".replace("[ours, own construction]", "[own construction]")
 
 
 def _is_depth(row: LedgerRow) -> bool:

@@ -92,3 +92,12 @@ def test_every_criterion_cites_known_works() -> None:
     for id, criterion in CRITERIA.items():
         for key in criterion.source.split(", "):
             assert key == "ours" or key in all_references(), f"{id}: {key}"
+
+
+def test_every_criterion_rests_on_registered_formulas() -> None:
+    """Ids in criteria.toml are ids of the formula registry."""
+    from logkit.flow.criteria import criterion_texts
+    from logkit.registry import FORMULAS
+
+    for id, text in criterion_texts().items():
+        assert all(formula in FORMULAS for formula in text.formulas), (id, text.formulas)

@@ -96,7 +96,7 @@ def test_words_explain_the_bed(history: FlowHistory) -> None:
     """The lines name size, structure, range, criteria with sources, and the change within the bed."""
     first = "\n".join(history.explain("1"))
     assert "Bed 1, mL, trough cross-bedding, river: velocity 0.5" in first
-    assert "from the sets: 0.98 to 5.3 m" in first
+    assert "depth from the sets: 0.98 to 5.3 m" in first
     assert "[leclair_bridge_2001, bradley_venditti_2017, cited second hand]" in first
     second = "\n".join(history.explain("2"))
     assert "phase 1 of 2" in second
@@ -132,3 +132,12 @@ def test_user_text_stays_as_it_is() -> None:
     found = infer_flow(log(bed("mL", "cross_bedding", name=name)))
     assert found.to_frame().bed[0] == name
     assert found.explain(name)[0].startswith(f"Bed {name}, mL")
+
+
+def test_the_formulas_behind_a_history_are_registered(history: FlowHistory) -> None:
+    """Every id exists; formulas of criteria that did not speak are not among them."""
+    from logkit.registry import FORMULAS
+
+    assert all(id in FORMULAS for id in history.formulas), history.formulas
+    assert "depth.bradley_venditti" in history.formulas
+    assert "wind.shao_lu" not in history.formulas

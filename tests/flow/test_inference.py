@@ -330,3 +330,13 @@ def test_a_single_measured_size_counts_as_a_size() -> None:
     assert of_class.velocity is not None
     assert found.velocity.p50 == pytest.approx(of_class.velocity.p50, rel=0.03)
     assert size("mL").low_mm < 0.3 < size("mL").high_mm
+
+
+def test_gravel_is_not_held_in_suspension() -> None:
+    """Gravel has an upper bound in the ledger: the skin shear velocity at which it would be suspended."""
+    ledger = infer_flow(log(bed("pbl"))).ledger("1").set_index("criterion")
+    ceiling = ledger.loc["suspension_ceiling"]
+    assert ceiling.bound == "below"
+    assert 2 < ceiling.alone_p90_m_s < 12
+    assert ledger.loc["motion"].alone_p10_m_s < 1.5
+    assert "suspension_ceiling" not in set(infer_flow(log(bed("mL"))).ledger("1").criterion)

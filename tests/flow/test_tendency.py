@@ -111,3 +111,13 @@ def test_one_sided_answers_are_not_compared() -> None:
     transition = infer_flow(log(bed("pbl"), bed("mL")), prior="off").tendency[0]
     assert transition is not None
     assert (transition.tendency, transition.p_waxing) == ("not determinable", None)
+
+
+def test_bouma_divisions_read_upward_mean_a_waning_flow() -> None:
+    """Tb passing up into Tc gives no velocity for Tb, and still a waning flow; the reverse is waxing."""
+    tb, tc = Structure("plane_lamination", code="Tb"), Structure("ripple_cross_lamination", code="Tc")
+    for order, word in (((tb, tc), "waning"), ((tc, tb), "waxing")):
+        history = infer_flow(log(bed("fL", terms=order, structures_upward=True), setting="turbidity"))
+        assert history.tendency[0] is not None
+        assert history.tendency[0].tendency == word
+        assert "Bouma divisions" in history.tendency[0].agreement
