@@ -143,7 +143,12 @@ def build(only: str) -> None:
             source = read(name, file)
             tables(name, stem, source)
             for ending in ("pdf", "html"):
-                logkit.write_report([source.log], HERE / name / "out" / f"{stem}_report.{ending}")
+                logkit.write_report(
+                    [source.log],
+                    HERE / name / "out" / f"{stem}_report.{ending}",
+                    histories=[source.history],
+                    trends=[source.trends],
+                )
             print(f"wrote tables and reports of {stem}")
     if only in ("", "wells"):
         build_wells()
