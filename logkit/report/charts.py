@@ -30,7 +30,7 @@ def _figure(width_mm: float, height_mm: float, **kwargs: Any) -> Iterator[tuple[
     from matplotlib.backends.backend_svg import FigureCanvasSVG
     from matplotlib.figure import Figure
 
-    settings = {
+    settings: dict[Any, Any] = {
         "font.family": "DejaVu Sans", "font.size": 7, "svg.fonttype": "none", "svg.hashsalt": "logkit",
         "axes.linewidth": 0.6, "axes.edgecolor": INK, "xtick.color": INK, "ytick.color": INK,
         "axes.labelcolor": INK, "text.color": INK,
@@ -46,6 +46,8 @@ def _svg(figure: Any, width_mm: float, height_mm: float) -> Picture:
     figure.savefig(buffer, format="svg", metadata={"Date": None, "Creator": "logkit"})
     text = buffer.getvalue()
     text = re.sub(r"<!DOCTYPE[^>]*>\s*", "", text)
+    text = re.sub(r'width="[\d.]+pt"', f'width="{width_mm:g}mm"', text, count=1)
+    text = re.sub(r'height="[\d.]+pt"', f'height="{height_mm:g}mm"', text, count=1)
     return text, width_mm, height_mm
 
 
@@ -98,10 +100,12 @@ def velocity_size_chart(well: Well) -> Picture | None:
     width, height = 150.0, 95.0
     d_mm = np.geomspace(0.002, 100.0, 300)
     erosion = evaluate("threshold.hjulstrom_erosion", d_mm=d_mm, nu_m2_s=1.31e-6, submerged_gravity=R_QUARTZ)
-    deposition = evaluate("rest.hjulstrom_deposition", d_mm=d_mm)
+    deposition = np.where(
+        d_mm >= 0.01, evaluate("rest.hjulstrom_deposition", d_mm=np.maximum(d_mm, 0.01)), np.nan
+    )
     with _figure(width, height) as (figure, axes):
         _edge(axes, d_mm, np.asarray(erosion), 0.24, "erosion")
-        _edge(axes, d_mm[d_mm > 0.01], np.asarray(deposition)[d_mm > 0.01], 0.24, "deposition")
+        _edge(axes, d_mm, deposition, 0.24, "deposition")
         axes.axvspan(0.002, 0.02, color="#f0eadf", lw=0, zorder=0)
         axes.text(0.0063, 0.0013, "cohesive", ha="center", color=SOFT, fontsize=6)
         for e in phases:

@@ -124,10 +124,10 @@ def _add_picture(file: Any, figure: Figure) -> None:
     from docx.oxml import parse_xml
     from docx.shared import Mm
 
-    from logkit.drawing.render import png
+    from logkit.drawing.render import svg_to_png
 
     shrink = min(1.0, TEXT_WIDTH_MM / figure.width_mm, TEXT_HEIGHT_MM / figure.height_mm)
-    pixels = png((figure.svg, figure.width_mm, figure.height_mm), 150.0)
+    pixels = svg_to_png(figure.svg, 150.0)
     picture = file.add_picture(BytesIO(pixels), width=Mm(figure.width_mm * shrink))
     picture._inline.docPr.set("descr", figure.alt)
     part = Part(

@@ -116,8 +116,9 @@ def _phase(estimate: PhaseEstimate, ledger: list[dict[str, str]], units: Units) 
     words.extend(estimate.notes)
     clash = estimate.clash
     columns = list(ledger[0]) if ledger else []
+    structure = label("structures", estimate.phase.structure) or "no structure noted"
     return {
-        "title": f"Phase {estimate.phase.index}: {label('structures', estimate.phase.structure) or 'no structure noted'}",
+        "title": f"Phase {estimate.phase.index}: {structure}",
         "values": values,
         "words": words,
         "conflict": f"Conflict: {clash.first_reading} against {clash.second_reading}." if clash else "",

@@ -82,7 +82,7 @@ def history(well: Well, units: Units) -> Iterator[Block]:
         )
     rows, keys = [], []
     for e in well.history.estimates:
-        change = e.tendency if e.tendency != "not determinable" else ""
+        change: str = e.tendency if e.tendency != "not determinable" else ""
         if change and e.tendency_probability is not None:
             change += f" ({e.tendency_probability:.2f})"
         rows.append(

@@ -16,15 +16,11 @@ from logkit.words import counted, one_line
 def columns(well: Well, settings: ReportSettings, *, dots: bool = True) -> Iterator[Figure]:
     """The column on its sheets, true to scale; without the dots of the texture on request."""
     from logkit.drawing import draw_column
+    from logkit.drawing.style import load_style
 
+    style = load_style(settings.style, None if dots else {"texture": {"dots": False}})
     drawing = draw_column(
-        well.log,
-        well.history,
-        well.trends,
-        style=settings.style,
-        scale=settings.scale,
-        page=settings.page,
-        **({} if dots else {}),
+        well.log, well.history, well.trends, style=style, scale=settings.scale, page=settings.page
     )
     of = len(drawing.sheets)
     for number, sheet in enumerate(drawing.sheets, 1):

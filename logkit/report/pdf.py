@@ -27,18 +27,18 @@ def document_pdf(document: Document, *, paper: str = "a4", archive: bool = False
     """
     import typst
 
-    from logkit.drawing.render import font_folder
+    from logkit.drawing.fonts import font_folder
 
     pictures: dict[str, bytes] = {}
     content = _content(document, paper, pictures)
-    project = {
+    project: Any = {
         "main.typ": files("logkit.report").joinpath("data", TEMPLATE).read_bytes(),
         "document.json": json.dumps(content, ensure_ascii=False).encode(),
         **pictures,
     }
     try:
         compiler = typst.Compiler(project, font_paths=[str(font_folder())], ignore_system_fonts=True)
-        pdf = compiler.compile(format="pdf", pdf_standards=["a-2a"] if archive else [], timestamp=0)
+        pdf: Any = compiler.compile(format="pdf", pdf_standards=["a-2a"] if archive else [], timestamp=0)
     except typst.TypstError as problem:
         hint = problem.hints[0] if problem.hints else ""
         raise LogkitError(f"The report could not be set as pdf: {problem.message}.", hint) from problem

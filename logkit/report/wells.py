@@ -11,7 +11,7 @@ from logkit.model import Bed, Grading, Log, PhaseEstimate
 from logkit.trends import Trends
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)
 class Well:
     """One log with its results.
 
