@@ -9,12 +9,15 @@ import click
 from logkit.cli.console import print_json, print_table, say
 from logkit.cli.options import logs_argument, quiet_option, reading_options, run_logs
 
-SECTIONS = ("grading", "packages", "thickness", "transitions", "currents")
+TABLES = (
+    "grading", "packages", "boundaries", "order", "thickness", "net-to-gross", "distributions", "transitions",
+    "currents", "current-readings", "current-trends",
+)  # fmt: skip
 
 
 @click.command("trends")
 @logs_argument
-@click.option("--only", type=click.Choice(SECTIONS), multiple=True, help="Only this table; may be repeated.")
+@click.option("--only", type=click.Choice(TABLES), multiple=True, help="Only this table; may be repeated.")
 @click.option("--json", "as_json", is_flag=True, help="Everything as JSON.")
 @reading_options
 @quiet_option
@@ -34,7 +37,7 @@ def command(
         return
     for name, trends in results.items():
         for title, frame in trends.tables().items():
-            if only and title not in only:
+            if only and title.replace(" ", "-") not in only:
                 continue
             if len(frame):
                 click.echo(f"\n{name}: {title}")

@@ -43,7 +43,8 @@ class Package:
     """A run of beds with a common trend.
 
     trend : "fining-up", "coarsening-up", "thickening-up", "thinning-up" or "no trend"
-    tau, p, p_adjusted : Kendall's tau of the series against height, p, p after Benjamini-Hochberg
+    tau, p, p_adjusted : Kendall's tau of the series against height, its p, and p after Benjamini-Hochberg,
+        doubled because half the level is spent on the search for the packages
     significant : p_adjusted below the level used
     level : 0 for the outermost packages, 1 for those nested in one, …
     """
@@ -64,7 +65,7 @@ class Package:
 
 @dataclass(frozen=True, slots=True)
 class CurrentSummary:
-    """Directions of one kind of indicator, or of all that may be put together.
+    """Directions of one kind of indicator, or of all of one rank ("all of medium rank").
 
     azimuths_deg : corrected azimuths used; axes 0 <= a < 180 when sense is "axis"
     mean_deg : None when undefined; resultant 0 … 1; rayleigh_p None below 5 readings
