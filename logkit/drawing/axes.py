@@ -6,7 +6,6 @@ Only mappings and their ticks belong here; drawing an axis is the business of `f
 from __future__ import annotations
 
 import math
-from bisect import bisect_right
 from dataclasses import dataclass
 
 from logkit.drawing.metrics import width_mm
@@ -53,8 +52,11 @@ class PositionScale:
 
     def y(self, position_m: float) -> float:
         """Page coordinate of a position, mm; positions outside are held at the edges."""
-        starts = [piece.base_m for piece in self.pieces]
-        piece = self.pieces[max(0, bisect_right(starts, position_m) - 1)]
+        piece = self.pieces[0]
+        for candidate in self.pieces[1:]:
+            if candidate.base_m > position_m:
+                break
+            piece = candidate
         share = (position_m - piece.base_m) / (piece.top_m - piece.base_m)
         share = min(1.0, max(0.0, share))
         return piece.y_base + share * (piece.y_top - piece.y_base)

@@ -135,7 +135,7 @@ class _Marks:
                 b = a + SWATCH_MM / 3
                 swing = down if number % 2 == 0 or up == 0 else -up
                 steps.append(("C", (a + 0.5, level + swing, b - 0.8, level + swing, b, level)))
-            return [Path(tuple(steps), Paint(stroke=self.ink, width=weight, join="round"))]
+            return [Path(tuple(steps), Paint(stroke=self.ink, width=weight))]
 
         return draw
 

@@ -140,8 +140,8 @@ def _sizes(item: MeasuredBed, position: PositionScale) -> tuple[Point, ...]:
     low = max(item.bed.base_m, position.base_m)
     high = min(item.bed.top_m, position.top_m)
     knots = item.knots
-    if len(knots) == 2 and knots[0][1] == knots[1][1]:
-        phi = knots[0][1]
+    phi = knots[0][1]
+    if all(other == phi for _, other in knots):
         return ((position.y(low), phi), (position.y(high), phi))
     inner = [(m, phi) for m, phi in knots if low < m < high]
     points = [(low, item.phi_at(low)), *inner, (high, item.phi_at(high))]

@@ -43,7 +43,7 @@ class Rose:
         colours = style.colours
         centre = (x + RADIUS_MM, y + RADIUS_MM + 4.0)
         shapes: list[Shape] = [Circle(centre, RADIUS_MM, Paint(stroke=colours.ink2, width=0.18))]
-        petals = Paint(fill=colours.rose, stroke=colours.ink, width=0.18, join="round")
+        petals = Paint(fill=colours.rose, stroke=colours.ink, width=0.18)
         shapes.append(Path(tuple(self._sectors(centre)), petals))
         if self.summary.mean_deg is not None:
             angle = math.radians(self.summary.mean_deg)

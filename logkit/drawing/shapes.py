@@ -23,7 +23,7 @@ class Paint:
     width: float = 0.25
     dash: tuple[float, ...] = ()
     cap: Literal["butt", "round"] = "butt"
-    join: Literal["miter", "round"] = "miter"
+    join: Literal["miter", "round"] = "round"
     opacity: float = 1.0
 
 

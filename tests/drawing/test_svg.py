@@ -18,7 +18,7 @@ NAMESPACE = "{http://www.w3.org/2000/svg}"
 def body(*shapes: object) -> str:
     """What stands inside the root group of a sheet."""
     text = sheet_svg(Sheet(10, 10, shapes))  # type: ignore[arg-type]
-    return text.split('<g id="sheet">')[1].rsplit("</g></svg>", 1)[0]
+    return text.split('<g id="sheet" fill="none" stroke-linejoin="round">')[1].rsplit("</g></svg>", 1)[0]
 
 
 def test_path_is_written_as_steps() -> None:
@@ -26,7 +26,7 @@ def test_path_is_written_as_steps() -> None:
     line = Path(
         polyline(((1.0, 2.0), (3.004, 2.0), (3.0, 1.5), (2.0, 1.0)), closed=True), Paint(fill="#ffffff")
     )
-    assert body(line) == '<path d="M100 200h200v-50l-100-50z" fill="#ffffff" />'
+    assert body(line) == '<path d="M100 200h200v-50l-100-50z" fill="#ffffff"/>'
 
 
 def test_curves_and_strokes() -> None:
@@ -36,8 +36,8 @@ def test_curves_and_strokes() -> None:
         Paint(stroke="#000000", width=0.125, dash=(1.2, 0.8), cap="round"),
     )
     assert body(curve) == (
-        '<path d="M0 0c100 0 100 100 200-100" fill="none" stroke="#000000" stroke-width="12.5" '
-        'stroke-dasharray="120 80" stroke-linecap="round" />'
+        '<path d="M0 0c100 0 100 100 200-100" stroke="#000000" stroke-width="12.5" '
+        'stroke-dasharray="120 80" stroke-linecap="round"/>'
     )
 
 
@@ -56,10 +56,10 @@ def test_texts_of_a_group_share_their_style() -> None:
 def test_dots_are_one_path() -> None:
     """Dots are zero-length strokes of one path; no dots write nothing."""
     assert body(Dots(((1, 1), (1.5, 0.5)), 0.3, "#333333")) == (
-        '<path d="m100 100h0m50-50h0" stroke="#333333" stroke-width="30" stroke-linecap="round" fill="none" />'
+        '<path d="m100 100h0m50-50h0" stroke="#333333" stroke-width="30" stroke-linecap="round"/>'
     )
     assert body(Dots((), 0.3, "#333333"), Circle((1, 1), 0.5, Paint(fill="#000000"))) == (
-        '<circle cx="100" cy="100" r="50" fill="#000000" />'
+        '<circle cx="100" cy="100" r="50" fill="#000000"/>'
     )
 
 

@@ -55,8 +55,8 @@ def needle(centre: Point, azimuth_deg: float, sense: str, scene: Scene) -> list[
     half, wide = NEEDLE_MM / 2, 0.62
     head = polyline((at(half, 0), at(0, wide), at(0, -wide)), closed=True)
     tail = polyline((at(-half, 0), at(0, wide), at(0, -wide)), closed=True)
-    hollow = Paint(fill=scene.style.colours.paper, stroke=ink, width=0.14, join="round")
-    filled = Paint(fill=ink, stroke=ink, width=0.14, join="round")
+    hollow = Paint(fill=scene.style.colours.paper, stroke=ink, width=0.14)
+    filled = Paint(fill=ink, stroke=ink, width=0.14)
     return [Path(tail, hollow), Path(head, hollow if sense == "axis" else filled)]
 
 

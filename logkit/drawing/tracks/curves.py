@@ -49,4 +49,4 @@ def draw(scene: Scene, view: View, tally: Tally) -> list[Shape]:
         tally.left_out["further curves"] += len(scene.curves) - 1
     if not steps:
         return []
-    return [Path(tuple(steps), Paint(stroke=style.colours.ink, width=style.lines.set, join="round"))]
+    return [Path(tuple(steps), Paint(stroke=style.colours.ink, width=style.lines.set))]

@@ -85,7 +85,7 @@ def _bed(
         dash = () if item.sized else (0.9, 0.6)
         if not item.sized:
             tally.marks.add("unsized")
-        paint = Paint(stroke=style.colours.ink, width=style.lines.profile, dash=dash, join="round")
+        paint = Paint(stroke=style.colours.ink, width=style.lines.profile, dash=dash)
         children.append(Path(polyline(outline.profile), paint))
     children.extend(_contact(scene, view, item, outline, below, tally))
     return Group(tuple(children), id=item.id, title=bed_words(item), data=_data(scene, item))
@@ -189,7 +189,7 @@ def _base(
     if kind in ("erosive", "undulose", "loaded"):
         tally.marks.add(kind)
         weight = lines.hairline if thin else lines.erosive if kind == "erosive" else lines.contact
-        return [Path(base_path(outline.base), Paint(stroke=ink, width=weight, join="round"))]
+        return [Path(base_path(outline.base), Paint(stroke=ink, width=weight))]
     if kind == "gradational":
         tally.marks.add(kind)
         return []
