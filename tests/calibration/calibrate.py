@@ -34,6 +34,9 @@ RIVER_DELTAS = tuple(np.round(np.arange(0.30, 0.80, 0.01), 2).tolist())
 MISLABELLED = 0.05
 """Share of rivers told as dunes that had none (judgement: the data name no bed states)."""
 
+OTHER_RIVERS = 0.03
+"""Widening for rivers that are not these: the allowance was chosen on the very rivers it covers (judgement)."""
+
 SHARES = (0.005, 0.01, 0.02, 0.03, 0.05, 0.08)
 
 
@@ -100,7 +103,7 @@ def fit_by_score(settings: Settings, name: str, rivers: list[River]) -> tuple[fl
 
 
 def fit_by_coverage(settings: Settings, name: str, rivers: list[River]) -> tuple[float, float]:
-    """Smallest delta that covers four fifths on average, dunes with depth too, and no case under 75 %.
+    """Smallest delta that covers four fifths on average, dunes with depth too, and no case under 75 %; and a little.
 
     The river prior gets its velocities from the same rivers: a score would drive delta up without limit,
     since every river carries the label and the prior alone does nearly as well.
@@ -109,7 +112,7 @@ def fit_by_coverage(settings: Settings, name: str, rivers: list[River]) -> tuple
         solver = Solver(settings=with_prior(settings, name, delta=delta, eps=MISLABELLED))
         found = coverages(solver, rivers, name)
         if np.mean(found) >= 0.80 and found[-1] >= 0.80 and min(found) >= 0.75:
-            return delta, MISLABELLED
+            return round(delta + OTHER_RIVERS, 2), MISLABELLED
     raise SystemExit("No allowance covers the rivers: look at the data before anything else.")
 
 
