@@ -22,6 +22,9 @@ TIE_GAP_MM = 1.4
 """Free paper between a tie and the columns it joins."""
 
 NAME_PITCH_MM = 3.0
+LEAST_FLATNESS = 0.5
+"""Cosine of the steepest line that carries its name."""
+
 SUGGESTION_PITCH_MM = 3.5
 """Least distance between two suggestions that are drawn."""
 
@@ -98,8 +101,11 @@ def ties(plan: PanelPlan, found: Sequence[Tie]) -> tuple[list[Shape], list[str]]
             shapes.extend(_tie_line(plan, a, b, tie))
             name = clean(tie.marker) + ("" if tie.sure else " ?")
             middle = 0.5 * (a[1] + b[1])
-            fits = width_mm(name, size) <= math.dist(a, b) - 3.0
-            if fits and last_y - middle > NAME_PITCH_MM:
+            across, down = b[0] - a[0], abs(b[1] - a[1])
+            reach = (width_mm(name, size) * across + 3.0 * down) / math.hypot(across, down)
+            flat = across / math.hypot(across, down)
+            fits = reach <= across - 2.0 and flat >= LEAST_FLATNESS
+            if fits and (last_y - middle) * flat > NAME_PITCH_MM:
                 shapes.append(_along(plan, a, b, name))
                 last_y = middle
             else:
