@@ -11,11 +11,14 @@ import os
 import stat
 import tempfile
 from pathlib import Path
+from typing import IO
 
 from logkit.errors import LogkitError, nearest
 
 LARGEST_INPUT = 256 * 1024 * 1024
 """Bytes of the largest file that is read; a table of beds is a thousand times smaller."""
+
+_BLOCK = 2**20
 
 _REASONS = {
     errno.ENOSPC: ("the disk is full", "Make room or choose another place."),
@@ -104,15 +107,30 @@ def read_bytes(path: str | Path) -> bytes:
                 f"{path} has {found.st_size // 2**20} MB, too much for a table.", "Is it the right file?"
             )
         with source.open("rb") as file:
-            body = file.read(LARGEST_INPUT + 1)
+            body = read_stream(file)
     except FileNotFoundError:
         raise LogkitError(f"There is no file {path}.", _similar(source)) from None
     except (OSError, ValueError) as problem:
         reason = getattr(problem, "strerror", None) or str(problem)
         raise LogkitError(f"Cannot read {path}: {reason}.", "Check the name and the permissions.") from None
-    if len(body) > LARGEST_INPUT:
-        raise LogkitError(f"{path} never ends or is too large for a table.", "Is it the right file?")
     return body
+
+
+def read_stream(stream: IO[bytes]) -> bytes:
+    """Everything a stream holds, as standard input or a named pipe.
+
+    Raises
+    ------
+    LogkitError : it holds more than any table, or never ends
+    """
+    parts: list[bytes] = []
+    size = 0
+    while part := stream.read(_BLOCK):
+        parts.append(part)
+        size += len(part)
+        if size > LARGEST_INPUT:
+            raise LogkitError("The input never ends or is too large for a table.", "Is it the right file?")
+    return b"".join(parts)
 
 
 def _similar(source: Path) -> str:

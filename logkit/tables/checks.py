@@ -6,12 +6,13 @@ Positions are checked where they are settled, in `positions`.
 
 from __future__ import annotations
 
+import math
 import re
 from collections.abc import Sequence
 from dataclasses import replace
-from itertools import pairwise
+from itertools import combinations, pairwise
 
-from logkit.model import Bed, GrainState, Header, Level
+from logkit.model import Bed, CurrentReading, GrainState, Header, Level
 from logkit.tables.draft import Draft
 from logkit.tables.sheet import Collector
 from logkit.tables.slips import find_slips
@@ -25,6 +26,7 @@ _TREND = re.compile(
 )
 _METRIC = frozenset({"m", "cm", "mm"})
 _IMPERIAL = frozenset({"ft", "in"})
+_OPPOSED_DEG = 120.0
 _REJECTED = 2.0
 """Times its bed's thickness from which a set is refused; below that it is asked about."""
 
@@ -49,6 +51,7 @@ def check_beds(beds: list[Bed], header: Header, codes: str, found: Collector) ->
     _relief(beds, found)
     _sizes(beds, codes, found)
     _currents(beds, header, found)
+    _opposed(beds, header, found)
     return beds
 
 
@@ -340,6 +343,38 @@ def _currents(beds: Sequence[Bed], header: Header, found: Collector) -> None:
         return
     missing = " and no ".join(lacking)
     _at(rows[0], found, "question", "currents.correction",
-        f"{count}, but the header gives no {missing}: are they corrected already?",
+        f"{count} taken as read, since the header gives no {missing}; they may be corrected already",
         "add the header lines; write declination: 0 and bedding: 0/0 when they are corrected", "palaeocurrent",
         choices=("as read, to be corrected" if tilted else "as read", "corrected already"))  # fmt: skip
+
+
+def _opposed(beds: Sequence[Bed], header: Header, found: Collector) -> None:
+    """Directions in one bed that point against each other, where no reversing flow explains it."""
+    if header.setting in ("tidal", "waves", "combined"):
+        return
+    for bed in beds:
+        azimuths = [_flow_azimuth(c) for c in bed.currents if c.sense == "direction"]
+        if len(azimuths) < 2 or any(s.term == "herringbone_cross_bedding" for s in bed.structures):
+            continue
+        apart = max(abs((a - b + 180.0) % 360.0 - 180.0) for a, b in combinations(azimuths, 2))
+        if apart < _OPPOSED_DEG:
+            continue
+        east = sum(math.sin(math.radians(a)) for a in azimuths) / len(azimuths)
+        north = sum(math.cos(math.radians(a)) for a in azimuths) / len(azimuths)
+        length = math.hypot(east, north)
+        mean = f"vector mean {math.degrees(math.atan2(east, north)) % 360.0:.0f}, " if length > 0.05 else ""
+        _at(bed, found, "question", "currents.opposed",
+            f"directions up to {apart:.0f} degrees apart ({mean}R {length:.2f}, N {len(azimuths)}, as read)",
+            "check the reading that points the other way", "palaeocurrent",
+            choices=("as written", "a slip of 180 degrees"))  # fmt: skip
+
+
+def _flow_azimuth(current: CurrentReading) -> float:
+    """Azimuth towards which the water went, before tilt is removed."""
+    indicators = vocabulary("indicators")
+    upstream = current.indicator in indicators and indicators[current.indicator].upstream
+    return (
+        (current.azimuth_deg + 180.0) % 360.0
+        if upstream and current.nature == "plane"
+        else current.azimuth_deg
+    )

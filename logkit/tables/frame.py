@@ -18,7 +18,8 @@ from logkit.tables.checks import mark_minimum
 from logkit.tables.details import COLUMNS_OF, details_text
 from logkit.tables.draft import Draft, Manner
 from logkit.tables.rows import read_row
-from logkit.tables.sheet import Collector, Row, Sheet
+from logkit.tables.sheet import Collector, Row, Sheet, plain_number
+from logkit.tables.text import plain_cell
 from logkit.units import METRES
 
 if TYPE_CHECKING:
@@ -69,12 +70,13 @@ def sheet_from_frame(frame: pd.DataFrame) -> Sheet:
             value = values[i]
             if isinstance(value, datetime.date | datetime.datetime) and value == value:
                 sheet.dates.add((number, place))
-            cells.append(_text(value))
+            cells.append(number_or_text(value))
         sheet.rows.append(Row(number, tuple(cells)))
     return sheet
 
 
-def _text(value: Any) -> str:
+def number_or_text(value: Any) -> str:
+    """A value as the text of a cell; whole numbers without decimals, "" for a missing value."""
     if value is None or value is Ellipsis:
         return ""
     if isinstance(value, str):
@@ -89,7 +91,7 @@ def _text(value: Any) -> str:
     if hasattr(value, "item"):
         value = value.item()
     if isinstance(value, float):
-        return str(int(value)) if value.is_integer() and abs(value) < 1e15 else repr(value)
+        return plain_number(value)
     text = str(value)
     return "" if text in ("NaT", "<NA>") else text
 
@@ -167,17 +169,9 @@ def _depth_cells(bed: Bed, unit: str, cells: dict[str, Any]) -> dict[str, Any]:
 def cell_texts(cells: dict[str, Any]) -> dict[str, str]:
     """Cells as the text they have when the file is read again."""
     return {
-        name: plain_cell(value) if isinstance(value, str) else _text(float(value))
+        name: plain_cell(value) if isinstance(value, str) else number_or_text(float(value))
         for name, value in cells.items()
     }
-
-
-def plain_cell(text: str) -> str:
-    """Text that every kind of file gives back the same: no control characters but line ends, no spaces around."""
-    if text.isprintable():
-        return text.strip()
-    kept = "".join(c if c.isprintable() or c == "\n" else " " for c in text)
-    return kept.strip()
 
 
 def _not_read_back(bed: Bed, texts: dict[str, str], log: Log) -> dict[str, Any]:

@@ -67,7 +67,8 @@ _LIMITS = {
     "water_temperature_c": (-2.0, 100.0, "°C"), "salinity": (0.0, 350.0, "practical salinity"),
     "grain_density_kg_m3": (500.0, 8000.0, "kg/m3"), "declination_deg": (-180.0, 180.0, "degrees"),
 }  # fmt: skip
-_PAIR = re.compile(r"^\s*(\d+(?:[.,]\d+)?)\s*°?\s*/\s*(\d+(?:[.,]\d+)?)\s*°?\s*$")
+_PART = r"(\d+(?:[.,]\d+)?(?:[eE][-+]?\d+)?)"
+_PAIR = re.compile(rf"^\s*{_PART}\s*°?\s*/\s*{_PART}\s*°?\s*$")
 _NUMBER = re.compile(r"^\s*([-+]?(?:\d+(?:[.,]\d+)?|[.,]\d+)(?:[eE][-+]?\d+)?)\s*(.*)$", re.S)
 
 

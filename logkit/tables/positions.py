@@ -42,6 +42,7 @@ class Placer:
         self.down = down
         self.found = found
         self.noun = "depth" if down else "height"
+        self.shown = unit if down else "m"
         self.starts: list[Length | None] = []
         self.ends: list[Length | None] = []
 
@@ -70,6 +71,10 @@ class Placer:
         self.found.add(level, code, message, remedy, row=draft.row, column=column, choices=choices,
                        cell=draft.cells.get(column, ""), section=draft.section, bed=draft.name)  # fmt: skip
 
+    def show(self, metres: float, digits: int = 6) -> str:
+        """A position or length as it stands in a message, in the unit of the log."""
+        return f"{metres / METRES[self.shown]:.{digits}g} {self.shown}"
+
     # -- what the cells mean -----------------------------------------------------------------------------------
 
     def _along(self, d: Draft) -> tuple[Length | None, Length | None]:
@@ -95,9 +100,12 @@ class Placer:
                 d,
                 "question",
                 "thickness.varies",
-                f"read as a thickness that varies, mean {mean:.4g} m",
+                f"read as a thickness that varies, mean {self.show(mean, 4)}",
                 "write one thickness, or base and top",
-                choices=(f"thickness {mean:.4g} m", f"from {d.low.metres:.4g} to {d.high.metres:.4g} m"),
+                choices=(
+                    f"thickness {self.show(mean, 4)}",
+                    f"from {self.show(d.low.metres, 4)} to {self.show(d.high.metres, 4)}",
+                ),
             )
             d.thickness = Length(mean, d.low.unit, True, d.low.comma, True)
             d.low = d.high = None
@@ -156,7 +164,7 @@ class Placer:
                 b = a + size if size is not None else (after.metres if after and a < after.metres else None)
                 if b is not None and size is None:
                     self.say(d, "question", "position.end_from_next",
-                             f"no end is written; taken to where the next row begins, {b:.6g} m",
+                             f"no end is written; taken to where the next row begins, {self.show(b)}",
                              "write base and top of each bed", choices=("up to the next row", "unknown"))  # fmt: skip
             if a is None or b is None:
                 self._no_place(d)
@@ -181,8 +189,8 @@ class Placer:
             return
         if b < a:
             self.say(d, "error", "position.swapped",
-                     f"the top lies below the base ({low} {a:.6g} m, {high} {b:.6g} m)",
-                     f"swap them: {low} {b:.6g} m, {high} {a:.6g} m", choices=("base and top swapped",),
+                     f"the top lies below the base ({low} {self.show(a)}, {high} {self.show(b)})",
+                     f"swap them: {low} {self.show(b)}, {high} {self.show(a)}", choices=("base and top swapped",),
                      column="top" if d.cells.get("top") else "")  # fmt: skip
             a, b = b, a
         elif written and size is not None and abs(b - a - size) > max(self._tolerance(d), 0.02 * size):
@@ -190,9 +198,9 @@ class Placer:
                 d,
                 "question",
                 "thickness.sum",
-                f"base and top are {b - a:.4g} m apart, but the thickness is {size:.4g} m",
+                f"base and top are {self.show(b - a, 4)} apart, but the thickness is {self.show(size, 4)}",
                 "correct one of the three; base and top are taken",
-                choices=(f"{b - a:.4g} m from base and top", f"{size:.4g} m as written"),
+                choices=(f"{self.show(b - a, 4)} from base and top", f"{self.show(size, 4)} as written"),
                 column="thickness",
             )
         d.start_m, d.end_m = a, b
@@ -243,12 +251,12 @@ class Placer:
     def _overlap(self, d: Draft, last: Draft, size: float) -> None:
         where = "starts above the base of" if self.down else "starts below the top of"
         self.say(d, "error", "position.overlap",
-                 f"{d.label} {where} {last.label} (row {last.row}): they overlap by {size:.4g} m",
+                 f"{d.label} {where} {last.label} (row {last.row}): they overlap by {self.show(size, 4)}",
                  "correct one of the two", column="top" if self.down and d.cells.get("top") else "")  # fmt: skip
 
     def _hole(self, d: Draft, last: Draft, size: float) -> Draft:
-        self.say(d, "question", "position.hole",
-                 f"no row covers {size:.4g} m between {last.label} and {d.label}; read as a gap",
+        self.say(d if d.row is not None else last, "question", "position.hole",
+                 f"no row covers {self.show(size, 4)} between {last.label} and {d.label}; read as a gap",
                  "add a row for it, or correct the positions", choices=("a gap", "a wrong position"))  # fmt: skip
         return Draft(row=None, section=d.section, gap="not_logged", start_m=last.end_m, end_m=d.start_m)
 
@@ -314,7 +322,7 @@ class Placer:
             return None
         step = end.metres - start.metres
         if step < 0 and self.starts[index] is not None and self.ends[index] is not None:
-            self.say(d, "error", "position.swapped", f"top below base ({start.metres:.6g} m, {end.metres:.6g} m)",
+            self.say(d, "error", "position.swapped", f"top below base ({self.show(start.metres)}, {self.show(end.metres)})",
                      "swap them", choices=("base and top swapped",))  # fmt: skip
             return -step
         return step if step > 0 else None
@@ -331,16 +339,19 @@ class Placer:
                 d,
                 "question",
                 "position.overlap",
-                f"the sum of the thicknesses is {here:.4g} m, so {written:.4g} m overlaps earlier beds",
+                f"the sum of the thicknesses is {self.show(here, 4)}, so {self.show(written, 4)} overlaps earlier beds",
                 "say from which level the heights are counted",
-                choices=(f"placed at {here:.4g} m by the thicknesses", f"at {written:.4g} m as written"),
+                choices=(
+                    f"placed at {self.show(here, 4)} by the thicknesses",
+                    f"at {self.show(written, 4)} as written",
+                ),
             )
             return offset
         self.say(d, "question", "thickness.sum",
-                 f"the written {self.noun} {written:.4g} m is {abs(more):.3g} m {noun} the sum of the thicknesses, "
-                 f"{here + offset:.4g} m",
+                 f"the written {self.noun} {self.show(written, 4)} is {self.show(abs(more), 3)} {noun} "
+                 f"the sum of the thicknesses, {self.show(here + offset, 4)}",
                  "correct a thickness or the height; the thicknesses are taken",
-                 choices=(f"{here:.4g} m by the thicknesses", f"{written:.4g} m as written"),
+                 choices=(f"{self.show(here, 4)} by the thicknesses", f"{self.show(written, 4)} as written"),
                  column=next((c for c in ("base", "top", "position", "from", "to") if d.cells.get(c)), ""))  # fmt: skip
         return away
 

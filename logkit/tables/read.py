@@ -12,7 +12,7 @@ from pathlib import Path
 from typing import TYPE_CHECKING, Any, Literal
 
 from logkit.errors import ArgumentError, LogErrors, LogkitError
-from logkit.files import LARGEST_INPUT, read_bytes
+from logkit.files import read_bytes, read_stream
 from logkit.model import Bed, Finding, Header, Log
 from logkit.tables.build import build_beds, name_rows
 from logkit.tables.checks import check_beds, check_drafts
@@ -197,12 +197,9 @@ def _read_file(path: str | Path, options: Options) -> tuple[list[Log], list[Find
 
 def _standard_input() -> bytes:
     try:
-        body = sys.stdin.buffer.read(LARGEST_INPUT + 1)
+        return read_stream(sys.stdin.buffer)
     except (OSError, ValueError, AttributeError) as problem:
         raise LogkitError(f"Cannot read standard input: {problem}.", "Give the name of a file.") from None
-    if len(body) > LARGEST_INPUT:
-        raise LogkitError("Standard input is too long for a table.", "Give the name of a file.")
-    return body
 
 
 def _sizes_beside(path: str | Path, options: Options, found: Collector) -> SizeRows | None:
@@ -381,10 +378,11 @@ def _one_log(
         )
     header = replace(header, direction=direction, unit=unit)
     down = direction == "down"
+    name_rows(drafts, found)
     placer = Placer(drafts, down, found, unit if unit in METRES else "m")
     placer.place()
     drafts = placer.drafts
-    name_rows(drafts, found)
+    name_rows(drafts, found)  # gaps that fill holes
     check_drafts(drafts, found)
     beds: list[Bed] = build_beds(drafts, down, unit if unit in METRES else "m", found)
     beds = check_beds(beds, header, manner.codes, found)

@@ -16,7 +16,7 @@ from logkit.tables.cells.contact import read_contact_cell
 from logkit.tables.cells.core import read_core_note
 from logkit.tables.cells.currents import read_currents
 from logkit.tables.cells.grain import read_grain, read_largest, read_size, read_sorting
-from logkit.tables.cells.lengths import Length, is_span, read_length, read_span
+from logkit.tables.cells.lengths import Length, is_span, number, read_length, read_span
 from logkit.tables.cells.other import (
     read_bioturbation,
     read_colour,
@@ -132,7 +132,7 @@ class RowReader:
             text = self.cells.get(column)
             if not text:
                 continue
-            if is_span(text):
+            if _is_span(text):
                 self._span(column, text)
             else:
                 setattr(draft, name, self._length(column, text))
@@ -163,7 +163,7 @@ class RowReader:
             draft.pattern = self.take(read_pattern(text, unit, self.manner.scale), "thickness", text)
             draft.unplaced |= draft.pattern is None
             return
-        if is_span(text):
+        if _is_span(text):
             self._span("thickness", text)
             return
         reason, rest = gap_with_length(text)
@@ -439,6 +439,11 @@ class RowReader:
         """Whether the layer was measured or comes from a counted pattern."""
         if text.casefold() in ("no", "n", "false", "0", "counted"):
             self.draft.fields["measured"] = False
+
+
+def _is_span(text: str) -> bool:
+    """True for two numbers joined; a number with an exponent such as 1e-05 is none."""
+    return is_span(text) and number(text)[0] is None
 
 
 def _simple(read: Callable[[str], Reading[Any]], field: str) -> Callable[[RowReader, str, str], None]:

@@ -8,6 +8,7 @@ from itertools import groupby
 from logkit.tables.draft import Draft
 from logkit.tables.headings import Headings, match_heading
 from logkit.tables.sheet import Collector, Row, Sheet
+from logkit.tables.text import plain_cell
 
 
 def rows_to_drafts(sheet: Sheet, headings: Headings, found: Collector) -> list[Draft]:
@@ -77,6 +78,8 @@ def split_sections(
         return [(header_section, drafts)]
     before, carried = header_section, 0
     for d in drafts:
+        if d.section == plain_cell(header_section):
+            d.section = header_section
         if not d.section:
             carried += 1
             d.section = before

@@ -9,6 +9,7 @@ from __future__ import annotations
 from collections import Counter
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, field, replace
+from decimal import Decimal
 
 from logkit.model import Finding, Level
 from logkit.tables.cells.reading import Remark
@@ -155,7 +156,7 @@ def gathered(findings: Sequence[Finding]) -> tuple[Finding, ...]:
             shown = ", ".join(str(row) for row in others[:_SHOWN_ROWS]) + (
                 " …" if len(others) > _SHOWN_ROWS else ""
             )
-            noun = "row" if len(others) == 1 else f"{len(others)} rows"
+            noun = "row" if len(others) == 1 else "rows"
             finding = kept[first[key]]
             kept[first[key]] = replace(finding, message=f"{finding.message}; likewise in {noun} {shown}")
     return tuple(kept)
@@ -175,3 +176,17 @@ def column_letters(index: int) -> str:
         index, rest = divmod(index - 1, 26)
         letters = chr(ord("A") + rest) + letters
     return letters
+
+
+def plain_number(value: float) -> str:
+    """The shortest text that reads back as the same number, without an exponent and without needless decimals.
+
+    Examples
+    --------
+    >>> plain_number(45.0), plain_number(1e-05), plain_number(2.25)
+    ('45', '0.00001', '2.25')
+    """
+    text = repr(float(value))
+    if "e" in text or "E" in text:
+        text = format(Decimal(text), "f")
+    return text.removesuffix(".0")

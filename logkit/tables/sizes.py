@@ -13,6 +13,7 @@ from logkit.model import Bed, Header, SizeReading
 from logkit.tables.cells.lengths import number, read_length
 from logkit.tables.headings import Headings, find_headings
 from logkit.tables.sheet import Collector, Row, Sheet
+from logkit.tables.text import plain_cell
 
 _TOLERANCE_M = 1e-6
 _SMALLEST_MM, _LARGEST_MM = 1e-5, 2e4
@@ -153,10 +154,10 @@ def add_sizes(beds: list[Bed], sizes: SizeRows, header: Header, found: Collector
     own = Collector(file=sizes.file or found.file, sheet=sizes.sheet)
     by_name: dict[str, int] = {}
     for index, bed in enumerate(beds):
-        by_name.setdefault(bed.name, index)
+        by_name.setdefault(plain_cell(bed.name), index)
     placed: dict[int, list[SizeReading]] = {}
     for row in sizes.rows:
-        if row.section and header.section and row.section != header.section:
+        if row.section and header.section and row.section != plain_cell(header.section):
             continue
         owner = _bed_of(row, beds, by_name, header, own)
         if owner is None:
@@ -187,12 +188,13 @@ def _bed_of(
     row: SizeRow, beds: Sequence[Bed], by_name: dict[str, int], header: Header, found: Collector
 ) -> int | None:
     """Index of the bed of a reading: by its name, else by its position."""
+    # names are compared as cells hold them
     if row.position_m is not None:
         height = -row.position_m if header.direction == "down" else row.position_m
         inside = [
             i for i, bed in enumerate(beds)
             if not bed.is_gap and bed.base_m - _TOLERANCE_M <= height <= bed.top_m + _TOLERANCE_M
-            and (not row.bed or bed.name == row.bed)
+            and (not row.bed or plain_cell(bed.name) == row.bed)
         ]  # fmt: skip
         if inside:
             return inside[0]

@@ -35,6 +35,8 @@ def sheet_from_text(body: bytes, file: str, found: Collector, sizes: bool = Fals
     text = decode(body, found)
     sheet = Sheet(file=file)
     if not text.strip():
+        if any(f.code == "file.binary" for f in found.found):
+            return sheet
         found.add("error", "file.empty", "the file is empty", "choose the file that holds the table of beds")
         return sheet
     lines = list(io.StringIO(text, newline=""))
@@ -182,3 +184,11 @@ def escape(text: str) -> str:
 
 FORMULA_SIGNS = "=+-@'"
 """First characters that a spreadsheet, or `unescape`, takes as more than text."""
+
+
+def plain_cell(text: str) -> str:
+    """Text that every kind of file gives back the same: no control characters but line ends, no spaces around."""
+    if text.isprintable():
+        return text.strip()
+    kept = "".join(c if c.isprintable() or c == "\n" else " " for c in text)
+    return kept.strip()

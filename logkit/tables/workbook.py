@@ -13,7 +13,7 @@ from typing import Any
 
 from logkit.errors import LogkitError
 from logkit.tables.headings import match_heading
-from logkit.tables.sheet import Collector, Row, Sheet
+from logkit.tables.sheet import Collector, Row, Sheet, plain_number
 
 HEADER_NAMES = frozenset({"header", "head", "title", "kopf"})
 SIZES_NAMES = frozenset({"sizes", "size readings", "in-bed sizes", "grain sizes in beds"})
@@ -141,7 +141,7 @@ def _text(value: Any) -> tuple[str, bool]:
     if isinstance(value, bool):
         return ("yes" if value else "no"), False
     if isinstance(value, float):
-        return (str(int(value)) if value.is_integer() and abs(value) < 1e15 else repr(value)), False
+        return plain_number(value), False
     if isinstance(value, datetime.datetime):
         return value.isoformat(sep=" ") if value.time() != datetime.time() else value.date().isoformat(), True
     if isinstance(value, datetime.date | datetime.time):

@@ -15,9 +15,10 @@ from logkit.errors import LogkitError, UnknownNameError
 from logkit.files import write_atomic
 from logkit.model import Log
 from logkit.tables.canonical import COLUMNS
-from logkit.tables.frame import columns_used, plain_cell, table_rows
+from logkit.tables.frame import columns_used, number_or_text, table_rows
 from logkit.tables.header import header_lines
-from logkit.tables.text import FORMULA_SIGNS, escape
+from logkit.tables.sheet import plain_number
+from logkit.tables.text import FORMULA_SIGNS, escape, plain_cell
 
 SIZES_HEADINGS = ("section", "bed", "position_m", "d50_mm", "d10_mm", "d90_mm", "d95_mm", "count", "method")
 SEPARATED = {".csv": ",", ".tsv": "\t", ".txt": "\t"}
@@ -82,15 +83,8 @@ def separated(rows: Iterable[Cells], separator: str) -> str:
     buffer = io.StringIO()
     writer = csv.writer(buffer, delimiter=separator, lineterminator="\n")
     for row in rows:
-        writer.writerow([escape(cell) if isinstance(cell, str) else number_text(cell) for cell in row])
+        writer.writerow([escape(cell) if isinstance(cell, str) else number_or_text(cell) for cell in row])
     return buffer.getvalue()
-
-
-def number_text(value: float | int | None) -> str:
-    """The shortest text that reads back as the same number; "" for None."""
-    if value is None:
-        return ""
-    return str(value) if isinstance(value, int) else repr(float(value))
 
 
 def _size_rows(log: Log) -> list[list[Any]]:
@@ -132,7 +126,7 @@ def _fill(sheet: Any, rows: Sequence[Cells]) -> None:
                 continue
             cell = sheet.cell(row=i, column=j)
             if isinstance(value, float) and float(f"{value:.16g}") != value:
-                value = repr(value)  # a workbook keeps 16 digits of a number, one too few for some
+                value = plain_number(value)  # a workbook keeps 16 digits of a number, one too few for some
             if isinstance(value, str):
                 if len(value) > _LONGEST_IN_WORKBOOK:
                     raise LogkitError(
