@@ -62,6 +62,19 @@ def find_clash(solver: Solver, case: Case, conflict: float) -> tuple[Clash, Case
     return clash, kept
 
 
+def conflict_words(clash: Clash) -> str:
+    """A conflict as one sentence; both readings are told."""
+    if clash.second == "grain_size":
+        return (
+            f"{clash.first_reading}, but {clash.second_reading}: check size and structure; "
+            "the range is little more than what is believed of the setting."
+        )
+    return (
+        f"{clash.first_reading}, but {clash.second_reading}: no single flow does both; "
+        "the range is the first one's."
+    )
+
+
 def _unexpected_size(solver: Solver, case: Case, conflict: float) -> Clash:
     """A structure that is not expected in the size: it clashes with the grain size itself."""
     alone = Case(case.signature.only("bed_state"))

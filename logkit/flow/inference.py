@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Sequence
 from dataclasses import replace
 from functools import cache
@@ -9,7 +10,7 @@ from typing import Any
 
 import numpy as np
 
-from logkit.flow.conflict import CONFLICT_FROM, find_clash, strength
+from logkit.flow.conflict import CONFLICT_FROM, conflict_words, find_clash, strength
 from logkit.flow.criteria import CRITERIA
 from logkit.flow.history import FlowHistory
 from logkit.flow.ledger import LedgerRow, lower_limit
@@ -133,8 +134,9 @@ def estimate_phases(solver: Solver, phases: Sequence[Phase], readings: Sequence[
         if _one_sided(reading.case):
             if reading.case not in limits:
                 limits[reading.case] = lower_limit(solver, reading.case)
+            deeper = [d.median_m for _, d in reading.case.depths if math.isinf(d.sd_ln_above)]
             return PhaseEstimate(phase, "estimated", bound="above", limit_velocity_m_s=limits[reading.case],
-                                 **common)  # fmt: skip
+                                 limit_flow_depth_m=max(deeper, default=None), **common)  # fmt: skip
         quantities: dict[str, Any] = {q: Quantiles(*numbers[q][i]) for q in _quantities_of(phase)}
         if answer.rim[i] > RIM_LIMIT:
             common["notes"] = (*reading.notes, "The answer reaches the limits of the grid.")
@@ -185,7 +187,7 @@ def _one_sided(case: Case) -> bool:
 def _in_conflict(solver: Solver, phase: Phase, reading: Reading, common: dict[str, Any]) -> PhaseEstimate:
     """The estimate of a phase whose criteria clash: the earlier criterion's, the other one told beside it."""
     clash, kept = find_clash(solver, reading.case, common["conflict"])
-    notes = (*reading.notes, f"{clash.first_reading}; but {clash.second_reading}: one flow did not do both.")
+    notes = (*reading.notes, conflict_words(clash))
     common = {**common, "notes": notes, "clash": clash}
     if _one_sided(kept):
         return PhaseEstimate(phase, "estimated", bound="above", limit_velocity_m_s=lower_limit(solver, kept),

@@ -150,8 +150,8 @@ class Reader:
             bed=bed,
             setting=setting,
             fluid=self._fluids[setting.name],
-            flow_depth_m=bed.flow_depth_m or options.flow_depth_m or header.flow_depth_m,
-            slope=bed.slope or options.slope or header.slope,
+            flow_depth_m=_stated("flow_depth_m", bed, options.flow_depth_m, header.flow_depth_m),
+            slope=_stated("slope", bed, options.slope, header.slope),
             whole_bed=phases_of_bed == 1,
         )
         refused = _refusal(phase, bed)
@@ -223,6 +223,21 @@ class Reader:
         if sizes is not None and not sizes[0] <= size.middle_mm <= sizes[1]:
             return "broad"
         return name
+
+
+def _stated(
+    name: str, bed: Bed, by_user: tuple[float, float] | None, by_log: tuple[float, float] | None
+) -> tuple[float, float] | None:
+    """A stated range: the bed's own, else the user's, else the log's.
+
+    Raises
+    ------
+    ArgumentError : not above zero or not rising; names the bed or the log
+    """
+    own = getattr(bed, name)
+    if own is not None:
+        return checked_range(f"{name} of bed {bed.name}", own)
+    return by_user if by_user is not None else checked_range(f"{name} of the log", by_log)
 
 
 _GRID_WORDS = f"{2.0**-Grid.fine_phi:.3f} to {2.0**-Grid.coarse_phi:g} mm"

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
-from logkit.flow.conflict import CONFLICT_FROM, TENSION_FROM
+from logkit.flow.conflict import CONFLICT_FROM, TENSION_FROM, conflict_words
 from logkit.flow.criteria import CRITERIA
 from logkit.flow.ledger import LedgerRow
 from logkit.flow.phases import structure_term
@@ -31,13 +31,12 @@ def explain_phase(estimate: PhaseEstimate, rows: Sequence[LedgerRow], phases: in
     for row in sorted(rows, key=lambda r: -(r.gain_bits or 0.0)):
         lines.append("  - " + _criterion(row, estimate))
     if estimate.conflict >= CONFLICT_FROM and estimate.clash is not None:
-        lines.append(
-            f"  ! {estimate.clash.first_reading}, but {estimate.clash.second_reading}. No single flow does both: "
-            f"the range is the first one's."
-        )
+        sentence = conflict_words(estimate.clash)
+        lines.append(f"  ! {sentence[0].upper()}{sentence[1:]}")
     elif estimate.conflict >= TENSION_FROM:
         lines.append("  ! The criteria agree only at the edge of their ranges.")
-    lines += [f"  note: {note}" for note in estimate.notes if "one flow did not do both" not in note]
+    told = conflict_words(estimate.clash) if estimate.clash else ""
+    lines += [f"  note: {note}" for note in estimate.notes if note != told]
     return lines
 
 

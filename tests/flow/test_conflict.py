@@ -67,7 +67,7 @@ def test_both_readings_of_a_conflict_are_told_and_the_range_is_the_first_ones() 
     assert found.clash.first_velocity == plain.velocity
     assert found.clash.second_velocity is None
     assert "above" in found.clash.second_reading
-    assert "one flow did not do both" in found.notes[-1]
+    assert "no single flow does both" in found.notes[-1]
 
 
 def test_a_pebble_that_the_dunes_could_move_is_no_conflict() -> None:

@@ -107,9 +107,9 @@ def test_words_explain_the_bed(history: FlowHistory) -> None:
 def test_words_name_the_pair_that_clashes(history: FlowHistory) -> None:
     """A conflict is told as two readings."""
     lines = "\n".join(history.explain("3"))
-    assert "the bed carried dunes (0.5" in lines
+    assert "The bed carried dunes (0.5" in lines
     assert "but the flow moved a clast of 60 mm (above 1." in lines
-    assert "No single flow does both" in lines
+    assert "no single flow does both" in lines
 
 
 def test_words_say_why_there_is_nothing(history: FlowHistory) -> None:

@@ -340,3 +340,9 @@ def test_gravel_is_not_held_in_suspension() -> None:
     assert 2 < ceiling.alone_p90_m_s < 12
     assert ledger.loc["motion"].alone_p10_m_s < 1.5
     assert "suspension_ceiling" not in set(infer_flow(log(bed("mL"))).ledger("1").criterion)
+
+
+def test_an_impossible_depth_of_a_bed_names_the_bed() -> None:
+    """Logs from memory may hold nonsense: the error says which bed."""
+    with pytest.raises(ArgumentError, match="flow_depth_m of bed 1 is"):
+        infer_flow(log(bed("mL", flow_depth_m=(0.0, 2.0))))
