@@ -55,7 +55,14 @@ class BioturbationCell:
 
 @lru_cache(maxsize=CACHE_SIZE)
 def read_bioturbation_cell(text: str) -> Reading[BioturbationCell]:
-    """The bioturbation cell with the traces written beside the grade."""
+    """The bioturbation cell with the traces written beside the grade.
+
+    A grade without a named scheme is read on that of Taylor and Goldring, 0 to 6, with a note.
+
+    References
+    ----------
+    taylor_goldring_1993
+    """
     plain = clean(text)
     if not plain:
         return Reading(None)
