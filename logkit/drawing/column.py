@@ -26,6 +26,9 @@ from logkit.model import Log
 WIPING = ("velocity", "depth")
 """Tracks whose blanks wipe the guides."""
 
+LEAST_NOTES_MM = 70.0
+"""Height that notes may use where the section is shorter."""
+
 LEAST_TABLE_MM = 25.0
 """A note table is not begun in less room than this."""
 
@@ -161,7 +164,9 @@ class _Column:
         views = []
         for number, part in enumerate(parts, 1):
             view = pages.make_view(scene, part, self.top, self.cut_gaps, number, len(parts))
-            views.append(view)
+            # beside a short section notes may run on below it
+            floor = min(self.top + LEAST_NOTES_MM, self.top + room)
+            views.append(replace(view, floor=floor))
         return views
 
     def _below(self) -> float:
@@ -171,7 +176,7 @@ class _Column:
 
     def _body(self, view: View) -> _Body:
         scene, tally = self.scene, self.tally
-        tally.gradients = []
+        tally.gradients, tally.lowest = [], 0.0
         shapes: list[Shape] = [Group(tuple(frame.guides(scene, view)), id="guides", layer="guides")]
         # blanks in the flow columns wipe the guides, so these come before whatever crosses them
         names = sorted(scene.columns, key=lambda name: name not in WIPING)
@@ -182,9 +187,8 @@ class _Column:
         shapes.append(Group(tuple(frame.axes(scene, view)), id="axes", layer="axes"))
         bar = titles.scale_bar(scene, scene.style.page.margin, view.position.y_base + 4.0, 18.0)
         shapes.append(Group(tuple(bar), id="scale-bar", layer="scale bar"))
-        return _Body(
-            view, tuple(shapes), tuple(tally.gradients), view.position.y_base + frame.LOWER_AXIS_MM + 2.0
-        )
+        end = max(view.position.y_base + frame.LOWER_AXIS_MM, tally.lowest) + 2.0
+        return _Body(view, tuple(shapes), tuple(tally.gradients), end)
 
     def _place(self, bodies: list[_Body], closing: list[str]) -> list[Sheet]:
         """Add legend and note table, on more sheets where the last has no room; then titles and closing lines."""

@@ -143,6 +143,7 @@ class View:
     spans : (y of base, y of top) of each of them as far as it is on this sheet, mm
     number, of : sheet number among the sheets with a column
     outlines : outline of each real bed on the page, by the bed's index
+    floor : lowest y that notes may reach, mm; below the section where that is short
     """
 
     position: PositionScale
@@ -151,6 +152,7 @@ class View:
     number: int = 1
     of: int = 1
     outlines: Mapping[int, Outline] = field(default_factory=dict)
+    floor: float = 0.0
 
     def items(self) -> zip[tuple[MeasuredBed, tuple[float, float]]]:
         """Beds with their (y of base, y of top), upward."""
@@ -180,6 +182,7 @@ class Tally:
     families, structures, fossils, states, marks : what the legend must explain
     moved_notes : notes for the note table, as (bed name, text, strong) in order
     gradients : gradients of the sheet in work
+    lowest : how far the notes of the sheet in work reach down, mm
     """
 
     left_out: Counter[str] = field(default_factory=Counter)
@@ -190,6 +193,7 @@ class Tally:
     marks: set[str] = field(default_factory=set)
     moved_notes: list[tuple[str, str, bool]] = field(default_factory=list)
     gradients: list[Gradient] = field(default_factory=list)
+    lowest: float = 0.0
 
 
 def measure_beds(log: Log, estimates: Mapping[int, tuple[PhaseEstimate, ...]]) -> tuple[MeasuredBed, ...]:

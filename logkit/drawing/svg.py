@@ -68,7 +68,11 @@ def path_data(segments: Iterable[Segment]) -> str:
                     parts.append(f"{lead}{dx}{dy}" if dy < 0 else f"{lead}{dx} {dy}")
                     last = "l"
             elif command == "M":
-                parts.append(f"M{x_end} {y_end}" if not parts else f"m{x_end - x} {y_end - y}")
+                dx, dy = x_end - x, y_end - y
+                if parts:
+                    parts.append(f"m{dx}{dy}" if dy < 0 else f"m{dx} {dy}")
+                else:
+                    parts.append(f"M{x_end}{y_end}" if y_end < 0 else f"M{x_end} {y_end}")
                 x_start, y_start, last = x_end, y_end, "m"
             else:
                 steps = [n - (y if i % 2 else x) for i, n in enumerate(numbers)]
@@ -190,9 +194,9 @@ class _Writer:
             name = f"clip{self._clips}"
             self.definitions.append(f'<clipPath id="{name}"><path d="{path_data(group.clip)}"/></clipPath>')
             opening.append(f' clip-path="url(#{name})"')
-        # what several texts have in common is written once on their group
+        # what texts have in common is written once, on a group that holds nothing but texts
         texts = [child for child in group.children if isinstance(child, Text)]
-        if len(texts) > 1:
+        if len(texts) > 1 and len(texts) == len(group.children):
             own = _look(texts[0])
             opening.append(_changed(own, shared))
             shared = own
@@ -275,9 +279,15 @@ def xml_text(text: str) -> str:
     return _UNFIT.sub("", text)
 
 
+_SPECIAL = re.compile(r"[^ !#-%'-;=?-~]")
+"""Characters that need a closer look in text or in an attribute; most texts have none."""
+
+
 def _escaped(text: str) -> str:
-    return escape(_UNFIT.sub("", text))
+    return escape(_UNFIT.sub("", text)) if _SPECIAL.search(text) else text
 
 
 def _quoted(text: str) -> str:
+    if not _SPECIAL.search(text):
+        return text
     return escape(_UNFIT.sub("", text), {'"': "&quot;", "\n": "&#10;", "\t": "&#9;"})

@@ -9,7 +9,7 @@ from logkit.drawing.scene import Scene, Tally
 from logkit.drawing.shapes import Group, Shape, Text
 
 LEAST_COLUMN_MM = 58.0
-HEAD_MM = 4.0
+HEAD_MM = 5.0
 NAME_MM = 10.0
 
 
@@ -64,7 +64,7 @@ class NoteTable:
         for line in self._lines[:count]:
             if used + line.gap + self._pitch > height + 1e-6:
                 column, used = column + 1, 0.0
-            used += line.gap + self._pitch
+            used += self._pitch + (line.gap if used else 0.0)
             x, base = left + column * self._column_mm, y + HEAD_MM + used - 0.25 * self._pitch
             if line.name:
                 colour = style.colours.conflict if line.strong else ink
@@ -87,5 +87,5 @@ class NoteTable:
                 column, used = column + 1, 0.0
                 if column == self._columns:
                     return number
-            used += line.gap + self._pitch
+            used += self._pitch + (line.gap if used else 0.0)
         return len(self._lines)

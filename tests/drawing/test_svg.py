@@ -42,14 +42,31 @@ def test_curves_and_strokes() -> None:
 
 
 def test_texts_of_a_group_share_their_style() -> None:
-    """What texts have in common is written once; what differs is written on the text; a child group is not fooled."""
+    """What texts have in common is written once on their group; what differs is written on the text."""
     one = Text((1, 1), "a", 6.0, "#111111", bold=True)
     two = Text((2, 2), "b", 6.0, "#222222", bold=True)
-    inner = Group((Text((3, 3), "c", 6.0, "#111111"),))
-    assert body(Group((one, two, inner), id="x")) == (
+    assert body(Group((one, two), id="x")) == (
         '<g id="x" font-size="211.7" fill="#111111" font-weight="bold"><text x="100" y="100">a</text>'
-        '<text x="200" y="200" fill="#222222">b</text>'
-        '<g><text x="300" y="300" font-weight="normal">c</text></g></g>'
+        '<text x="200" y="200" fill="#222222">b</text></g>'
+    )
+
+
+def test_text_colour_never_fills_a_path() -> None:
+    """A group with lines among its texts keeps the colour on the texts: a line would be filled with it."""
+    line = Path(polyline(((0, 0), (1, 0), (1, 1))), Paint(stroke="#000000"))
+    mixed = body(Group((Text((1, 1), "a", 6.0, "#111111"), line, Text((2, 2), "b", 6.0, "#111111"))))
+    assert mixed.startswith("<g><text")
+    assert mixed.count('fill="#111111"') == 2
+
+
+def test_lines_of_one_paint_become_one_path() -> None:
+    """Lines that follow each other in one paint are one path; filled shapes stay apart."""
+    paint = Paint(stroke="#000000", width=0.2)
+    lines = [Path(polyline(((n, 0), (n, 1))), paint) for n in range(2)]
+    filled = [Path(polyline(((n, 0), (n, 1), (5, 5))), Paint(fill="#ffffff")) for n in range(2)]
+    assert body(*lines, *filled) == (
+        '<path d="M0 0v100m100-100v100" stroke="#000000" stroke-width="20"/>'
+        '<path d="M0 0v100l500 400" fill="#ffffff"/><path d="M100 0v100l400 400" fill="#ffffff"/>'
     )
 
 

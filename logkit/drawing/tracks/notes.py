@@ -84,24 +84,26 @@ def draw(scene: Scene, view: View, tally: Tally) -> list[Shape]:
     notes = _collect(scene, view, labelled, name_mm)
     if not notes:
         return []
-    low, high = view.position.y_top - 2.0, view.position.y_base + 2.0
+    low, high = view.position.y_top - 2.0, max(view.position.y_base + 2.0, view.floor)
     line = style.notes.line_height * style.fonts.note * MM_PER_POINT
     kept = _choose(notes, high - low, style.notes.gap)
-    moved = [note for note in notes if note not in kept]
-    if moved:
-        kept = _choose(notes, high - low - 3 * line, style.notes.gap)
-        moved = [note for note in notes if note not in kept]
-        high -= 3 * line
+    if len(kept) < len(notes):
+        high -= 3 * line  # room for the list of what was moved
+        kept = _choose(notes, high - low, style.notes.gap)
+    beside = {note.item.index for note in kept}
+    moved = [note for note in notes if note.item.index not in beside]
     wanted = [(note.span[0] + note.span[1]) / 2 for note in kept]
     centres = spread(wanted, [note.height for note in kept], low, high, style.notes.gap)
     shapes: list[Shape] = []
     leaders: list[Segment] = []
     for note, y in zip(kept, centres or [], strict=True):
+        tally.lowest = max(tally.lowest, y + note.height / 2)
         shapes.extend(_note(scene, note, y, line, name_mm, leaders))
     if leaders:
         shapes.append(Path(tuple(leaders), Paint(stroke=style.colours.ink2, width=style.lines.hairline)))
     if moved:
         shapes.extend(_list_moved(scene, moved, high, line, tally))
+        tally.lowest = max(tally.lowest, high + 3 * line)
     return shapes
 
 
