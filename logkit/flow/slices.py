@@ -23,12 +23,14 @@ from logkit.flow.settings import Prior, Settings
 from logkit.flow.states import Fluid, StateTables, state_tables
 from logkit.registry import GRAVITY_M_S2
 
+K = TypeVar("K", bound=Hashable)
 T = TypeVar("T")
 
 SIZE_STEPS_PER_PHI = 64
 """Size limits are rounded to this part of a phi (1 % of the diameter), so that equal classes share slices."""
 
-CACHED_SLICES = 6000
+LIMITS = {"stacks": 1600, "planes": 5000, "shifts": 200}
+"""Numbers of slices, of planes and of shifts kept in memory: below 400 MB when all are full."""
 
 
 @dataclass(frozen=True)
@@ -92,6 +94,9 @@ class Evidence:
     peak: Array
 
 
+_Sizes = tuple[Fluid, tuple[int, int]]
+
+
 class SliceStore:
     """Builds and keeps the slices of one grid.
 
@@ -112,7 +117,7 @@ class SliceStore:
         self._priors: dict[str, Array] = {}
         self._depths: dict[str, Array] = {}
         self._kernels: dict[float, Array] = {}
-        self._shifts: dict[tuple[Fluid, tuple[int, int]], tuple[ColumnShift, ColumnShift]] = {}
+        self._shifts: OrderedDict[_Sizes, tuple[ColumnShift, ColumnShift]] = OrderedDict()
 
     def velocity(self, signature: Signature) -> Array:
         """Prior times likelihood, shape (velocity, depth)."""
@@ -120,7 +125,7 @@ class SliceStore:
 
     def stack(self, signature: Signature) -> Array:
         """Velocity, skin shear velocity, Froude number and total shear velocity, shape (4 cells, depth)."""
-        return self._kept(self._stacks, signature, self._build_stack)
+        return self._kept(self._stacks, signature, self._build_stack, "stacks")
 
     def evidence(self, signature: Signature) -> Evidence:
         """Sharp likelihoods: no allowance for local velocities and none for structures that say nothing."""
@@ -167,13 +172,11 @@ class SliceStore:
             known = self._alone[signature] = evidence, best, expected
         return known
 
-    def _kept(
-        self, cache: OrderedDict[Signature, T], signature: Signature, build: Callable[[Signature], T]
-    ) -> T:
-        found = cache.get(signature)
+    def _kept(self, cache: OrderedDict[K, T], key: K, build: Callable[[K], T], limit: str = "planes") -> T:
+        found = cache.get(key)
         if found is None:
-            found = cache[signature] = build(signature)
-            if len(cache) > CACHED_SLICES:
+            found = cache[key] = build(key)
+            if len(cache) > LIMITS[limit]:
                 cache.popitem(last=False)
         return found
 
@@ -301,7 +304,8 @@ class SliceStore:
 
     def _build_stack(self, signature: Signature) -> Array:
         plane = self.velocity(signature)
-        skin, total = self._size_shifts(signature.fluid, signature.size)
+        sizes = (signature.fluid, signature.size)
+        skin, total = self._kept(self._shifts, sizes, self._size_shifts, "shifts")
         spread = self._kernel(self.settings.resistance["sd_ln"])
         return np.vstack([plane, skin(plane), self._froude_shift(plane), spread @ total(plane)])
 
@@ -312,23 +316,20 @@ class SliceStore:
         start = grid.velocity.ln_nodes[0] - grid.froude.ln_nodes[0]
         return ColumnShift((start + offset) / grid.velocity.step, grid.velocity.count)
 
-    def _size_shifts(self, fluid: Fluid, size: tuple[int, int]) -> tuple[ColumnShift, ColumnShift]:
+    def _size_shifts(self, sizes: _Sizes) -> tuple[ColumnShift, ColumnShift]:
         """Shifts from velocity to skin and to total shear velocity, mean over the sizes of the class."""
-        key = (fluid, size)
-        if key not in self._shifts:
-            grid = self.grid
-            cells, shares = self.size_cells(size)
-            ln_chezy = shares @ self.tables(fluid).ln_chezy[cells]
-            ln_d = float(shares @ np.log(grid.d_m[cells]))
-            numbers = self.settings.resistance
-            start = grid.velocity.ln_nodes[0] - grid.shear.ln_nodes[0]
-            skin = start + 0.5 * np.log(GRAVITY_M_S2) - ln_chezy
-            total = start - numbers["intercept"] - numbers["slope"] * (grid.depth.ln_nodes - ln_d)
-            self._shifts[key] = (
-                ColumnShift(skin / grid.velocity.step, grid.velocity.count),
-                ColumnShift(total / grid.velocity.step, grid.velocity.count),
-            )
-        return self._shifts[key]
+        grid, (fluid, size) = self.grid, sizes
+        cells, shares = self.size_cells(size)
+        ln_chezy = shares @ self.tables(fluid).ln_chezy[cells]
+        ln_d = float(shares @ np.log(grid.d_m[cells]))
+        numbers = self.settings.resistance
+        start = grid.velocity.ln_nodes[0] - grid.shear.ln_nodes[0]
+        skin = start + 0.5 * np.log(GRAVITY_M_S2) - ln_chezy
+        total = start - numbers["intercept"] - numbers["slope"] * (grid.depth.ln_nodes - ln_d)
+        return (
+            ColumnShift(skin / grid.velocity.step, grid.velocity.count),
+            ColumnShift(total / grid.velocity.step, grid.velocity.count),
+        )
 
     def _build_evidence(self, signature: Signature) -> Evidence:
         likelihood = self._likelihood(signature, sharp=True)

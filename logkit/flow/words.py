@@ -79,7 +79,7 @@ def _answer(estimate: PhaseEstimate) -> str:
     if estimate.status == "no estimate":
         return f"no estimate ({estimate.reason})"
     if estimate.bound == "above" and estimate.limit_velocity_m_s is not None:
-        what = "the wind was" if estimate.phase.setting == "wind" else "the flow was"
+        what = "the wind was" if estimate.transport_mode == "saltation in wind" else "the flow was"
         limit = f"{estimate.limit_velocity_m_s:.2g} m/s"
         return f"{what} faster than {limit} (nine chances in ten); no upper limit is known"
     if estimate.bound == "below" and estimate.limit_velocity_m_s is not None:

@@ -141,3 +141,9 @@ def test_the_formulas_behind_a_history_are_registered(history: FlowHistory) -> N
     assert all(id in FORMULAS for id in history.formulas), history.formulas
     assert "depth.bradley_venditti" in history.formulas
     assert "wind.shao_lu" not in history.formulas
+
+
+def test_wind_is_called_wind_in_any_setting() -> None:
+    """A wind-made structure in a river log speaks of wind and not of the river."""
+    found = infer_flow(log(bed("fU", "wind_ripple_lamination")))
+    assert "the wind was faster than" in found.explain("1")[0]
