@@ -9,6 +9,7 @@ from __future__ import annotations
 import math
 import re
 from collections.abc import Sequence
+from functools import lru_cache
 from itertools import pairwise
 
 from logkit.model import Level
@@ -22,6 +23,7 @@ from logkit.units import METRES
 ROUNDING_M = 1e-6
 """Differences below this are of floating point, m."""
 _CLOSE_M = 0.011
+_WIDEST_M = 0.06
 _DECIMALS = re.compile(r"\d(?:[.,](\d+))?(?!\d)")
 
 
@@ -45,12 +47,14 @@ class Placer:
         self.shown = unit if down else "m"
         self.starts: list[Length | None] = []
         self.ends: list[Length | None] = []
+        self.tolerance = ROUNDING_M
 
     def place(self) -> None:
         """Settle all rows; a row that cannot be placed stays unplaced and has an error."""
         if not self.down:
             self._spans_that_are_thicknesses()
         self._running_heights()
+        self.tolerance = min(max(0.6 * self._last_place(), ROUNDING_M), _WIDEST_M)
         pairs = [self._along(d) for d in self.drafts]
         self.starts = [start for start, _ in pairs]
         self.ends = [end for _, end in pairs]
@@ -193,7 +197,7 @@ class Placer:
                      f"swap them: {low} {self.show(b)}, {high} {self.show(a)}", choices=("base and top swapped",),
                      column="top" if d.cells.get("top") else "")  # fmt: skip
             a, b = b, a
-        elif written and size is not None and abs(b - a - size) > max(self._tolerance(d), 0.02 * size):
+        elif written and size is not None and abs(b - a - size) > max(self.tolerance, 0.02 * size):
             self.say(
                 d,
                 "question",
@@ -238,7 +242,7 @@ class Placer:
                 continue
             if last is not None:
                 step = d.start_m - last.end_m
-                tolerance = max(self._tolerance(d), ROUNDING_M)
+                tolerance = self.tolerance
                 if step < -tolerance:
                     self._overlap(d, last, -step)
                 elif step > tolerance:
@@ -260,21 +264,22 @@ class Placer:
                  "add a row for it, or correct the positions", choices=("a gap", "a wrong position"))  # fmt: skip
         return Draft(row=None, section=d.section, gap="not_logged", start_m=last.end_m, end_m=d.start_m)
 
-    def _tolerance(self, d: Draft) -> float:
-        """Half a unit of the last place in which a position is written, m."""
-        steps = []
-        for column in _COLUMNS:
-            text = d.cells.get(column)
-            length = _length_of(d, column)
-            if text and length is not None:
-                places = [len(m) for m in _DECIMALS.findall(text)]
-                step = (
-                    METRES["in"]
-                    if length.unit == "ft" and ("'" in text or '"' in text)
-                    else METRES[length.unit]
-                )
-                steps.append(step * 10.0 ** -min(places, default=0))
-        return 0.6 * max(steps, default=0.0)
+    def _last_place(self) -> float:
+        """Unit of the last place in which positions are written, m.
+
+        The finest of all rows, since 1.30 is often written 1.3; thicknesses count only where nothing else does.
+        """
+        steps: dict[str, float] = {}
+        for d in self.drafts:
+            for column in _COLUMNS:
+                text = d.cells.get(column)
+                length = _length_of(d, column) if text else None
+                if text and length is not None:
+                    inches = length.unit == "ft" and ("'" in text or '"' in text)
+                    step = METRES["in" if inches else length.unit] * 10.0 ** -_decimals(text)
+                    steps[column] = min(step, steps.get(column, math.inf))
+        thickness = steps.pop("thickness", 0.0)
+        return min(steps.values(), default=thickness)
 
     # -- stacked thicknesses -----------------------------------------------------------------------------------
 
@@ -322,7 +327,8 @@ class Placer:
             return None
         step = end.metres - start.metres
         if step < 0 and self.starts[index] is not None and self.ends[index] is not None:
-            self.say(d, "error", "position.swapped", f"top below base ({self.show(start.metres)}, {self.show(end.metres)})",
+            shown = f"{self.show(start.metres)}, {self.show(end.metres)}"
+            self.say(d, "error", "position.swapped", f"the top lies below the base ({shown})",
                      "swap them", choices=("base and top swapped",))  # fmt: skip
             return -step
         return step if step > 0 else None
@@ -330,7 +336,7 @@ class Placer:
     def _compare(self, d: Draft, written: float, here: float, offset: float) -> float:
         """Ask where a written height leaves the sum of thicknesses; the new offset between the two."""
         away = written - here
-        if abs(away - offset) <= max(self._tolerance(d), 0.005, ROUNDING_M):
+        if abs(away - offset) <= max(self.tolerance, 0.005):
             return offset
         more = away - offset
         noun = "below" if (more > 0) == self.down else "above"
@@ -402,6 +408,12 @@ def _wrong_alone(anchors: Sequence[tuple[int, float]], sizes: Sequence[float | N
 
 
 _COLUMNS = ("thickness", "base", "top", "from", "to", "position")
+
+
+@lru_cache(maxsize=4096)
+def _decimals(text: str) -> int:
+    """Decimals of the number with most of them in a cell."""
+    return max((len(digits) for digits in _DECIMALS.findall(text)), default=0)
 
 
 def _length_of(d: Draft, column: str) -> Length | None:

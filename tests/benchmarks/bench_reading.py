@@ -25,7 +25,7 @@ HEAD = """# title: invented section for timing
 # setting: river
 # bedding: 112/14
 # declination: -3.5
-Bed,Base (m),Thickness (cm),Lith,Grain size,Structures,Set thickness (cm),Base contact,Palaeocurrent,BI,Colour,Samples,Notes
+Bed,Base (m),Thickness (cm),Lith,Grain size,Structures,Sets (cm),Base contact,Palaeocurrent,BI,Colour,Samples,Notes
 """
 KINDS = (
     ("sst", ("mU", "mL-mU", "fU→vfL", "cL", "0.25 mm", "fL"), ("tr x-bed", "St", "Sp", "low-angle xb"), True),

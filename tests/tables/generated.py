@@ -115,6 +115,13 @@ LARGEST = st.builds(
     size(),
     st.sampled_from(("a", "b", "")),
 )
+METHODS = st.sampled_from(("", "card", "photo, 1:2"))
+BIOTURBATION = st.builds(
+    Bioturbation,
+    st.just(1.0),
+    st.sampled_from((1.0, 3.0)),
+    st.sampled_from(("", "taylor_goldring", "ichnofabric")),
+)
 RANGES = st.tuples(size(1e-5, 50), size(1e-5, 50)).map(lambda pair: (min(pair), max(pair)))
 
 
@@ -129,7 +136,7 @@ def described(draw: st.DrawFn, base: float, top: float) -> dict[str, Any]:
     places = sorted(draw(st.lists(st.floats(0, 1), max_size=4, unique=True)))
     readings = tuple(
         SizeReading(round(base + p * (top - base), 9), draw(size(1e-3, 100)), draw(optional(size(1e-3, 100))),
-                    draw(optional(size(1e-3, 100))), None, draw(optional(st.integers(1, 500))), draw(st.sampled_from(("", "card", "photo, 1:2"))))
+                    draw(optional(size(1e-3, 100))), None, draw(optional(st.integers(1, 500))), draw(METHODS))
         for p in places
     )  # fmt: skip
     return {
@@ -150,7 +157,7 @@ def described(draw: st.DrawFn, base: float, top: float) -> dict[str, Any]:
         "currents": tuple(draw(st.lists(CURRENTS, max_size=3))),
         "flow_depth_m": draw(optional(RANGES)),
         "slope": draw(optional(RANGES)),
-        "bioturbation": draw(optional(st.builds(Bioturbation, st.just(1.0), st.sampled_from((1.0, 3.0)), st.sampled_from(("", "taylor_goldring", "ichnofabric"))))),
+        "bioturbation": draw(optional(BIOTURBATION)),
         "colour": draw(optional(st.builds(Colour, LINE, st.sampled_from(("", "5YR 4/4"))))),
         "fossils": tuple(draw(st.lists(ids("fossils"), max_size=2, unique=True))),
     }  # fmt: skip
@@ -179,7 +186,8 @@ def beds(draw: st.DrawFn, name: str, base: float, top: float) -> Bed:
 HEADERS = st.builds(
     Header, title=WORDS, section=LINE | st.just(""), location=WORDS, coordinates=WORDS, coordinate_datum=WORDS,
     logged_by=WORDS, date=WORDS, direction=st.just("up"), unit=st.sampled_from(("", "m", "cm", "ft")),
-    setting=st.sampled_from(SETTINGS), water_temperature_c=optional(st.floats(0, 40)), salinity=optional(st.floats(0, 40)),
+    setting=st.sampled_from(SETTINGS), water_temperature_c=optional(st.floats(0, 40)),
+    salinity=optional(st.floats(0, 40)),
     grain_density_kg_m3=optional(st.floats(1000, 6000)),
     bedding=optional(st.tuples(st.floats(0, 360, exclude_max=True), st.floats(0, 90))),
     declination_deg=optional(st.floats(-180, 180)), size_scale=st.sampled_from(("wentworth", "iso14688")),

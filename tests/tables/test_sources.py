@@ -213,7 +213,7 @@ def test_what_cannot_be_opened(tmp_path: Path) -> None:
     with pytest.raises(LogkitError, match="is a folder, not a file"):
         read_log(tmp_path)
     (tmp_path / "text.xlsx").write_text(TABLE, "utf-8")
-    with pytest.raises(LogkitError, match="text.xlsx is not a workbook"):
+    with pytest.raises(LogkitError, match=r"text\.xlsx is not a workbook"):
         read_log(tmp_path / "text.xlsx")
     (tmp_path / "cut.xlsx").write_bytes(new_table(tmp_path / "n.xlsx").read_bytes()[:900])
     with pytest.raises(LogkitError, match="cannot be opened as a workbook"):
