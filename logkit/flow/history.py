@@ -100,7 +100,16 @@ class FlowHistory:
             if not 1 <= phase <= len(places):
                 raise ArgumentError("phase", phase, f"from 1 to {len(places)} in bed {bed}")
             places = places[phase - 1 : phase]
-        return ledger_frame([row for place in places for row in self._ledger(place)])
+        return ledger_frame([row for place in places for row in self.ledger_at(place)])
+
+    def ledger_at(self, place: int) -> tuple[LedgerRow, ...]:
+        """Rows of the ledger of one phase, by its place in `estimates`; none for a phase that nothing speaks for."""
+        phase = self.estimates[place].phase
+        if place in self.readings:
+            return ledger_rows(
+                self.solver, self.readings[place].case, phase.section, phase.bed, phase.index + 1
+            )
+        return self.rows.get(place, ())
 
     def explain(self, bed: str) -> tuple[str, ...]:
         """The numbers of a bed as a geologist would explain them, line by line.
@@ -112,7 +121,7 @@ class FlowHistory:
         places = self._places(bed)
         lines: list[str] = []
         for place in places:
-            lines += words.explain_phase(self.estimates[place], self._ledger(place), len(places))
+            lines += words.explain_phase(self.estimates[place], self.ledger_at(place), len(places))
         inside = [t for t in self.tendency if t is not None and t.to_bed == bed == t.from_bed]
         lines += [words.explain_transition(t) for t in inside]
         lines += [
@@ -155,14 +164,6 @@ class FlowHistory:
         if not places:
             self.log.bed(bed)
         return places
-
-    def _ledger(self, place: int) -> list[LedgerRow]:
-        phase = self.estimates[place].phase
-        if place in self.readings:
-            return ledger_rows(
-                self.solver, self.readings[place].case, phase.section, phase.bed, phase.index + 1
-            )
-        return list(self.rows.get(place, ()))
 
 
 def _quantile_columns(name: str, unit: str) -> list[str]:

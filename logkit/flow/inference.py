@@ -10,8 +10,9 @@ from typing import Any
 
 import numpy as np
 
+from logkit.flow.builtin_criteria import GRAVEL_MM
 from logkit.flow.conflict import CONFLICT_FROM, conflict_words, find_clash, strength
-from logkit.flow.criteria import CRITERIA
+from logkit.flow.criteria import CRITERIA, ClastReading
 from logkit.flow.history import FlowHistory
 from logkit.flow.ledger import LedgerRow, lower_limit
 from logkit.flow.phases import split_phases
@@ -168,7 +169,8 @@ def _one_sided(case: Case) -> bool:
     tells of the fastest moment, which a prior of ordinary flows must not cap.
     """
     ids = dict(case.signature.factors)
-    if "largest_clast" in ids and "bed_state" not in ids:
+    clast = ids.get("largest_clast")
+    if isinstance(clast, ClastReading) and clast.written_mm >= GRAVEL_MM and "bed_state" not in ids:
         return True
     prior = case.signature.prior
     for id, reading in ids.items():

@@ -6,6 +6,7 @@ not here: they are one construction and live in `hydraulics.bedstates`.
 
 from __future__ import annotations
 
+import math
 from dataclasses import dataclass
 from functools import cache
 from importlib.resources import files
@@ -171,8 +172,6 @@ def _prior(name: str, file: DataFile, calibration: DataFile) -> Prior:
     common = {"name": name, "words": entry["words"], "source": entry["source"],
               "delta": float(fitted["delta"]), "eps": float(fitted["eps"])}  # fmt: skip
     if name == "broad":
-        import math
-
         return Prior(
             **common,
             velocity_given_depth=(math.log(entry["froude_median"]) + 0.5 * math.log(9.81), 0.5,

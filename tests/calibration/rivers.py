@@ -1,6 +1,6 @@
 """The measured rivers the engine is calibrated and tested on, and the logs they are told as.
 
-The data do not belong to the product: they are read from `shared/data` beside the checkout where they exist.
+The data do not belong to the product: they are read from beside the checkout where they exist.
 """
 
 from __future__ import annotations

@@ -1,4 +1,4 @@
-"""Makes the helpers of this folder importable under the importlib mode of pytest."""
+"""Makes the modules of this folder importable under the importlib mode of pytest."""
 
 import sys
 from pathlib import Path

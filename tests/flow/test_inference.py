@@ -346,3 +346,8 @@ def test_an_impossible_depth_of_a_bed_names_the_bed() -> None:
     """Logs from memory may hold nonsense: the error says which bed."""
     with pytest.raises(ArgumentError, match="flow_depth_m of bed 1 is"):
         infer_flow(log(bed("mL", flow_depth_m=(0.0, 2.0))))
+
+
+def test_a_coarse_sand_grain_does_not_open_a_river_range() -> None:
+    """Only gravel tells of a faster moment; the largest sand grain leaves the range of the bed as it is."""
+    assert one("mL", "massive", largest=LargestClasts((0.8,), 0.8)).bound == "range"
