@@ -62,7 +62,10 @@ def lay_out(
     material = Material(
         log, estimates, sum(p.trend != "no trend" for p in packages), len(azimuths), len(curves)
     )
-    names = [name for name in (tracks if tracks is not None else style.order) if TRACKS[name].shown(material)]
+    wanted = tracks if tracks is not None else style.order
+    names = [name for name in wanted if TRACKS[name].shown(material)]
+    if style.palette.chroma == 0:  # a strip of colours says nothing in a style without colour
+        names = [name for name in names if name != "colour"]
     start = style.page.margin if left is None else left
     room = style.page_size_mm()[0] - 2 * style.page.margin if width is None else width
     columns = _columns(style, names, start, room, _name_width(log, style))
