@@ -12,21 +12,28 @@ from logkit.model import Bed, GrainState, Structure
 
 
 def test_ranges_and_tendencies_hold_on_flows_drawn_from_the_model() -> None:
-    """200 beds: the 80 % intervals hold 77-90 %; called tendencies are right, hardly one is wrong."""
-    truth = river_log(200, seed=6)
-    history = infer_flow(truth.log)
-    frame = history.to_frame()
-    inside = (frame.velocity_p10_m_s <= truth.velocity_m_s) & (truth.velocity_m_s <= frame.velocity_p90_m_s)
-    assert 0.77 <= inside.mean() <= 0.90
-    change = np.log(truth.velocity_m_s[1:] / truth.velocity_m_s[:-1])
+    """Five logs of 200 beds: the 80 % intervals hold 77-90 %; called tendencies are right, hardly one is wrong.
+
+    Beds of one log share half of the allowance, so single logs lie between 70 and 90 %.
+    """
+    inside, right, wrong = [], [], []
     words = {"waxing": 1, "waning": -1}
-    called = np.array([words.get(t.tendency, 0) if t else 0 for t in history.tendency])
-    clear = np.abs(change) > np.log(1.5)
-    right = called[clear] == np.sign(change[clear])
-    wrong = (called[clear] != 0) & ~right
-    assert right.sum() / (right.sum() + wrong.sum()) >= 0.90
-    assert wrong.mean() < 0.02
-    assert right.mean() > 0.35
+    for seed in range(5):
+        truth = river_log(200, seed)
+        history = infer_flow(truth.log)
+        frame = history.to_frame()
+        low, high = frame.velocity_p10_m_s.to_numpy(), frame.velocity_p90_m_s.to_numpy()
+        inside.append((low <= truth.velocity_m_s) & (truth.velocity_m_s <= high))
+        change = np.log(truth.velocity_m_s[1:] / truth.velocity_m_s[:-1])
+        called = np.array([words.get(t.tendency, 0) if t else 0 for t in history.tendency])
+        clear = np.abs(change) > np.log(1.5)
+        right.append(called[clear] == np.sign(change[clear]))
+        wrong.append((called[clear] != 0) & ~right[-1])
+    held, good, bad = (np.concatenate(x) for x in (inside, right, wrong))
+    assert 0.77 <= held.mean() <= 0.90
+    assert good.sum() / (good.sum() + bad.sum()) >= 0.90
+    assert bad.mean() < 0.02
+    assert good.mean() > 0.35
 
 
 def test_the_same_bed_twice_is_not_determinable() -> None:
