@@ -26,6 +26,7 @@ LEAST = 5
 PAIRS_UP_TO = 8
 """With more wells than this each is set against all others together instead of against each."""
 
+REST = "all other wells"
 LEVEL = 0.05
 
 
@@ -105,24 +106,17 @@ def compare_values(wells: Mapping[str, Mapping[str, NDArray[np.float64]]]) -> tu
     ----------
     mann_whitney_1947, cliff_1993, romano_2006, benjamini_hochberg_1995
     """
-    raw: list[tuple[Measure, str, str, NDArray[np.float64], NDArray[np.float64]]] = []
     names = list(wells)
+    found: list[_Tested] = []
     for measure in MEASURES:
-        values = {name: wells[name].get(measure.id, np.empty(0)) for name in names}
+        values = [np.asarray(wells[name].get(measure.id, np.empty(0)), dtype=float) for name in names]
         if len(names) <= PAIRS_UP_TO:
-            pairs = [(a, b, values[a], values[b]) for a, b in combinations(names, 2)]
+            pairs = combinations(range(len(names)), 2)
+            found += [_pair(measure, names[i], names[j], values[i], values[j]) for i, j in pairs]
         else:
-            pairs = [
-                (a, "all other wells", values[a], np.concatenate([values[b] for b in names if b != a]))
-                for a in names
-            ]
-        raw.extend((measure, *pair) for pair in pairs)
-    tested = [_tests(x, y) for _, _, _, x, y in raw]
-    adjusted = _adjusted([p for t in tested for p in (t[2], t[3])])
-    return tuple(
-        _difference(measure, a, b, x, y, t, adjusted[2 * k], adjusted[2 * k + 1])
-        for k, ((measure, a, b, x, y), t) in enumerate(zip(raw, tested, strict=True))
-    )
+            found += _against_the_rest(measure, names, values)
+    adjusted = _adjusted([p for t in found for p in (t.p_rank, t.p_ks)])
+    return tuple(_difference(t, adjusted[2 * k], adjusted[2 * k + 1]) for k, t in enumerate(found))
 
 
 def differences_frame(found: Sequence[Difference]) -> pd.DataFrame:
@@ -132,17 +126,91 @@ def differences_frame(found: Sequence[Difference]) -> pd.DataFrame:
     return pd.DataFrame([{n: getattr(d, n) for n in Difference.__slots__} for d in found])
 
 
-def _tests(x: NDArray[np.float64], y: NDArray[np.float64]) -> tuple[float, float, float, float]:
-    """Cliff's delta, KS distance, rank p, KS p."""
-    if len(x) < LEAST or len(y) < LEAST:
-        return (math.nan,) * 4
+@dataclass(frozen=True, slots=True)
+class _Tested:
+    """One test before correction; NaN where there are too few values."""
+
+    measure: Measure
+    first: str
+    second: str
+    counts: tuple[int, int]
+    medians: tuple[float, float]
+    delta: float = math.nan
+    ks_d: float = math.nan
+    p_rank: float = math.nan
+    p_ks: float = math.nan
+
+
+def _pair(
+    measure: Measure, first: str, second: str, x: NDArray[np.float64], y: NDArray[np.float64]
+) -> _Tested:
+    """Two wells against each other."""
+    counts = (len(x), len(y))
+    medians = tuple(float(np.median(v)) if len(v) else math.nan for v in (x, y))
+    if min(counts) < LEAST:
+        return _Tested(measure, first, second, counts, medians)  # type: ignore[arg-type]
     from scipy import stats
 
     rank = stats.mannwhitneyu(x, y, alternative="two-sided")
     delta = 2 * float(rank.statistic) / (len(x) * len(y)) - 1
-    exact = len(x) + len(y) <= 40
-    ks = stats.ks_2samp(x, y, method="exact" if exact else "asymp")
-    return delta, float(ks.statistic), float(rank.pvalue), float(ks.pvalue)
+    ks = stats.ks_2samp(x, y, method="exact" if len(x) + len(y) <= 40 else "asymp")
+    p_rank, p_ks = float(rank.pvalue), float(ks.pvalue)
+    return _Tested(measure, first, second, counts, medians, delta, float(ks.statistic), p_rank, p_ks)  # type: ignore[arg-type]
+
+
+def _against_the_rest(
+    measure: Measure, names: Sequence[str], values: Sequence[NDArray[np.float64]]
+) -> list[_Tested]:
+    """Each well against all others together: the same tests, from one sorting of all values."""
+    from scipy import stats
+
+    owner = np.concatenate([np.full(len(v), i) for i, v in enumerate(values)])
+    pooled = np.concatenate(list(values))
+    order = np.argsort(pooled, kind="stable")
+    pooled, owner = pooled[order], owner[order]
+    total = len(pooled)
+    ties = np.unique(pooled, return_counts=True)[1].astype(float)
+    tie_term = float((ties**3 - ties).sum())
+    found = []
+    for i, name in enumerate(names):
+        own = owner == i
+        x, rest = pooled[own], pooled[~own]
+        m, n = len(x), len(rest)
+        medians = (_middle(x), _middle(rest))
+        if min(m, n) < LEAST:
+            found.append(_Tested(measure, name, REST, (m, n), medians))
+            continue
+        below = np.searchsorted(pooled, x, side="left")
+        up_to = np.searchsorted(pooled, x, side="right")
+        u = float((0.5 * (below + up_to + 1)).sum()) - m * (m + 1) / 2
+        spread = math.sqrt(m * n / 12 * ((total + 1) - tie_term / (total * (total - 1))))
+        z = (abs(u - m * n / 2) - 0.5) / spread if spread > 0 else 0.0
+        own_below, own_up_to = np.searchsorted(x, x, side="left"), np.searchsorted(x, x, side="right")
+        above = (own_up_to / m - (up_to - own_up_to) / n).max()
+        beneath = ((below - own_below) / n - own_below / m).max()
+        ks_d = float(max(above, beneath, 0.0))
+        found.append(
+            _Tested(
+                measure,
+                name,
+                REST,
+                (m, n),
+                medians,
+                2 * u / (m * n) - 1,
+                ks_d,
+                min(1.0, 2 * float(stats.norm.sf(z))),
+                float(stats.kstwo.sf(ks_d, round(m * n / (m + n)))),
+            )
+        )
+    return found
+
+
+def _middle(ordered: NDArray[np.float64]) -> float:
+    """Median of sorted values; NaN without any."""
+    count = len(ordered)
+    if not count:
+        return math.nan
+    return float(0.5 * (ordered[(count - 1) // 2] + ordered[count // 2]))
 
 
 def _adjusted(p: list[float]) -> list[float]:
@@ -156,55 +224,33 @@ def _adjusted(p: list[float]) -> list[float]:
     return [float(v) for v in result]
 
 
-def _difference(
-    measure: Measure,
-    first: str,
-    second: str,
-    x: NDArray[np.float64],
-    y: NDArray[np.float64],
-    tests: tuple[float, float, float, float],
-    p_rank_adjusted: float,
-    p_ks_adjusted: float,
-) -> Difference:
-    delta, ks_d, p_rank, p_ks = tests
-    medians = [float(np.median(v)) if len(v) else math.nan for v in (x, y)]
-    if measure.from_phi:
-        medians = [2.0**-m for m in medians]
+def _difference(tested: _Tested, p_rank_adjusted: float, p_ks_adjusted: float) -> Difference:
+    medians = [2.0**-m if tested.measure.from_phi else m for m in tested.medians]
     shown = [float(f"{m:.2g}") if math.isfinite(m) else m for m in medians]
-    reading = _reading(measure, first, second, len(x), len(y), shown, delta, p_rank_adjusted, p_ks_adjusted)
     return Difference(
-        measure.id,
-        measure.unit,
-        first,
-        second,
-        len(x),
-        len(y),
+        tested.measure.id,
+        tested.measure.unit,
+        tested.first,
+        tested.second,
+        *tested.counts,
         shown[0],
         shown[1],
-        _rounded(delta),
-        _rounded(ks_d),
-        p_rank,
-        p_ks,
+        _rounded(tested.delta),
+        _rounded(tested.ks_d),
+        tested.p_rank,
+        tested.p_ks,
         p_rank_adjusted,
         p_ks_adjusted,
-        reading,
+        _reading(tested, shown, p_rank_adjusted, p_ks_adjusted),
     )
 
 
-def _reading(
-    measure: Measure,
-    first: str,
-    second: str,
-    n_first: int,
-    n_second: int,
-    medians: list[float],
-    delta: float,
-    p_rank: float,
-    p_ks: float,
-) -> str:
+def _reading(tested: _Tested, medians: list[float], p_rank: float, p_ks: float) -> str:
     """The test in words."""
+    measure, first, second, delta = tested.measure, tested.first, tested.second, tested.delta
     if math.isnan(p_rank):
-        short = [f"{name} has {n}" for name, n in ((first, n_first), (second, n_second)) if n < LEAST]
+        pairs = zip((first, second), tested.counts, strict=True)
+        short = [f"{name} has {n}" for name, n in pairs if n < LEAST]
         return f"{measure.label}: too few values to compare ({', '.join(short)}; {LEAST} are needed)"
     numbers = f"medians {medians[0]:g} and {medians[1]:g} {measure.unit}"
     if p_rank < LEVEL:

@@ -161,6 +161,23 @@ def test_many_wells_are_each_set_against_the_others() -> None:
     assert all(d.second == "all other wells" and d.n_second == 220 for d in found)
 
 
+def test_one_sorting_gives_the_tests_of_scipy() -> None:
+    """Each well against the rest has the statistics and p that scipy gives, ties included."""
+    random = np.random.default_rng(6)
+    wells = {f"W{i}": {"bed_thickness": random.lognormal(0.05 * i, 1, 30).round(1)} for i in range(10)}
+    found = [d for d in compare_values(wells) if d.quantity == "bed_thickness"]
+    for d in found:
+        x = wells[d.first]["bed_thickness"]
+        rest = np.concatenate([w["bed_thickness"] for name, w in wells.items() if name != d.first])
+        rank = stats.mannwhitneyu(x, rest, method="asymptotic")
+        ks = stats.ks_2samp(x, rest, method="asymp")
+        assert d.p_rank == pytest.approx(rank.pvalue)
+        assert d.delta == pytest.approx(2 * rank.statistic / (len(x) * len(rest)) - 1, abs=6e-4)
+        assert d.ks_d == pytest.approx(ks.statistic, abs=6e-4)
+        assert d.p_ks == pytest.approx(ks.pvalue)
+        assert d.median_second == pytest.approx(float(f"{np.median(rest):.2g}"))
+
+
 def test_few_of_many_alike_wells_differ() -> None:
     """Wells drawn from one population are called different in at most 5 % of the tests."""
     random = np.random.default_rng(11)
