@@ -155,7 +155,7 @@ def _size_axis(scene: Scene, y: float, side: int) -> list[Shape]:
     labels.append(Text((axis.x0, second), "mm", size, style.colours.ink2))
     for word, phi in SIZE_LABELS:
         x, width = axis.x(phi), width_mm(word, size)
-        x = min(x, axis.x1 + 0.5 - width / 2)
+        x = min(x, axis.x1 + 1.3 - width / 2)
         if x - width / 2 > edge:
             labels.append(Text((x, second), word, size, style.colours.ink2, anchor="middle"))
             edge = x + width / 2 + 0.5
