@@ -79,3 +79,18 @@ def reference(key: str) -> Reference:
         return all_references()[key]
     except KeyError:
         raise UnknownNameError("reference", key, all_references()) from None
+
+
+NOT_WORKS = ("ours", "definition", "")
+"""Source entries of records that name no published work."""
+
+
+def cited(source: str) -> str:
+    """Reference keys, parted by commas, as authors and years; what is no work is called own construction.
+
+    Raises
+    ------
+    UnknownNameError : a key that the list does not have
+    """
+    keys = [key.strip() for key in source.split(",")]
+    return "; ".join("own construction" if key in NOT_WORKS else reference(key).short for key in keys)

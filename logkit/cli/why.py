@@ -2,14 +2,17 @@
 
 from __future__ import annotations
 
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 import click
 
-from logkit.cli.console import print_frame, print_json, say
+from logkit.cli.console import print_json, print_table, say
 from logkit.cli.options import flow_options, log_argument, quiet_option, reading_options, run_logs
 from logkit.errors import LogkitError
 from logkit.model import CAUTION
+
+if TYPE_CHECKING:
+    from logkit.flow import FlowHistory
 
 
 @click.command("why")
@@ -50,7 +53,26 @@ def command(source: str, bed: str, phase: int | None, as_json: bool, quiet: bool
         return
     for line in history.explain(bed):
         click.echo(line)
-    if len(ledger):
-        click.echo()
-        print_frame(ledger)
+    _print_ledgers(history, bed, phase)
     say("\n" + CAUTION, quiet)
+
+
+def _print_ledgers(history: FlowHistory, bed: str, phase: int | None) -> None:
+    """One table a phase and the tested range of each criterion; the numbers of the report, all digits in --json."""
+    from logkit.report.ledger_view import ledger_headings, ledger_lines
+    from logkit.report.wording import Units
+
+    units = Units()
+    headings = [f"{name} ({unit})" if unit else name for name, unit in ledger_headings(units)]
+    validity: dict[str, str] = {}
+    for number, place in enumerate(history.places_of(bed), 1):
+        lines = ledger_lines(history.ledger_at(place), units)
+        if not lines or phase not in (None, number):
+            continue
+        click.echo()
+        print_table(headings, [line.cells for line in lines], f"Ledger of bed {bed}, phase {number}")
+        validity.update((line.criterion, line.validity) for line in lines)
+    if validity:
+        click.echo("\nTested ranges:")
+        for criterion, words in validity.items():
+            click.echo(f"  {criterion}: {words}")

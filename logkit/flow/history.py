@@ -55,7 +55,7 @@ class FlowHistory:
         ------
         UnknownNameError : no such bed; names the nearest one
         """
-        return tuple(self.estimates[place] for place in self._places(bed))
+        return tuple(self.estimates[place] for place in self.places_of(bed))
 
     def to_frame(self) -> pd.DataFrame:
         """One row a phase; a one-sided answer leaves the quantiles empty and fills the limit columns."""
@@ -95,7 +95,7 @@ class FlowHistory:
         UnknownNameError : no such bed
         ArgumentError : the bed has no such phase
         """
-        places = self._places(bed)
+        places = self.places_of(bed)
         if phase is not None:
             if not 1 <= phase <= len(places):
                 raise ArgumentError("phase", phase, f"from 1 to {len(places)} in bed {bed}")
@@ -118,7 +118,7 @@ class FlowHistory:
         ------
         UnknownNameError : no such bed
         """
-        places = self._places(bed)
+        places = self.places_of(bed)
         lines: list[str] = []
         for place in places:
             lines += words.explain_phase(self.estimates[place], self.ledger_at(place), len(places))
@@ -159,7 +159,13 @@ class FlowHistory:
             "not_determinable": called["not determinable"],
         }
 
-    def _places(self, bed: str) -> list[int]:
+    def places_of(self, bed: str) -> list[int]:
+        """Places in `estimates` of the phases of one bed, upward.
+
+        Raises
+        ------
+        UnknownNameError : no such bed; names the nearest one
+        """
         places = [place for place, e in enumerate(self.estimates) if e.phase.bed == bed]
         if not places:
             self.log.bed(bed)

@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import math
 from dataclasses import dataclass, fields, replace
+from functools import lru_cache
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -67,7 +68,7 @@ def ledger_frame(rows: list[LedgerRow]) -> pd.DataFrame:
     return pd.DataFrame([{name: getattr(row, name) for name in names} for row in rows], columns=names)
 
 
-def ledger_rows(solver: Solver, case: Case, section: str, bed: str, phase: int) -> list[LedgerRow]:
+def ledger_rows(solver: Solver, case: Case, section: str, bed: str, phase: int) -> tuple[LedgerRow, ...]:
     """The ledger of a phase that was answered on the grid.
 
     Parameters
@@ -75,6 +76,12 @@ def ledger_rows(solver: Solver, case: Case, section: str, bed: str, phase: int) 
     solver, case : what answered it, and what it said
     section, bed, phase : written into the rows
     """
+    return tuple(replace(row, section=section, bed=bed, phase=phase) for row in _case_rows(solver, case))
+
+
+@lru_cache(maxsize=4096)
+def _case_rows(solver: Solver, case: Case) -> tuple[LedgerRow, ...]:
+    """The ledger of a case, kept because the beds of a log often say the same."""
     signature = case.signature
     everything = _posterior(solver, case)
     rows = []
@@ -83,7 +90,7 @@ def ledger_rows(solver: Solver, case: Case, section: str, bed: str, phase: int) 
         without = Case(signature.without(id), case.depths)
         criterion = CRITERIA[id]
         rows.append(
-            LedgerRow(section, bed, phase, id, criterion.label, criterion.words(reading), criterion.side,
+            LedgerRow("", "", 0, id, criterion.label, criterion.words(reading), criterion.side,
                       *_alone(solver, alone, criterion.side), **_effect(solver, everything, without),
                       source=criterion.source, validity=criterion.validity, status=criterion.status)
         )  # fmt: skip
@@ -94,25 +101,23 @@ def ledger_rows(solver: Solver, case: Case, section: str, bed: str, phase: int) 
         informed = signature.prior != "off"
         alone_numbers = _alone(solver, Case(bare, ((id, depth),)), "band") if informed else (None, None, None)
         rows.append(
-            LedgerRow(section, bed, phase, id, criterion.label, criterion.words(depth), criterion.side,
+            LedgerRow("", "", 0, id, criterion.label, criterion.words(depth), criterion.side,
                       *alone_numbers, **_effect(solver, everything, Case(signature, others)),
                       source=criterion.source, validity=criterion.validity, status=criterion.status)
         )  # fmt: skip
     if signature.prior != "off":
-        rows.append(_prior_row(solver, case, everything, section, bed, phase))
+        rows.append(_prior_row(solver, case, everything))
     order = {id: place for place, id in enumerate(CRITERIA)}
-    return sorted(rows, key=lambda row: order.get(row.criterion, len(order)))
+    return tuple(sorted(rows, key=lambda row: order.get(row.criterion, len(order))))
 
 
-def _prior_row(
-    solver: Solver, case: Case, everything: Array, section: str, bed: str, phase: int
-) -> LedgerRow:
+def _prior_row(solver: Solver, case: Case, everything: Array) -> LedgerRow:
     prior = flow_settings().prior(case.signature.prior)
     text = criterion_texts()["setting"]
     alone = Case(replace(case.signature, factors=()))
     without = Case(replace(case.signature, prior="off"), case.depths)
     fitted = prior.source == "calibration"
-    return LedgerRow(section, bed, phase, "setting", text.label, f"believed beforehand: {prior.words}", "band",
+    return LedgerRow("", "", 0, "setting", text.label, f"believed beforehand: {prior.words}", "band",
                      *_alone(solver, alone, "band"), **_effect(solver, everything, without),
                      source=text.source if fitted else "ours", validity=text.validity, status=text.status)  # fmt: skip
 

@@ -10,6 +10,7 @@ from logkit.flow.ledger import LedgerRow
 from logkit.flow.phases import structure_term
 from logkit.flow.tendency import BedPattern, Transition
 from logkit.model import PhaseEstimate, Quantiles
+from logkit.references import cited
 
 
 def span(quantiles: Quantiles, unit: str) -> str:
@@ -111,7 +112,9 @@ def _criterion(row: LedgerRow, estimate: PhaseEstimate) -> str:
         else:
             text += "; hardly narrows the velocity"
     status = "" if row.status == "published" else f", {_STATUS.get(row.status, row.status)}"
-    return f"{text} [{row.source}{status}]".replace("[ours, own construction]", "[own construction]")
+    return f"{text} [{cited(row.source)}{status}]".replace(
+        "[own construction, own construction]", "[own construction]"
+    )
 
 
 def _is_depth(row: LedgerRow) -> bool:

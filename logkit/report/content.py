@@ -10,7 +10,7 @@ from logkit.errors import LogkitError
 from logkit.model import CAUTION
 from logkit.report import parts_flow, parts_log, parts_methods, parts_trends
 from logkit.report.document import Block, Document, Section
-from logkit.report.page import bed_records
+from logkit.report.page import all_records, ledger_data
 from logkit.report.settings import SECTIONS, ReportSettings
 from logkit.report.wells import Well, facts_of
 from logkit.report.wording import Units
@@ -56,7 +56,8 @@ def build_document(wells: Sequence[Well], settings: ReportSettings, *, for_page:
         organisation=settings.organisation,
         logo=_logo(settings.logo),
         caution=CAUTION,
-        beds=tuple(record for well in wells for record in bed_records(well, units)) if for_page else (),
+        beds=tuple(all_records(wells, units)) if for_page else (),
+        ledgers=ledger_data(wells, units) if for_page else {},
         authors=tuple(dict.fromkeys(w.log.header.logged_by for w in wells if w.log.header.logged_by)),
     )
 
@@ -94,7 +95,7 @@ def _builders(
         "methods": lambda: parts_methods.methods(wells),
         "references": lambda: parts_methods.references(wells),
         "limits": parts_methods.limits,
-        "ledger": each(parts_flow.ledgers),
+        "ledger": each(parts_flow.ledgers, units),
     }
 
 

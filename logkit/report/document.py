@@ -44,6 +44,7 @@ class Column:
 class Table:
     """A table of text cells, with the caption that says what is shown, how and from where.
 
+    rows : texts of the cells; a row of a single text runs across the table and names the rows under it
     keys : for each row the id of what it is about (a bed's key), "" for none; links table and column
     """
 
@@ -95,7 +96,7 @@ class Document:
     """The whole report.
 
     facts : header data as (label, text)
-    beds : for the html page, a record of every bed: see `logkit.report.page`
+    beds, ledgers : for the html page, a record of every bed and what they share: see `logkit.report.page`
     """
 
     title: str
@@ -106,7 +107,7 @@ class Document:
     logo: tuple[str, bytes] | None = None
     caution: str = ""
     beds: tuple[dict[str, Any], ...] = field(default=())
-    date: str = ""
+    ledgers: dict[str, Any] = field(default_factory=dict)
     authors: tuple[str, ...] = ()
 
     def tables(self) -> Iterator[Table]:

@@ -81,20 +81,25 @@ def _add_rows(file: Any, rows: list[Any], heading: bool = False) -> None:
     from docx.oxml import parse_xml
     from docx.oxml.ns import nsdecls
 
-    def cell(text: str, bold: bool) -> str:
+    width = len(rows[0]) if rows else 1
+
+    def cell(text: str, bold: bool, span: int = 1) -> str:
+        spanned = f'<w:gridSpan w:val="{span}"/>' if span > 1 else ""
         weight = "<w:b/>" if bold else ""
         clean = escape(one_line(text))
         return (
-            f'<w:tc><w:tcPr/><w:p><w:pPr><w:spacing w:after="0"/></w:pPr><w:r><w:rPr>{weight}<w:sz w:val="15"/>'
-            f'</w:rPr><w:t xml:space="preserve">{clean}</w:t></w:r></w:p></w:tc>'
+            f'<w:tc><w:tcPr>{spanned}</w:tcPr><w:p><w:pPr><w:spacing w:after="0"/></w:pPr>'
+            f'<w:r><w:rPr>{weight}<w:sz w:val="15"/></w:rPr><w:t xml:space="preserve">{clean}</w:t></w:r></w:p></w:tc>'
         )
 
     lines = []
     for i, row in enumerate(rows):
         first = heading and i == 0
         repeat = "<w:trPr><w:tblHeader/></w:trPr>" if first else ""
-        lines.append(f"<w:tr>{repeat}{''.join(cell(text, first) for text in row)}</w:tr>")
-    grid = "<w:gridCol/>" * (len(rows[0]) if rows else 1)
+        across = len(row) == 1 < width
+        cells = cell(row[0], True, width) if across else "".join(cell(text, first) for text in row)
+        lines.append(f"<w:tr>{repeat}{cells}</w:tr>")
+    grid = "<w:gridCol/>" * width
     xml = (
         f'<w:tbl {nsdecls("w")}><w:tblPr><w:tblStyle w:val="TableGrid"/><w:tblW w:w="5000" w:type="pct"/>'
         f"</w:tblPr><w:tblGrid>{grid}</w:tblGrid>{''.join(lines)}</w:tbl>"

@@ -41,7 +41,7 @@ def document_html(document: Document, columns: Sequence[Figure]) -> str:
         logo=_picture(document.logo),
         filters=filter_words(document.beds),
         explorer=[Markup(_inline(f.svg, f"c{i}-")) for i, f in enumerate(columns)],
-        data=Markup(inert_json([_public(bed) for bed in document.beds])),
+        data=Markup(inert_json({"beds": document.beds, **document.ledgers})),
         render=lambda block: _render(block, names),
     )
 
@@ -59,10 +59,6 @@ def filter_words(beds: tuple[dict[str, Any], ...]) -> dict[str, list[str]]:
         for kind, tags in bed["tags"].items():
             words.setdefault(kind, set()).update(tags)
     return {kind: sorted(tags) for kind, tags in words.items() if tags}
-
-
-def _public(bed: dict[str, Any]) -> dict[str, Any]:
-    return {key: value for key, value in bed.items() if not key.startswith("_")}
 
 
 def _picture(logo: tuple[str, bytes] | None) -> str:
@@ -110,6 +106,11 @@ def _table(table: Table, names: dict[str, str]) -> Markup:
     )
     lines = []
     for i, row in enumerate(table.rows):
+        if len(row) == 1 < len(table.columns):
+            lines.append(
+                f'<tr class="across"><th scope="rowgroup" colspan="{len(table.columns)}">{escape(row[0])}</th></tr>'
+            )
+            continue
         key = table.keys[i] if table.keys else ""
         mark = f' data-bed="{escape(key)}"' if key else ""
         cells = "".join(f"<td{side}>{escape(cell)}</td>" for cell, side in zip(row, sides, strict=True))

@@ -4,14 +4,15 @@ from __future__ import annotations
 
 import re
 from collections import defaultdict
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
 from dataclasses import replace
 from typing import Any
 
 from logkit.model import Bed, PhaseEstimate, Quantiles
 from logkit.report import parts_log
 from logkit.report.document import Figure
-from logkit.report.parts_flow import ledger_rows, size_words
+from logkit.report.ledger_view import ledger_headings
+from logkit.report.parts_flow import size_words
 from logkit.report.parts_log import contact, label, rock, sizes
 from logkit.report.settings import ReportSettings
 from logkit.report.wells import Well
@@ -19,11 +20,37 @@ from logkit.report.wording import Units
 from logkit.words import digits
 
 
-def bed_records(well: Well, units: Units) -> Iterator[dict[str, Any]]:
-    """One record a bed, upward: title, facts, phases with ranges and ledger, original wording, tags."""
-    ledgers: dict[tuple[str, int], list[dict[str, str]]] = defaultdict(list)
-    for key, _, phase, cells in ledger_rows(well):
-        ledgers[key, phase].append(cells)
+def ledger_data(wells: Sequence[Well], units: Units) -> dict[str, Any]:
+    """The different ledgers of all logs, one after the other, with the headings of their columns."""
+    headings = [*ledger_headings(units), ("tested range", "")]
+    return {
+        "columns": [f"{name} ({unit})" if unit else name for name, unit in headings],
+        "ledgers": [
+            [[*line.cells, line.validity] for line in ledger.lines]
+            for well in wells
+            for ledger in well.ledgers(units)
+        ],
+    }
+
+
+def all_records(wells: Sequence[Well], units: Units) -> Iterator[dict[str, Any]]:
+    """The records of the beds of all logs, whose ledgers are numbered as in `ledger_data`."""
+    first = 0
+    for well in wells:
+        yield from bed_records(well, units, first)
+        first += len(well.ledgers(units))
+
+
+def bed_records(well: Well, units: Units, first_ledger: int = 0) -> Iterator[dict[str, Any]]:
+    """One record a bed, upward: title, facts, phases with ranges, ledger and its number, original wording, tags.
+
+    first_ledger : number of the log's first ledger among the ledgers of all logs
+    """
+    ledger_of = {}
+    for number, ledger in enumerate(well.ledgers(units), first_ledger):
+        for place in ledger.places:
+            phase = well.history.estimates[place].phase
+            ledger_of[phase.bed_index, phase.index] = number
     notes = defaultdict(list)
     for finding in well.log.findings:
         if finding.bed:
@@ -35,7 +62,7 @@ def bed_records(well: Well, units: Units) -> Iterator[dict[str, Any]]:
             "key": key,
             "title": f"{well.name}, {'gap' if bed.is_gap else 'bed'} {bed.name}",
             "facts": [[name, text] for name, text in _facts(well, bed, units) if text],
-            "phases": [_phase(e, ledgers[key, e.phase.index], units) for e in found],
+            "phases": [_phase(e, ledger_of.get((index, e.phase.index)), units) for e in found],
             "written": [list(pair) for pair in bed.written],
             "findings": notes.get(bed.name, []),
             "tags": _tags(well, bed, found),
@@ -88,7 +115,7 @@ def _facts(well: Well, bed: Bed, units: Units) -> list[tuple[str, str]]:
     ]
 
 
-def _phase(estimate: PhaseEstimate, ledger: list[dict[str, str]], units: Units) -> dict[str, Any]:
+def _phase(estimate: PhaseEstimate, ledger: int | None, units: Units) -> dict[str, Any]:
     values = []
     for name, quantiles, unit, factor in (
         ("velocity", estimate.velocity, units.speed, True),
@@ -113,17 +140,17 @@ def _phase(estimate: PhaseEstimate, ledger: list[dict[str, str]], units: Units) 
         words.append(
             f"Against the phase below: {estimate.tendency}, probability {estimate.tendency_probability:.2f}."
         )
-    words.extend(estimate.notes)
+    words.extend(units.words(note) for note in estimate.notes)
     clash = estimate.clash
-    columns = list(ledger[0]) if ledger else []
     structure = label("structures", estimate.phase.structure) or "no structure noted"
     return {
-        "title": f"Phase {estimate.phase.index}: {structure}",
+        "title": f"Phase {estimate.phase.index + 1}: {structure}",
         "values": values,
         "words": words,
-        "conflict": f"Conflict: {clash.first_reading} against {clash.second_reading}." if clash else "",
-        "ledger_columns": columns,
-        "ledger": [[row[c] for c in columns] for row in ledger],
+        "conflict": units.words(f"Conflict: {clash.first_reading} against {clash.second_reading}.")
+        if clash
+        else "",
+        "ledger": ledger,
     }
 
 

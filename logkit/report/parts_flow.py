@@ -7,6 +7,7 @@ from collections.abc import Iterator
 
 from logkit.model import PhaseEstimate
 from logkit.report.document import Block, Column, Figure, Heading, Paragraph, Table
+from logkit.report.ledger_view import LedgerLine, ledger_headings
 from logkit.report.wells import Well
 from logkit.report.wording import Units, depth_cell, size_cell, velocity_cell
 from logkit.words import counted, digits, joined
@@ -88,7 +89,7 @@ def history(well: Well, units: Units) -> Iterator[Block]:
         rows.append(
             (
                 e.phase.bed,
-                str(e.phase.index),
+                str(e.phase.index + 1),
                 units.height(e.phase.base_m),
                 units.height(e.phase.top_m),
                 e.phase.structure.replace("_", " "),
@@ -156,50 +157,50 @@ def states(well: Well) -> Iterator[Block]:
         )
 
 
-def ledgers(well: Well) -> Iterator[Block]:
-    """The ledger of every phase that has one."""
-    rows, keys = [], []
-    columns: list[str] = []
-    for row in ledger_rows(well):
-        key, bed, phase, cells = row
-        columns = columns or list(cells)
-        rows.append((bed, str(phase), *(cells[c] for c in columns)))
-        keys.append(key)
-    if not rows:
-        yield Paragraph(f"{well.name}: no phase has a ledger.")
-        return
+def ledgers(well: Well, units: Units) -> Iterator[Block]:
+    """The criteria that spoke, and the ledger of every phase that has one; phases that read alike share one."""
+    found = list(well.ledgers(units))
     yield Heading(well.name)
+    if not found:
+        yield Paragraph("No phase has a ledger.")
+        return
+    criteria: dict[str, LedgerLine] = {}
+    spoke: Counter[str] = Counter()
+    for ledger in found:
+        for line in ledger.lines:
+            criteria.setdefault(line.criterion, line)
+            spoke[line.criterion] += len(ledger.places)
+    yield Table(
+        f"criteria-{well.keys[0]}",
+        f"Criteria that spoke in {well.name}, in how many phases, and the range in which each was tested. "
+        "Source: ledgers below.",
+        (
+            Column("criterion", width=1.6),
+            Column("phases", align="right", width=0.6),
+            Column("tested range", width=3),
+            Column("source", width=2.4),
+            Column("status", width=0.9),
+        ),
+        tuple((n, str(spoke[n]), c.validity, c.source, c.status) for n, c in criteria.items()),
+    )
+    rows: list[tuple[str, ...]] = []
+    for ledger in found:
+        rows.append((well.places_words(ledger.places),))
+        rows.extend(line.cells for line in ledger.lines)
+    widths = (1.6, 2.2, 1.2, 1.2, 0.85, 0.6, 2.2, 1.0)
+    right = {"alone", "without it", "narrows", "gain"}
     yield Table(
         f"ledger-{well.keys[0]}",
-        f"Ledger of {well.name}: what each criterion says alone, and by how much it narrows the answer of all "
-        "(times; 1 is nothing). Source and validity of each criterion stand in its row.",
-        (
-            Column("bed", width=0.8),
-            Column("phase", align="right", width=0.7),
-            *(Column(c, width=1.6) for c in columns),
+        f"Ledgers of {well.name}: the velocity (P10–P90) that each criterion gives alone with what is believed "
+        "beforehand, the velocity from everything without it, by how many times it narrows the answer, and what it "
+        "tells of velocity and depth in bits (0.1 is little, 1 decides). A bold line names the phases that share "
+        "the lines under it. Source: flow engine, table of phases.",
+        tuple(
+            Column(name, unit, "right" if name in right else "left", width)
+            for (name, unit), width in zip(ledger_headings(units), widths, strict=True)
         ),
         tuple(rows),
-        tuple(keys),
     )
-
-
-def ledger_rows(well: Well) -> Iterator[tuple[str, str, int, dict[str, str]]]:
-    """Rows (bed key, bed, phase, cells by column) of all ledgers of a log."""
-    for index, bed in enumerate(well.log.beds):
-        found = well.estimates.get(index, ())
-        if not any(e.status == "estimated" for e in found):
-            continue
-        frame = well.history.ledger(bed.name)
-        wanted = [c for c in frame.columns if c not in ("section", "bed", "phase")]
-        for record in frame.to_dict(orient="records"):
-            cells = {c.replace("_", " "): _cell(record[c]) for c in wanted}
-            yield well.keys[index], bed.name, int(record.get("phase", 1)), cells
-
-
-def _cell(value: object) -> str:
-    if value is None or value != value:
-        return ""
-    return digits(value, 3) if isinstance(value, float) else str(value)
 
 
 def _axis(well: Well) -> str:

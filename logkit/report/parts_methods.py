@@ -6,7 +6,7 @@ from collections.abc import Iterable, Iterator
 
 from logkit import __version__
 from logkit.model import CAUTION
-from logkit.references import reference
+from logkit.references import NOT_WORKS, cited, reference
 from logkit.registry import FORMULAS
 from logkit.report.document import Block, Column, Paragraph, Table, Terms
 from logkit.report.wells import Well
@@ -84,7 +84,7 @@ def methods(wells: list[Well]) -> Iterator[Block]:
 
 def references(wells: list[Well]) -> Iterator[Block]:
     """Works behind the formulas used."""
-    keys = {FORMULAS[id].source for id in formulas_used(wells)} - {"ours", ""}
+    keys = {FORMULAS[id].source for id in formulas_used(wells)} - set(NOT_WORKS)
     works = sorted({str(reference(key)) + _doubt(key) for key in keys})
     yield Terms(tuple((f"{i}.", work) for i, work in enumerate(works, 1)))
 
@@ -110,10 +110,8 @@ LIMITS = (
 )
 
 
-def _source(key: str, locator: str) -> str:
-    if key in ("ours", ""):
-        return "own construction"
-    return reference(key).short + (f", {locator}" if locator else "")
+def _source(source: str, locator: str) -> str:
+    return "own construction" if source in NOT_WORKS else cited(source) + (f", {locator}" if locator else "")
 
 
 def _doubt(key: str) -> str:

@@ -82,6 +82,7 @@ def _block(block: Block, pictures: dict[str, bytes]) -> dict[str, Any]:
                 "caption": block.caption,
                 "columns": [{"label": c.label, "align": c.align, "width": c.width} for c in block.columns],
                 "rows": [list(row) for row in block.rows],
+                "across": any(len(row) == 1 < len(block.columns) for row in block.rows),
             }
         case Figure():
             file = f"figure-{len(pictures)}.svg"

@@ -3,12 +3,15 @@
 from __future__ import annotations
 
 from collections import defaultdict
+from collections.abc import Sequence
 from dataclasses import dataclass
-from typing import Any
 
 from logkit.flow import FlowHistory
 from logkit.model import Bed, Grading, Log, PhaseEstimate
+from logkit.report.ledger_view import PhaseLedger, phase_ledgers
+from logkit.report.wording import Units
 from logkit.trends import Trends
+from logkit.words import joined
 
 
 @dataclass(frozen=True, eq=False)
@@ -33,6 +36,25 @@ class Well:
     def grading(self, bed: Bed) -> Grading | None:
         """Grading of a bed, None without one."""
         return next((g for g in self.trends.gradings if g.bed == bed.name), None)
+
+    def ledgers(self, units: Units) -> tuple[PhaseLedger, ...]:
+        """The different ledgers of the log in the reader's units."""
+        return tuple(phase_ledgers(self.history, units))
+
+    def places_words(self, places: Sequence[int]) -> str:
+        """Phases by their places in the estimates: `Bed 3, phases 1 and 2; 7; 9, phase 2`."""
+        words: dict[int, list[int]] = {}
+        for place in places:
+            phase = self.history.estimates[place].phase
+            words.setdefault(phase.bed_index, []).append(phase.index + 1)
+        parts = []
+        for index, numbers in words.items():
+            name = self.log.beds[index].name
+            if len(self.estimates[index]) > 1:
+                noun = "phase" if len(numbers) == 1 else "phases"
+                name += f" ({noun} {joined([str(n) for n in numbers])})"
+            parts.append(name)
+        return f"{'Bed' if len(parts) == 1 else 'Beds'} {', '.join(parts)}"
 
     def key_of(self, estimate: PhaseEstimate) -> str:
         """Key of the bed that a phase belongs to."""
@@ -59,7 +81,7 @@ def depth_or_height(well: Well) -> str:
     return "depth" if well.log.header.direction == "down" else "height"
 
 
-def facts_of(log: Log, units: Any) -> tuple[tuple[str, str], ...]:
+def facts_of(log: Log, units: Units) -> tuple[tuple[str, str], ...]:
     """Header data as (label, text), only what is known."""
     header = log.header
     bedding = header.bedding

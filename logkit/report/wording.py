@@ -2,12 +2,17 @@
 
 from __future__ import annotations
 
+import re
 from dataclasses import dataclass
 
 from logkit.model import PhaseEstimate, Quantiles, SizeInterval
 from logkit.words import NO_BREAK, digits
 
 FEET = 0.3048
+MEASURE = re.compile(r"\d+(?:\.\d+)?")
+IN_METRES = re.compile(
+    r"(?P<numbers>(?<![\w.])\d+(?:\.\d+)?(?:(?: to |[-–])\d+(?:\.\d+)?)?)[ \u00a0](?P<unit>m/s|m)(?![\w/²])"
+)
 
 
 @dataclass(frozen=True, slots=True)
@@ -43,6 +48,17 @@ class Units:
         if quantiles is None:
             return ""
         return f"{digits(self.number(quantiles.p10))}–{digits(self.number(quantiles.p90))}"
+
+    def words(self, text: str) -> str:
+        """Lengths in m and velocities in m/s inside a sentence, in the report's unit."""
+        if not self.feet:
+            return text
+
+        def turn(match: re.Match[str]) -> str:
+            unit = self.speed if match["unit"] == "m/s" else self.length
+            return MEASURE.sub(lambda m: digits(self.number(float(m[0]))), match["numbers"]) + f" {unit}"
+
+        return IN_METRES.sub(turn, text)
 
     def middle(self, quantiles: Quantiles | None) -> str:
         """Median of a length or velocity without unit."""

@@ -97,7 +97,7 @@ def test_words_explain_the_bed(history: FlowHistory) -> None:
     first = "\n".join(history.explain("1"))
     assert "Bed 1, mL, trough cross-bedding, river: velocity 0.5" in first
     assert "depth from the sets: 0.98 to 5.3 m" in first
-    assert "[leclair_bridge_2001, bradley_venditti_2017, cited second hand]" in first
+    assert "[Leclair & Bridge 2001; Bradley & Venditti 2017, cited second hand]" in first
     second = "\n".join(history.explain("2"))
     assert "phase 1 of 2" in second
     assert "From phase 1 to 2: waning" in second

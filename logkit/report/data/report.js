@@ -2,7 +2,7 @@
 /* The column is the navigation: point, tap or step with the keyboard through the beds. All text from the log is
    put in by textContent, so nothing that was typed in a cell can become markup. */
 (() => {
-  const beds = JSON.parse(document.getElementById("bed-data").textContent);
+  const { beds, columns: ledgerColumns, ledgers } = JSON.parse(document.getElementById("bed-data").textContent);
   const byKey = new Map(beds.map((bed, i) => [bed.key, i]));
   const card = document.getElementById("card-body");
   const status = document.getElementById("filter-status");
@@ -34,6 +34,12 @@
     return node;
   };
 
+  const scrolled = (node, name) => {
+    const box = make("div", undefined, { class: "scroll", tabindex: "0", role: "region", "aria-label": name });
+    box.append(node);
+    return box;
+  };
+
   const showCard = (bed) => {
     card.replaceChildren();
     card.append(make("h3", bed.title));
@@ -42,10 +48,10 @@
     card.append(facts);
     bed.phases.forEach((phase) => {
       card.append(make("h4", phase.title));
-      card.append(table(["quantity", "P10", "P50", "P90", "unit"], phase.values));
+      if (phase.values.length) card.append(table(["quantity", "P10", "P50", "P90", "unit"], phase.values));
       phase.words.forEach((line) => card.append(make("p", line)));
       if (phase.conflict) card.append(make("p", phase.conflict, { class: "conflict" }));
-      if (phase.ledger.length) card.append(table(phase.ledger_columns, phase.ledger, "Ledger: what each criterion says"));
+      if (phase.ledger !== null) card.append(scrolled(table(ledgerColumns, ledgers[phase.ledger], "Ledger: what each criterion says"), "Ledger of " + phase.title));
     });
     card.append(make("h4", "As written"));
     card.append(table(["column", "text"], bed.written));
@@ -125,11 +131,22 @@
   form.addEventListener("reset", () => setTimeout(filter));
   form.addEventListener("submit", (event) => event.preventDefault());
 
-  const quote = (cell) => (/[",\n]/.test(cell) ? `"${cell.replaceAll('"', '""')}"` : cell);
+  const quote = (cell) => (/[",\r\n]/.test(cell) ? `"${cell.replaceAll('"', '""')}"` : cell);
+  const asCsv = (node) => {
+    // a line that runs across names the rows under it; as CSV it becomes their first column
+    const grouped = node.querySelector("tr.across") !== null;
+    let group = "rows of";
+    const lines = [];
+    node.querySelectorAll("tr:not(.hidden)").forEach((row) => {
+      const cells = [...row.cells].map((c) => c.textContent);
+      if (row.classList.contains("across")) group = cells[0];
+      else lines.push((grouped ? [group, ...cells] : cells).map(quote).join(","));
+    });
+    return lines.join("\n") + "\n";
+  };
   document.querySelectorAll("button.copy").forEach((button) => {
     button.addEventListener("click", async () => {
-      const rows = [...document.getElementById(button.dataset.table).querySelectorAll("tr:not(.hidden)")];
-      const csv = rows.map((row) => [...row.cells].map((c) => quote(c.textContent)).join(",")).join("\n") + "\n";
+      const csv = asCsv(document.getElementById(button.dataset.table));
       const said = button.nextElementSibling;
       try {
         await navigator.clipboard.writeText(csv);
