@@ -27,10 +27,11 @@ from logkit.compare.intervals import (
     POINT_TYPES,
     SHIFT_TYPES,
     TOP_TYPES,
-    intervals_frame,
-    points_frame,
-    shifts_frame,
-    tops_frame,
+    Columns,
+    intervals_columns,
+    points_columns,
+    shifts_columns,
+    tops_columns,
     typed,
 )
 from logkit.compare.las import las_text
@@ -41,6 +42,7 @@ from logkit.model.caution import CAUTION
 
 if TYPE_CHECKING:
     import pandas as pd
+    import pyarrow as pa
 
     from logkit.model import Log
 
@@ -86,7 +88,7 @@ class WellFiles:
 
     name: str
     parts: dict[str, str]
-    intervals: pd.DataFrame
+    intervals: Columns
     las: str
     json: str
     notes: tuple[str, ...]
@@ -190,13 +192,12 @@ class HandoverWriter:
 
     def add(self, well: WellFiles) -> None:
         """Write one well: its parts of the tables, its LAS and JSON file."""
-        import pyarrow as pa
         import pyarrow.parquet as pq
 
         name = self._free_name(well.name)
         for table, part in well.parts.items():
             self._open[table].write(part)
-        rows = pa.Table.from_pandas(well.intervals, preserve_index=False)
+        rows = _arrow(well.intervals)
         if self._parquet is None:
             handle, temporary = tempfile.mkstemp(dir=self.folder, prefix=".intervals.", suffix=".tmp")
             os.close(handle)
@@ -221,7 +222,7 @@ class HandoverWriter:
             os.chmod(self._parquet_path, 0o644)
             os.replace(self._parquet_path, target)
             written.append(target)
-        written.append(_written(self.folder / "codes.csv", _csv(codes_table())))
+        written.append(_written(self.folder / "codes.csv", _csv(_columns_of(codes_table()))))
         notes = "".join(f"- {note}\n" for note in dict.fromkeys(self._notes))
         limits = (
             f"{LIMITS}\n{'Said about single wells:' if notes else ''}\n{notes}\nlogkit {logkit.__version__}\n"
@@ -266,16 +267,16 @@ def well_files(
         | {"section": p.name}
         for f in p.log.findings
     ]
-    frames = {
-        "intervals": intervals_frame(p, history, trends),
-        "tops": tops_frame(p, datum),
-        "points": points_frame(p, trends),
-        "depth_shifts": shifts_frame(p),
+    columns = {
+        "intervals": intervals_columns(p, history, trends),
+        "tops": tops_columns(p, datum),
+        "points": points_columns(p, trends),
+        "depth_shifts": shifts_columns(p),
         "findings": typed(findings, TABLES["findings"]),
     }
-    parts = {name: _csv(frame, header=False) for name, frame in frames.items()}
+    parts = {name: _csv(table, header=False) for name, table in columns.items()}
     record = _json(_well_record(p, history, trends))
-    return WellFiles(p.name, parts, frames["intervals"], las, record, tuple(notes))
+    return WellFiles(p.name, parts, columns["intervals"], las, record, tuple(notes))
 
 
 def _check(logs: tuple[Log, ...], histories: Sequence[Any] | None, trends: Sequence[Any] | None) -> None:
@@ -287,14 +288,27 @@ def _check(logs: tuple[Log, ...], histories: Sequence[Any] | None, trends: Seque
 
 
 def _write_intervals(target: Path, results: Sequence[tuple[PlacedLog, Any, Any]], ending: str) -> Path:
-    import pandas as pd
-
-    frame = pd.concat([intervals_frame(*result) for result in results], ignore_index=True)
+    parts = [intervals_columns(*result) for result in results]
+    whole = {name: [value for part in parts for value in part[name]] for name in INTERVAL_TYPES}
     if ending == ".csv":
-        return _written(target, _csv(frame))
+        return _written(target, _csv(whole))
+    import pyarrow.parquet as pq
+
     buffer = io.BytesIO()
-    frame.to_parquet(buffer, index=False)
+    pq.write_table(_arrow(whole), buffer)
     return _written(target, buffer.getvalue())
+
+
+def _arrow(columns: Columns) -> pa.Table:
+    """The interval table with its declared types."""
+    import pyarrow as pa
+
+    types = {"text": pa.string(), "number": pa.float64(), "whole": pa.int64()}
+    return pa.table({name: pa.array(columns[name], types[kind]) for name, kind in INTERVAL_TYPES.items()})
+
+
+def _columns_of(frame: pd.DataFrame) -> Columns:
+    return {str(name): frame[name].tolist() for name in frame.columns}
 
 
 def _well_record(p: PlacedLog, history: Any, trends: Any) -> dict[str, Any]:
@@ -343,21 +357,19 @@ def _field_names(record: type) -> tuple[str, ...]:
     return tuple(f.name for f in fields(record))
 
 
-def _csv(frame: pd.DataFrame, header: bool = True) -> str:
+def _csv(columns: Columns, header: bool = True) -> str:
     """A table as CSV; text that a spreadsheet would take for a formula is kept text by a leading apostrophe."""
     file = io.StringIO()
     writer = csv.writer(file, lineterminator="\n")
     if header:
-        writer.writerow(frame.columns)
-    writer.writerows(zip(*(_cells(frame[name]) for name in frame.columns), strict=True))
+        writer.writerow(columns)
+    safe = ([_cell(value) for value in values] for values in columns.values())
+    writer.writerows(zip(*safe, strict=True))
     return file.getvalue()
 
 
-def _cells(column: pd.Series[Any]) -> list[Any]:
-    """Values of a column as they stand in CSV; what is missing is empty."""
-    missing = column.isna().tolist()
-    values = ["" if gone else value for value, gone in zip(column.tolist(), missing, strict=True)]
-    return [f"'{v}" if isinstance(v, str) and v.startswith(_LIKE_FORMULA) else v for v in values]
+def _cell(value: Any) -> Any:
+    return f"'{value}" if isinstance(value, str) and value.startswith(_LIKE_FORMULA) else value
 
 
 def _renamed(file: IO[str], target: Path) -> Path:

@@ -8,8 +8,6 @@ from __future__ import annotations
 import math
 from typing import TYPE_CHECKING, Any
 
-import pandas as pd
-
 from logkit.compare.codes import facies_number, lithology_link
 from logkit.compare.placing import PlacedLog
 from logkit.compare.survey import Survey, depth_below_head
@@ -17,6 +15,9 @@ from logkit.compare.ties import TIME_LITHOLOGIES
 
 if TYPE_CHECKING:
     from logkit.model import Bed, PhaseEstimate
+
+Columns = dict[str, list[Any]]
+"""A table as lists of values by column."""
 
 INTERVAL_TYPES: dict[str, str] = {
     "section": "text", "bed": "text", "kind": "text", "gap_reason": "text", "depth_reference": "text",
@@ -52,7 +53,7 @@ SHIFT_TYPES: dict[str, str] = {
 }  # fmt: skip
 
 
-def intervals_frame(p: PlacedLog, history: Any = None, trends: Any = None) -> pd.DataFrame:
+def intervals_columns(p: PlacedLog, history: Any = None, trends: Any = None) -> Columns:
     """One row a bed or gap, upward, in the columns of INTERVAL_TYPES."""
     by_bed: dict[int, list[PhaseEstimate]] = {}
     for estimate in history.estimates if history is not None else ():
@@ -65,7 +66,7 @@ def intervals_frame(p: PlacedLog, history: Any = None, trends: Any = None) -> pd
     return typed(rows, INTERVAL_TYPES)
 
 
-def tops_frame(p: PlacedLog, datum: str = "") -> pd.DataFrame:
+def tops_columns(p: PlacedLog, datum: str = "") -> Columns:
     """One row a marker, upward."""
     rows = []
     header, survey = p.log.header, p.companions.survey
@@ -87,7 +88,7 @@ def tops_frame(p: PlacedLog, datum: str = "") -> pd.DataFrame:
     return typed(rows, TOP_TYPES)
 
 
-def points_frame(p: PlacedLog, trends: Any = None) -> pd.DataFrame:
+def points_columns(p: PlacedLog, trends: Any = None) -> Columns:
     """Palaeocurrents as written and corrected, samples and photos; one row each, upward."""
     rows: list[dict[str, Any]] = []
     corrected = _corrected(trends)
@@ -110,7 +111,7 @@ def points_frame(p: PlacedLog, trends: Any = None) -> pd.DataFrame:
     return typed(rows, POINT_TYPES)
 
 
-def shifts_frame(p: PlacedLog) -> pd.DataFrame:
+def shifts_columns(p: PlacedLog) -> Columns:
     """The core-to-log shifts that were applied, m; a log without any gives one row that says so."""
     table = p.companions.shifts
     if table is None:
@@ -122,18 +123,22 @@ def shifts_frame(p: PlacedLog) -> pd.DataFrame:
     return typed(rows, SHIFT_TYPES)
 
 
-def typed(rows: list[dict[str, Any]], types: dict[str, str]) -> pd.DataFrame:
-    """Rows as a frame with these columns, in this order, each of its declared kind."""
-    kinds: dict[str, Any] = {"text": "string", "number": "float64", "whole": "Int64"}
-    columns: dict[str, Any] = {}
-    for name, kind in types.items():
-        values: list[Any] = [row.get(name) for row in rows]
-        if kind == "text":
-            values = [None if v is None or v == "" else str(v) for v in values]
-        elif kind == "number":
-            values = [math.nan if v is None or math.isinf(v) else round(float(v), 6) for v in values]
-        columns[name] = pd.Series(values, dtype=kinds[kind])
-    return pd.DataFrame(columns)
+def typed(rows: list[dict[str, Any]], types: dict[str, str]) -> Columns:
+    """Rows as columns in this order, each value of its declared kind, None where there is nothing."""
+    cast = {"text": _text, "number": _number, "whole": _whole}
+    return {name: [cast[kind](row.get(name)) for row in rows] for name, kind in types.items()}
+
+
+def _text(value: Any) -> str | None:
+    return None if value is None or value == "" else str(value)
+
+
+def _number(value: Any) -> float | None:
+    return None if value is None or not math.isfinite(value) else round(float(value), 6)
+
+
+def _whole(value: Any) -> int | None:
+    return None if value is None else int(value)
 
 
 def _interval(p: PlacedLog, i: int, bed: Bed, estimates: list[PhaseEstimate], verdict: str) -> dict[str, Any]:

@@ -58,12 +58,14 @@ class ManyWells:
 
     Attributes
     ----------
-    rows : rows of the tables of single wells, by table
+    columns : names of the columns of each table of single wells
+    rows : its rows, of all wells
     values : short series of each well for the tests between wells
     failures : (source, what went wrong)
     """
 
-    rows: dict[str, list[pd.DataFrame]] = field(default_factory=dict)
+    columns: dict[str, tuple[str, ...]] = field(default_factory=dict)
+    rows: dict[str, list[tuple[Any, ...]]] = field(default_factory=dict)
     values: dict[str, dict[str, NDArray[np.float32]]] = field(default_factory=dict)
     failures: list[tuple[str, str]] = field(default_factory=list)
 
@@ -71,7 +73,9 @@ class ManyWells:
         """The tables of all wells."""
         import pandas as pd
 
-        found = {name: pd.concat(parts, ignore_index=True) for name, parts in self.rows.items()}
+        found = {
+            name: pd.DataFrame(rows, columns=list(self.columns[name])) for name, rows in self.rows.items()
+        }
         found["differences"] = differences_frame(self.differences())
         return found
 
@@ -104,7 +108,7 @@ class _BedTrends:
 @dataclass(frozen=True, slots=True)
 class _Digest:
     files: WellFiles
-    rows: dict[str, Any]
+    rows: dict[str, tuple[tuple[str, ...], list[tuple[Any, ...]]]]
     values: dict[str, NDArray[np.float32]]
 
 
@@ -158,8 +162,9 @@ def process_wells(
                 continue
             for digest in answer:
                 writer.add(digest.files)
-                for name, frame in digest.rows.items():
-                    kept.rows.setdefault(name, []).append(frame)
+                for name, (columns, rows) in digest.rows.items():
+                    kept.columns.setdefault(name, columns)
+                    kept.rows.setdefault(name, []).extend(rows)
                 kept.values[_free(digest.files.name, kept.values)] = digest.values
             yield WellDone(job[0], number, len(jobs), tuple(d.files.name for d in answer))
     (target / "tables").mkdir(exist_ok=True)
@@ -210,7 +215,11 @@ def _one(
                 "packages": measures.packages_table(placed, [found]),
             }
             values = {k: v.astype(np.float32) for k, v in gather(placed[0], history).items()}
-            rows = {name: table for name, table in tables.items() if len(table)}
+            rows = {
+                name: (tuple(table.columns), list(table.itertuples(index=False, name=None)))
+                for name, table in tables.items()
+                if len(table)
+            }
             digests.append(_Digest(well_files(placed[0], history, found, step_m), rows, values))
         return digests
     except LogkitError as problem:
