@@ -63,6 +63,7 @@ _TEXTS = frozenset({
     "title", "section", "location", "coordinates", "coordinate_datum", "logged_by", "date", "grain_method",
     "sorting_of_sizes", "depth_reference",
 })  # fmt: skip
+_LONGEST = 200
 _LIMITS = {
     "water_temperature_c": (-2.0, 100.0, "°C"), "salinity": (0.0, 350.0, "practical salinity"),
     "grain_density_kg_m3": (500.0, 8000.0, "kg/m3"), "declination_deg": (-180.0, 180.0, "degrees"),
@@ -164,6 +165,10 @@ def read_value(name: str, text: str, unit: str | None) -> Reading[Any]:
     """The value of one header key."""
     if name in _TEXTS:
         return Reading(text)
+    if len(text) > _LONGEST:
+        return Reading(
+            None, (error("header.too_long", f"{name} has {len(text)} characters", "write one value"),)
+        )
     return _READERS[name](name, text, unit)
 
 

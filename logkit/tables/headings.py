@@ -41,6 +41,7 @@ _SIZES_WORDS = {
 }  # fmt: skip
 _PLACES = frozenset({"thickness", "base", "top", "position", "from", "to"})
 _MATTER = frozenset({"grain", "lithology", "grain_base", "grain_top", "structures"})
+_LONGEST_HEADING = 100
 _BRACKETS = re.compile(r"^(?P<name>.*?)\s*[\[({]\s*(?P<unit>[^\])}]*)\s*[\])}]\s*$")
 _SIZE_UNITS = {"phi": "phi", "φ": "phi", "Φ": "phi", "ϕ": "phi"}
 _OTHER_UNITS = {
@@ -99,6 +100,8 @@ def match_heading(heading: str, sizes: bool = False) -> tuple[str, str | None, b
     >>> match_heading("Top [ft]"), match_heading("base_m")
     (('top', 'ft', False), ('base', 'm', False))
     """
+    if len(heading) > _LONGEST_HEADING:
+        return "", None, False
     plain = " ".join(heading.replace("\ufeff", "").strip().strip("#:").split())
     if not plain:
         return "bed" if heading.strip() == "#" and not sizes else "", None, False

@@ -34,15 +34,9 @@ from logkit.tables.cells.sets import read_sets
 from logkit.tables.cells.structures import read_structures
 from logkit.tables.draft import Draft, Manner
 from logkit.tables.gaps import find_gap, gap_with_length
-from logkit.tables.sheet import Collector, column_letters
+from logkit.tables.refusals import refuse_cells
+from logkit.tables.sheet import Collector
 from logkit.vocabulary import vocabulary
-
-MEASURED = frozenset({
-    "base", "top", "thickness", "position", "from", "to", "grain", "grain_base", "grain_top", "largest",
-    "set_thickness", "set_count", "ripple_wavelength", "ripple_height", "wave_period", "relief", "palaeocurrent",
-    "flow_depth", "slope", "bioturbation",
-})  # fmt: skip
-"""Columns in which a date can only be a number or a size that the spreadsheet has changed."""
 
 ON_GAPS = frozenset({"name", "notes", "samples", "photos", "marker", "marker_sure", "confidence", "colour"})
 """Fields that a gap may have; a grain size in a gap is asked about."""
@@ -72,8 +66,7 @@ class RowReader:
 
     def read(self) -> None:
         """Everything the row says, into the draft."""
-        if self.manner.dates:
-            self._refuse_dates()
+        refuse_cells(self.draft, self.manner, self.found)
         self._position()
         self._gap()
         for column, read in _READERS.items():
@@ -107,22 +100,6 @@ class RowReader:
         """Give a field a value unless another cell gave it one already."""
         if value is not None and value != "" and value != () and not self.draft.fields.get(field):
             self.draft.fields[field] = value
-
-    def _refuse_dates(self) -> None:
-        for column, index in self.manner.places.items():
-            if column in MEASURED and (self.draft.row, index) in self.manner.dates:
-                address = f"{column_letters(index)}{self.draft.row}" if self.manner.addressed else ""
-                text = self.cells.pop(column, "")
-                self.add(
-                    "error",
-                    "cell.date",
-                    f"cell {address} holds the date {text}; a spreadsheet probably made it from a range",
-                    "format the column as text and type the value again",
-                    column,
-                    cell=f"{address}: {text}",
-                )
-                if column in ("thickness", "base", "top", "position", "from", "to"):
-                    self.draft.unplaced = True
 
     # -- positions ---------------------------------------------------------------------------------------------
 

@@ -16,6 +16,7 @@ from logkit.tables.sheet import Collector, Row, Sheet
 from logkit.tables.text import plain_cell
 
 _TOLERANCE_M = 1e-6
+_LONGEST_CELL = 100
 _SMALLEST_MM, _LARGEST_MM = 1e-5, 2e4
 
 
@@ -69,6 +70,11 @@ def _row(row: Row, headings: Headings, found: Collector) -> SizeRow | None:
     cells = {c.name: row.cells[c.index] for c in headings.columns if c.name and c.index < len(row.cells)}
     units = {c.name: c.unit for c in headings.columns if c.name}
     failed = len(found.found)
+    for name, text in cells.items():
+        if len(text) > _LONGEST_CELL and name not in ("method", "bed", "section"):
+            found.add("error", "cell.too_long", f"the cell has {len(text)} characters", "write one number",
+                      row=row.number, column=name, cell=text)  # fmt: skip
+            return None
     sizes = {
         name: _size(name, cells.get(name, ""), units.get(name), row, found)
         for name in ("d50", "d10", "d90", "d95")

@@ -98,9 +98,8 @@ def test_sets_and_beds(read) -> None:  # type: ignore[no-untyped-def]
 
 def test_relief_and_minimum_thickness(read) -> None:  # type: ignore[no-untyped-def]
     """An erosive base makes the bed beneath a minimum; relief larger than the bed is asked."""
-    log = read(
-        'bed,thickness,lith,contact\n1,40,sst,sharp\n2,30,sst,"ero, relief 12"\n3,20,sst,"ero, relief 35"\n4,9,sst,sharp\n'
-    )
+    rows = '1,40,sst,sharp\n2,30,sst,"ero, relief 12"\n3,20,sst,"ero, relief 35"\n4,9,sst,sharp\n'
+    log = read("bed,thickness,lith,contact\n" + rows)
     assert [bed.minimum_thickness for bed in log.beds] == [True, True, False, False]
     assert only(log, "contact.minimum_below").row == 7
     assert only(log, "contact.relief").row == 8
@@ -208,3 +207,15 @@ def test_a_workbook_unit_row(read) -> None:  # type: ignore[no-untyped-def]
     """A row of units below the headings gives the columns their units."""
     log = read("bed,thickness,lith\n,(m),\n1,0.4,sst\n")
     assert log.beds[0].thickness_m == 0.4
+
+
+def test_cells_too_long_for_shorthand(read) -> None:  # type: ignore[no-untyped-def]
+    """Text of a page in a cell for shorthand is refused at once; in the notes it is kept whole."""
+    long = "rippled and " * 200
+    log = read(f"bed,thickness,lith,structures,notes\n1,40,sst,{long},{long}\n2,{'1 ' * 400},sst,,\n")
+    assert [(f.row, f.column) for f in log.findings if f.code == "cell.too_long"] == [
+        (6, "structures"),
+        (7, "thickness"),
+    ]
+    assert log.beds[0].notes == long.strip()
+    assert len(log.beds) == 1

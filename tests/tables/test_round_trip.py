@@ -18,7 +18,7 @@ EXAMPLES = HERE.parents[1] / "examples"
 ALL_EXAMPLES = sorted(
     path.relative_to(EXAMPLES)
     for path in [*EXAMPLES.glob("*/*.csv"), *EXAMPLES.glob("*/*.xlsx")]
-    if path.suffixes in ([".csv"], [".xlsx"])
+    if path.suffixes in ([".csv"], [".xlsx"]) and "slips" not in path.stem  # that one has errors on purpose
 )
 
 _spec = importlib.util.spec_from_file_location("generated", HERE / "generated.py")
@@ -88,8 +88,6 @@ def test_a_frame_gives_the_same_beds(log: Log) -> None:
 def test_examples_come_back(name: Path, ending: str, tmp_path: Path) -> None:
     """Every example log, written and read again, is the same log with the same original wording."""
     log = read_log(EXAMPLES / name, on_errors="keep")
-    if log.count("error"):
-        pytest.skip("a table with errors has no whole log to compare")
     back = read_log(log.write(tmp_path / f"tidy{ending}"))
     assert back == log
     assert [bed.written for bed in back.beds] == [bed.written for bed in log.beds]
