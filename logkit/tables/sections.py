@@ -6,7 +6,7 @@ import json
 from itertools import groupby
 
 from logkit.tables.draft import Draft
-from logkit.tables.headings import Headings, match_heading
+from logkit.tables.headings import Headings
 from logkit.tables.sheet import Collector, Row, Sheet
 from logkit.tables.text import plain_cell
 
@@ -15,6 +15,7 @@ def rows_to_drafts(sheet: Sheet, headings: Headings, found: Collector) -> list[D
     """A draft for each row that holds anything; rows too long for the headings are refused."""
     drafts: list[Draft] = []
     width = len(headings.row.cells)
+    words = frozenset(cell.casefold() for cell in headings.row.cells if cell)
     known = [(c.index, c.name) for c in headings.columns if c.name]
     named = [(c.index, c.name or c.heading or f"column {c.index + 1}") for c in headings.columns]
     for row in sheet.rows:
@@ -32,7 +33,7 @@ def rows_to_drafts(sheet: Sheet, headings: Headings, found: Collector) -> list[D
                       f"the row has {len(cells)} cells under {width} headings",
                       "put cells that hold the separator (a decimal comma?) into quotation marks",
                       row=row.number, cell=extra)  # fmt: skip
-        elif _is_repeated_heading(row, headings):
+        elif _is_repeated_heading(row, words):
             found.add("note", "row.heading_again", "the headings stand here again; the row is left out", "",
                       row=row.number, cell=" | ".join(c for c in cells if c))  # fmt: skip
             continue
@@ -46,10 +47,9 @@ def rows_to_drafts(sheet: Sheet, headings: Headings, found: Collector) -> list[D
     return drafts
 
 
-def _is_repeated_heading(row: Row, headings: Headings) -> bool:
-    names = {c.name for c in headings.columns if c.name}
+def _is_repeated_heading(row: Row, headings: frozenset[str]) -> bool:
     cells = [cell for cell in row.cells if cell]
-    return len(cells) > 2 and all(match_heading(cell)[0] in names for cell in cells)
+    return len(cells) > 2 and all(cell.casefold() in headings for cell in cells)
 
 
 def _original(draft: Draft, found: Collector) -> tuple[tuple[str, str], ...]:
