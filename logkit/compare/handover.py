@@ -37,7 +37,7 @@ from logkit.compare.intervals import (
 from logkit.compare.las import las_text
 from logkit.compare.placing import PlacedLog, Thickness, place_logs
 from logkit.errors import ArgumentError, LogkitError
-from logkit.files import write_atomic
+from logkit.files import write_atomic, write_problem
 from logkit.model.caution import CAUTION
 
 if TYPE_CHECKING:
@@ -45,6 +45,9 @@ if TYPE_CHECKING:
     import pyarrow as pa
 
     from logkit.model import Log
+
+ROW_GROUP = 5000
+"""Rows of the Parquet file that are written at a time."""
 
 FILE_ENDINGS = (".csv", ".las", ".json", ".parquet")
 
@@ -164,6 +167,7 @@ class HandoverWriter:
         self._singles: list[Path] = []
         self._names: set[str] = set()
         self._open: dict[str, IO[str]] = {}
+        self._waiting: Columns = typed([], INTERVAL_TYPES)
         self._parquet: Any = None
         self._parquet_path: Path | None = None
         self._notes: list[str] = []
@@ -184,26 +188,21 @@ class HandoverWriter:
                 self._open[name].write(_csv(typed([], types)))
         except OSError as problem:
             self._drop()
-            raise LogkitError(
-                f"The folder {str(self.folder)!r} cannot be written: {problem.strerror}.",
-                "Choose another folder.",
-            ) from None
+            raise write_problem(self.folder, problem) from None
         return self
 
     def add(self, well: WellFiles) -> None:
         """Write one well: its parts of the tables, its LAS and JSON file."""
-        import pyarrow.parquet as pq
-
         name = self._free_name(well.name)
-        for table, part in well.parts.items():
-            self._open[table].write(part)
-        rows = _arrow(well.intervals)
-        if self._parquet is None:
-            handle, temporary = tempfile.mkstemp(dir=self.folder, prefix=".intervals.", suffix=".tmp")
-            os.close(handle)
-            self._parquet_path = Path(temporary)
-            self._parquet = pq.ParquetWriter(self._parquet_path, rows.schema)
-        self._parquet.write_table(rows)
+        try:
+            for table, part in well.parts.items():
+                self._open[table].write(part)
+            for column, values in well.intervals.items():
+                self._waiting[column].extend(values)
+            if len(self._waiting["bed"]) >= ROW_GROUP:
+                self._write_waiting()
+        except OSError as problem:
+            raise write_problem(self.folder, problem) from None
         if well.las:
             self._singles.append(_written(self.folder / "las" / f"{name}.las", well.las))
         self._singles.append(_written(self.folder / "json" / f"{name}.json", well.json))
@@ -213,6 +212,11 @@ class HandoverWriter:
         if kind is not None:
             self._drop()
             return
+        try:
+            self._write_waiting()
+        except OSError as failed:
+            self._drop()
+            raise write_problem(self.folder, failed) from None
         written = []
         for name, file in self._open.items():
             written.append(_renamed(file, self.folder / f"{name}.csv"))
@@ -229,6 +233,20 @@ class HandoverWriter:
         )
         written.append(_written(self.folder / "limits.txt", limits))
         self.written = (*written, *self._singles)
+
+    def _write_waiting(self) -> None:
+        """Write the intervals that wait, as one row group: many small ones would make the file slow to read."""
+        import pyarrow.parquet as pq
+
+        rows = _arrow(self._waiting)
+        if self._parquet is None:
+            handle, temporary = tempfile.mkstemp(dir=self.folder, prefix=".intervals.", suffix=".tmp")
+            os.close(handle)
+            self._parquet_path = Path(temporary)
+            self._parquet = pq.ParquetWriter(self._parquet_path, rows.schema)
+        self._parquet.write_table(rows)
+        for values in self._waiting.values():
+            values.clear()
 
     def _free_name(self, name: str) -> str:
         """A file name for a well that is not taken yet."""
@@ -385,8 +403,6 @@ def _written(target: Path, content: str | bytes) -> Path:
     try:
         target.parent.mkdir(parents=True, exist_ok=True)
     except OSError as problem:
-        raise LogkitError(
-            f"The folder {str(target.parent)!r} cannot be made: {problem.strerror}.", "Choose another folder."
-        ) from None
+        raise write_problem(target.parent, problem) from None
     write_atomic(target, content)
     return target
