@@ -91,7 +91,7 @@ def _text(cell: Any) -> str:
         return "yes" if cell else "no"
     if isinstance(cell, float):
         return "" if cell != cell else f"{cell:.4g}"
-    return "".join(c if c.isprintable() or c.isspace() else "�" for c in str(cell))
+    return "".join(c if c.isprintable() or c in "\n\t\u00a0\u202f" else "�" for c in str(cell))
 
 
 def _finite(value: Any) -> Any:
