@@ -19,6 +19,7 @@ from logkit.drawing.scene import Tally
 from logkit.drawing.shapes import Gradient, Group, Paint, Path, Shape, Sheet, Text, polyline
 from logkit.drawing.style import Style, load_style
 from logkit.drawing.tracks import TRACKS
+from logkit.words import digits
 
 BELOW_MM = 16.0
 """Room below the columns for their axes and names."""
@@ -178,7 +179,7 @@ def _said(plan: PanelPlan, comparison: Comparison, spacing: Spacing) -> list[str
     across = (plan.horizontal_m_per_mm or 0) * 1000
     return [
         where,
-        f"Vertical 1:{plan.scale:.4g}, between well axes 1:{across:.3g}; exaggeration × {plan.exaggeration:.2g}.",
+        f"Vertical 1:{plan.scale:.4g}, between well axes 1:{digits(across, 3)}; exaggeration × {digits(plan.exaggeration)}.",
     ]
 
 
