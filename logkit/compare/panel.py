@@ -177,10 +177,8 @@ def _said(plan: PanelPlan, comparison: Comparison, spacing: Spacing) -> list[str
     if spacing == "even" or plan.exaggeration is None:
         return [where, f"Vertical 1:{plan.scale:.4g}.", "Wells spaced evenly, not to scale."]
     across = (plan.horizontal_m_per_mm or 0) * 1000
-    return [
-        where,
-        f"Vertical 1:{plan.scale:.4g}, between well axes 1:{digits(across, 3)}; exaggeration × {digits(plan.exaggeration)}.",
-    ]
+    scales = f"Vertical 1:{plan.scale:.4g}, between well axes 1:{digits(across, 3)}"
+    return [where, f"{scales}; exaggeration × {digits(plan.exaggeration)}."]
 
 
 def _head(plan: PanelPlan, comparison: Comparison, width: float, spacing: Spacing) -> list[Shape]:
