@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from pathlib import Path
-from typing import Any
+from typing import Any, Literal
 
 import click
 
@@ -45,6 +45,13 @@ from logkit.errors import LogkitError
     default="even",
     help="Even, or by the distances in the headers.",
 )
+@click.option("--bands", is_flag=True, help="Tint every other interval between ties.")
+@click.option(
+    "--thickness",
+    type=click.Choice(["true", "vertical", "measured"]),
+    default="true",
+    help="What a height difference between wells means.",
+)
 @reading_options
 @flow_options
 @quiet_option
@@ -56,7 +63,9 @@ def command(
     suggest: bool,
     style: str,
     scale: str | None,
-    spacing: str,
+    spacing: Literal["even", "distance"],
+    bands: bool,
+    thickness: Literal["true", "vertical", "measured"],
     quiet: bool,
     **options: Any,
 ) -> int:
@@ -83,11 +92,12 @@ def command(
         histories=[run.history for run in outcome.runs],
         trends=[run.trends for run in outcome.runs],
         suggest_ties=suggest,
+        thickness=thickness,
     )
     if output:
-        draw_panel(
-            comparison, style=style, spacing=spacing, **({"scale": parse_scale(scale)} if scale else {})
-        ).save(output)
+        denominator = parse_scale(scale) if scale else None
+        panel = draw_panel(comparison, style=style, scale=denominator, spacing=spacing, bands=bands)
+        panel.save(output)
         say(f"Wrote {output}: {len(outcome.runs)} wells.", quiet)
     for name, frame in comparison.tables().items():
         if tables_to:

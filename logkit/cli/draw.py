@@ -81,7 +81,7 @@ def command(
             to_m=to_m,
             fit_height_mm=fit_height_mm,
             cut_gaps=cut_gaps,
-            **({"scale": parse_scale(scale)} if scale else {}),
+            scale=parse_scale(scale) if scale else None,
         )
         target = output
         if len(outcome.runs) > 1:
