@@ -80,7 +80,9 @@ def find_direction(drafts: Sequence[Draft], header: Header, stated: bool, found:
 
 
 def _looks_like_depth(drafts: Sequence[Draft]) -> bool:
-    return any("depth" in name.casefold() for d in drafts[:1] for name, _ in d.written)
+    """True when a column of positions is called a depth; a flow depth is no position."""
+    names = (name.casefold() for d in drafts[:1] for name, _ in d.written)
+    return any("depth" in name and not ("flow" in name or "water" in name) for name in names)
 
 
 def _turn(

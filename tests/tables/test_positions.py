@@ -4,10 +4,11 @@ from __future__ import annotations
 
 from pathlib import Path
 
+import pandas as pd
 import pytest
 
 from logkit.model import Finding, Log
-from logkit.tables import read_log
+from logkit.tables import log_from_frame, read_log
 
 
 @pytest.fixture
@@ -251,3 +252,15 @@ def test_a_pattern_downward_keeps_the_order_of_the_rows(read) -> None:  # type: 
     assert [bed.name for bed in log.beds] == ["2.4", "2.3", "2.2", "2.1", "1"]
     assert log.bed("2.1").thickness_m == pytest.approx(0.08)
     assert log.bed("2.1").top_m == log.bed("1").base_m
+
+
+def test_a_flow_depth_is_no_position() -> None:
+    """A column `flow_depth` says nothing about the direction of the log: it stays upward, without a question."""
+    frame = pd.DataFrame(
+        {"bed": ["1", "2"], "thickness (m)": [1, 2], "grain": ["mL", "fU"], "flow_depth (m)": ["2-3", ""]}
+    )
+    log = log_from_frame(frame, setting="river")
+    assert [bed.base_m for bed in log.beds] == [0.0, 1.0]
+    assert [bed.name for bed in log.beds] == ["1", "2"]
+    assert not log.count("question")
+    assert log.beds[0].flow_depth_m == (2.0, 3.0)
