@@ -24,7 +24,7 @@ from logkit.flow.criteria import (
     state_readings,
 )
 from logkit.flow.grid import Array, Grid
-from logkit.flow.phases import speaks, structure_term
+from logkit.flow.phases import SAND_MM, speaks, structure_term
 from logkit.flow.settings import flow_settings
 from logkit.flow.states import MOVING, skin_shear_velocity
 from logkit.hydraulics.settling import ferguson_church
@@ -45,6 +45,9 @@ HIDING_EXPONENT = 0.8
 
 NEVER_SUSPENDED_MM = 1.0
 """Coarser grains are not held up by turbulence alone (Lowe 1982)."""
+
+CEILING_TO_MM = 4.0
+"""Coarser grains are lifted by no flow of the grid: the ceiling says nothing there."""
 
 SUSPENSION_SIGMA = 0.20
 """Spread of the criteria of suspension, log10."""
@@ -123,7 +126,10 @@ def _bar_front(phase: Phase, context: Context) -> Hashable | None:
 
 
 def _stated_slope(phase: Phase, context: Context) -> Hashable | None:
+    """A stated slope, where the resistance of sand-bed rivers holds."""
     if context.slope is None or context.setting.name != "river" or phase.size is None:
+        return None
+    if not SAND_MM <= phase.size.middle_mm <= GRAVEL_MM:
         return None
     return (math.sqrt(context.slope[0] * context.slope[1]), math.log(context.slope[1] / context.slope[0]))
 
@@ -141,7 +147,7 @@ def _slope_likelihood(reading: tuple[float, float], cells: Cells) -> Array:
 
 def _suspension_ceiling(phase: Phase, context: Context) -> Hashable | None:
     """Coarse grains in a bed of a current were not carried in full suspension."""
-    if phase.size is None or phase.size.middle_mm < NEVER_SUSPENDED_MM:
+    if phase.size is None or not NEVER_SUSPENDED_MM <= phase.size.middle_mm <= CEILING_TO_MM:
         return None
     return "not suspended"
 

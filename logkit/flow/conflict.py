@@ -33,7 +33,7 @@ def strength(disagreement: Disagreement) -> Array:
     """
     decades = np.maximum(-disagreement.agreement, -np.log10(np.maximum(disagreement.support, 1e-30)))
     decades = np.maximum(decades, -np.log10(np.maximum(disagreement.expected, 1e-30)))
-    result: Array = np.clip(0.5 * decades, 0.0, 1.0)
+    result: Array = np.round(np.clip(0.5 * decades, 0.0, 1.0), 3) + 0.0  # no negative zero
     return result
 
 

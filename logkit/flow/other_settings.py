@@ -15,14 +15,14 @@ import numpy as np
 from logkit.flow.criteria import Context, criterion_texts
 from logkit.flow.grid import LEVELS, Array
 from logkit.flow.ledger import LedgerRow
-from logkit.flow.phases import structure_term
+from logkit.flow.phases import SAND_MM, structure_term
 from logkit.flow.settings import flow_settings
-from logkit.flow.states import Fluid
+from logkit.flow.states import D90_OVER_D50, Fluid
 from logkit.hydraulics import wave_ripples, waves, wind
 from logkit.hydraulics.bedstates import soft_edge
 from logkit.hydraulics.settling import ferguson_church
 from logkit.hydraulics.threshold import MEASURED_SIGMA_LOG10
-from logkit.model import Phase, PhaseEstimate, Quantiles, SizeInterval
+from logkit.model import WIND_TRANSPORT, Phase, PhaseEstimate, Quantiles, SizeInterval
 from logkit.registry import GRAVITY_M_S2
 
 SUSPENDED_LIMIT_MM = 1.0
@@ -30,6 +30,9 @@ SUSPENDED_LIMIT_MM = 1.0
 
 WIND_HEIGHT_M = 10.0
 """Height at which a wind speed is reported, m; the friction velocity is in the notes."""
+
+ANORBITAL_STEEPNESS = 0.10
+"""Height over spacing below which wave ripples are anorbital (Wiberg & Harris 1994)."""
 
 SHORT_PERIOD_S = 2.0
 """Period that gives the least orbital velocity where no period was stated, s."""
@@ -45,16 +48,15 @@ def no_estimate(phase: Phase, reason: str, *notes: str) -> Answered:
 # turbidity currents
 
 
-def read_density_current(phase: Phase, context: Context, code: str, read_tb: bool) -> Answered:
+def read_density_current(phase: Phase, context: Context, read_tb: bool) -> Answered:
     """A phase laid down by a turbidity current.
 
     Parameters
     ----------
     phase, context : the phase and what belongs to it
-    code : Bouma letter of its structure ("Ta"), "" when written in words
     read_tb : read Tb as dilute upper plane bed, by the user's choice
     """
-    division = bouma_division(phase.structure, code)
+    division = bouma_division(phase)
     size = phase.base_size or phase.size
     if division in ("Td", "Te"):
         return no_estimate(
@@ -62,6 +64,8 @@ def read_density_current(phase: Phase, context: Context, code: str, read_tb: boo
         )
     if size is None:
         return no_estimate(phase, "no grain size")
+    if size.middle_mm < SAND_MM and not phase.structure:
+        return no_estimate(phase, "mud")
     if division == "Ta":
         if size.middle_mm > SUSPENDED_LIMIT_MM:
             return no_estimate(
@@ -69,7 +73,7 @@ def read_density_current(phase: Phase, context: Context, code: str, read_tb: boo
                 "Grains above 1 mm are not held up by turbulence alone; the suspension rule does not hold.",
             )  # fmt: skip
         return _density_range(phase, context, size, "suspension",
-                              "grains held up at u* of 0.4 to 1.0 of their settling velocity")  # fmt: skip
+                              "coarse grains (D90) held up at u* of 0.4 to 1.0 of their settling velocity")  # fmt: skip
     if division == "Tc":
         return _density_range(phase, context, size, "turbidite_ripples",
                               "ripples: above the motion of the sand, below the plane-bed edge")  # fmt: skip
@@ -83,10 +87,11 @@ def read_density_current(phase: Phase, context: Context, code: str, read_tb: boo
     return _density_above(phase, context, size, "turbidite_motion", "the flow moved the sand along the bed")
 
 
-def bouma_division(structure: str, code: str = "") -> str:
-    """Bouma division of a structure, from its letter or its words; "" for traction of another kind."""
-    if code:
-        return code
+def bouma_division(phase: Phase) -> str:
+    """Bouma division of a phase, from its letter or its words; "" for traction of another kind."""
+    if phase.structure_code:
+        return phase.structure_code
+    structure = phase.structure
     term = structure_term(structure)
     if term is None:
         return ""
@@ -159,6 +164,10 @@ def density_quantiles(
     -------
     quantiles of u* and of U = u*/sqrt(Cd), m/s; of an edge: of the value at the edge
 
+    Notes
+    -----
+    It is the coarse part of a suspended load that tells how strong the current was, hence D90 and not D50.
+
     References
     ----------
     bagnold_1966, komar_1985, parker_1987
@@ -170,7 +179,8 @@ def density_quantiles(
     if criterion == "suspension":
         ends = np.log(numbers["suspension_low"]), np.log(numbers["suspension_high"])
         ratio = np.exp(ends[0] + (ends[1] - ends[0]) * (np.arange(32) + 0.5) / 32)
-        shear = ferguson_church(d, fluid.submerged_gravity, fluid.nu_m2_s)[:, None] * ratio[None, :]
+        coarse = D90_OVER_D50 * d
+        shear = ferguson_church(coarse, fluid.submerged_gravity, fluid.nu_m2_s)[:, None] * ratio[None, :]
         weight = np.ones_like(shear)
     elif criterion == "turbidite_ripples":
         theta = np.geomspace(0.005, 8.0, 240)[None, :]
@@ -226,18 +236,72 @@ def read_waves(phase: Phase, context: Context) -> Answered:
         return _hummocky(phase, context)
     if phase.structure == "combined_ripples":
         return no_estimate(phase, "waves and a current", "The share of the current is not determinable.")
-    orbital = orbital_velocity(phase, context)
-    if orbital is None:
+    if phase.structure == "wave_ripples":
+        orbital = orbital_velocity(phase, context)
+        if orbital is None:
+            return no_estimate(phase, "waves")
+        span = f"{orbital[0]:.2g}-{orbital[1]:.2g} m/s"
+        text = f"waves: orbital velocity {span}; no current velocity follows from it"
+        return no_estimate(phase, "waves", text, *_spacing_notes(phase, context))
+    term = structure_term(phase.structure)
+    plane = term is not None and (phase.structure == "plane_lamination" or term.bed_state == "upper_plane")
+    if term is not None and term.group == "current" and not plane:
+        return no_estimate(
+            phase, "waves and a current",
+            "A structure of a current in a setting of waves: they may have helped to make it.",
+        )  # fmt: skip
+    if phase.size is None or not SAND_MM <= phase.size.middle_mm <= 2.5:
         return no_estimate(phase, "waves")
-    text = (
-        f"waves: orbital velocity {orbital[0]:.1f}-{orbital[1]:.1f} m/s; no current velocity follows from it"
+    d, gravity = 1e-3 * phase.size.middle_mm, context.fluid.submerged_gravity
+    if plane:
+        least = float(waves.sheet_flow_velocity(d, gravity, "lower"))
+        why = "where waves laid down the plane beds, ripples were washed out"
+    else:
+        period = context.bed.wave_period_s or SHORT_PERIOD_S
+        least = float(waves.komar_miller_threshold(d, period, gravity))
+        why = "waves moved the sand"
+    return no_estimate(
+        phase, "waves", f"{why}: orbital velocity above {least:.2g} m/s; no current velocity follows from it"
     )
-    return no_estimate(phase, "waves", text)
+
+
+def _spacing_notes(phase: Phase, context: Context) -> tuple[str, ...]:
+    """What the spacing of wave ripples tells, if their size followed the orbit of the water.
+
+    References
+    ----------
+    miller_komar_1980, diem_1985, wiberg_harris_1994
+    """
+    bed = context.bed
+    spacing, height, period = bed.ripple_wavelength_m, bed.ripple_height_m, bed.wave_period_s
+    if spacing is None or phase.size is None:
+        return ()
+    if height is not None and height / spacing < ANORBITAL_STEEPNESS:
+        return (f"steepness {height / spacing:.2g}: anorbital ripples, whose spacing tells of no orbit",)
+    d = 1e-3 * phase.size.middle_mm
+    if spacing > float(wave_ripples.ripple_spacing_limit(d)):
+        return ("the spacing is above that of orbital ripples in this sand: it tells of no orbit",)
+    orbit = spacing / wave_ripples.ORBITAL_COEFFICIENT
+    longest = float(wave_ripples.longest_period(spacing, d, context.fluid.submerged_gravity))
+    notes = (
+        f"orbital ripples of this spacing: orbit {orbit:.2g} m wide at the bed, periods up to {longest:.2g} s",
+    )
+    if period is None or period <= longest:
+        return notes
+    return (
+        *notes,
+        f"the stated period of {period:g} s is longer: check the period, or the ripples are anorbital",
+    )
 
 
 def _hummocky(phase: Phase, context: Context) -> Answered:
     """Hummocks bound the current from above (Dumas & Arnott 2006); the wave motion goes into the notes."""
     limit = Quantiles(0.05, 0.05, 0.05, 0.10, 0.10)
+    spacing = context.bed.ripple_wavelength_m
+    orbit = () if spacing is None else (
+        f"spacing {spacing:.2g} m: orbit wider than {spacing / waves.hcs_spacing_over_orbital_maximum():.2g} m "
+        "at the bed",
+    )  # fmt: skip
     rate = waves.hcs_aggradation_rate(phase.structure)
     minutes = (phase.top_m - phase.base_m) / rate / 60.0
     estimate = PhaseEstimate(
@@ -246,7 +310,9 @@ def _hummocky(phase: Phase, context: Context) -> Answered:
         notes=(
             "waves: orbital velocity 0.5-0.9 m/s at periods of 8-10 s; the bound is on the current alone "
             "(0.05 m/s where hummocks are isotropic)",
-            f"laid down in about {_duration(minutes)} at the measured aggradation of {60e3 * rate:.2g} mm/min",
+            f"laid down in about {_duration(minutes)} at the aggradation of {60e3 * rate:.2g} mm/min measured "
+            "in a flume",
+            *orbit,
         ),
     )  # fmt: skip
     words = "a current above 0.05 to 0.10 m/s would stretch the hummocks into dune-like forms"
@@ -301,7 +367,7 @@ def read_wind(phase: Phase, context: Context) -> Answered:
     low, high = min(impact, fluid), max(impact, fluid)
     speeds = [u / 0.4 * math.log(WIND_HEIGHT_M / (1e-3 * size.middle_mm / 15.0)) for u in (low, high)]
     estimate = PhaseEstimate(
-        phase, "estimated", bound="above", limit_velocity_m_s=speeds[0], transport_mode="saltation in wind",
+        phase, "estimated", bound="above", limit_velocity_m_s=speeds[0], transport_mode=WIND_TRANSPORT,
         notes=(
             f"wind 10 m above the ground over {speeds[0]:.2g}-{speeds[1]:.2g} m/s; "
             f"its friction velocity over {low:.2g}-{high:.2g} m/s",

@@ -17,6 +17,9 @@ from logkit.vocabulary.terms import Term, vocabulary
 READING_GROUPS = ("current", "fallout", "wave", "wind")
 """Groups of structures that say something about the flow that laid the bed down."""
 
+SAND_MM = 0.0625
+"""Finest sand, mm."""
+
 NEW_STATE_PHI = 0.5
 """In-bed readings closer than this are one state: half a class, the usual error of a reading."""
 
@@ -38,8 +41,12 @@ def structure_term(structure: str) -> Term | None:
 def speaks(structure: Structure) -> bool:
     """True when a structure says something about the flow that laid the bed down."""
     term = structure_term(structure.term)
-    bouma = structure.code.startswith("T") and len(structure.code) == 2
-    return bouma or (term is not None and term.group in READING_GROUPS)
+    return bool(bouma_letter(structure)) or (term is not None and term.group in READING_GROUPS)
+
+
+def bouma_letter(structure: Structure) -> str:
+    """The Bouma letter a structure was written with ("Tb"), "" when it was written otherwise."""
+    return structure.code if structure.code.startswith("T") and len(structure.code) == 2 else ""
 
 
 def split_phases(log: Log, setting: str | None = None) -> tuple[Phase, ...]:
@@ -101,6 +108,7 @@ def split_bed(bed: Bed, section: str, setting: str, bed_index: int = 0) -> tuple
                 set_thickness=bed.set_thickness if makes_dunes else None,
                 contact=bed.contact if index == 0 else None,
                 bed_index=bed_index,
+                structure_code=bouma_letter(part.structure) if part.structure else "",
             )
         )
     return tuple(phases)
@@ -210,7 +218,7 @@ def _phase_setting(setting: str, structure: Structure | None, term: Term | None)
     """Setting of a phase; where the log names none, a structure that only one setting makes names it."""
     if setting != "unknown" or structure is None:
         return setting
-    if structure.code.startswith("T") and len(structure.code) == 2:
+    if bouma_letter(structure):
         return "turbidity"
     group = term.group if term else ""
     return {"wave": "waves", "wind": "wind"}.get(group, setting)

@@ -10,10 +10,11 @@ from dataclasses import dataclass, replace
 
 from logkit.errors import ArgumentError
 from logkit.flow import other_settings
+from logkit.flow.builtin_criteria import GRAVEL_MM, bed_states
 from logkit.flow.criteria import CRITERIA, ClastReading, Context, DepthReading
 from logkit.flow.grid import Grid
 from logkit.flow.other_settings import Answered, no_estimate
-from logkit.flow.phases import speaks, structure_term
+from logkit.flow.phases import SAND_MM, speaks, structure_term
 from logkit.flow.settings import PRIORS, Setting, flow_settings
 from logkit.flow.slices import Signature, size_steps
 from logkit.flow.solver import Case
@@ -33,7 +34,6 @@ ROCK_WORDS = {
 """Texture family of a lithology -> why there is no estimate without a structure that a current made."""
 
 NEVER = ("evaporite", "chert", "iron", "coal", "lava", "crystalline")
-SAND_MM = 0.0625
 
 
 @dataclass(frozen=True, slots=True)
@@ -166,20 +166,16 @@ class Reader:
         group = term.group if term else ""
         reading = context.setting.reading
         if group == "wind" or (reading == "wind" and group != "wave"):
-            return other_settings.read_wind(phase, context)
+            return _strange(other_settings.read_wind(phase, context), group, "wind", phase)
         if group == "wave" or reading == "waves":
-            return other_settings.read_waves(phase, context)
+            return _strange(other_settings.read_waves(phase, context), group, "waves", phase)
         if reading == "combined":
             return no_estimate(
                 phase, "waves and a current",
                 "The share of the current is not determinable from this structure.",
             )  # fmt: skip
         if reading == "density":
-            code = next(
-                (s.code for s in context.bed.structures if s.term == phase.structure and s.code[:1] == "T"),
-                "",
-            )
-            return other_settings.read_density_current(phase, context, code, self.options.read_tb)
+            return other_settings.read_density_current(phase, context, self.options.read_tb)
         return None
 
     def _current(self, phase: Phase, context: Context) -> Reading | Answered:
@@ -193,6 +189,10 @@ class Reader:
             return no_estimate(phase, "outside validity" if outside else "no grain size")
         if size is not None and size.middle_mm < SAND_MM and "bed_state" not in ids:
             return no_estimate(phase, "mud", *_mud_notes(size, context))
+        if size is not None and size.middle_mm < SAND_MM and _only_plane(phase):
+            return no_estimate(
+                phase, "outside validity", "Silt is laminated by fall-out as well as by plane beds."
+            )
         if size is None:
             clast = next(r.phi for _, r in factors if isinstance(r, ClastReading))
             size = SizeInterval(2.0 ** -(clast + 0.25), 2.0 ** -(clast - 0.25))
@@ -200,7 +200,10 @@ class Reader:
             return no_estimate(phase, "outside validity", f"Sizes are read from {_GRID_WORDS}.")
         for _, depth in depths:
             if not Grid.depth_limits[0] <= depth.median_m <= Grid.depth_limits[1]:
-                return no_estimate(phase, "outside validity", f"Depths are read from {_DEPTH_WORDS}.")
+                return no_estimate(
+                    phase, "outside validity",
+                    f"It says a depth of {depth.median_m:.2g} m; depths are read from {_DEPTH_WORDS}.",
+                )  # fmt: skip
         signature = Signature(
             self._prior(context, size), context.fluid, size_steps(size.coarse_phi, size.fine_phi), factors
         )
@@ -223,6 +226,20 @@ class Reader:
         if sizes is not None and not sizes[0] <= size.middle_mm <= sizes[1]:
             return "broad"
         return name
+
+
+WAVES_ARE_STRANGE = ("river", "turbidity", "wind")
+WIND_IS_STRANGE = ("turbidity", "waves", "combined")
+
+
+def _strange(answer: Answered, group: str, maker: str, phase: Phase) -> Answered:
+    """The answer, with a word where the setting of the log does not make such a structure."""
+    settings = WAVES_ARE_STRANGE if maker == "waves" else WIND_IS_STRANGE
+    if group not in ("wave", "wind") or phase.setting not in settings:
+        return answer
+    estimate, rows = answer
+    note = f"A structure made by {maker} in a log of the setting {phase.setting}: check one of the two."
+    return replace(estimate, notes=(*estimate.notes, note)), rows
 
 
 def _stated(
@@ -252,8 +269,7 @@ def _on_grid(size: SizeInterval) -> bool:
 
 def _refusal(phase: Phase, bed: Bed) -> Answered | None:
     """No estimate because of what the rock is; None when it may be read."""
-    lithologies = vocabulary("lithologies")
-    family = lithologies[bed.lithology].family if bed.lithology in lithologies else ""
+    family = _family(bed)
     term = structure_term(phase.structure)
     traction = term is not None and term.group in ("current", "wave", "wind")
     if family in NEVER or (family in ROCK_WORDS and not traction):
@@ -264,6 +280,27 @@ def _refusal(phase: Phase, bed: Bed) -> Answered | None:
     if phase.size is None and phase.largest_mm is None and family in ("mud", "organic_mud"):
         return no_estimate(phase, "mud")
     return None
+
+
+def _family(bed: Bed) -> str:
+    """Texture family of the bed's rock, "" when it is not known."""
+    lithologies = vocabulary("lithologies")
+    return lithologies[bed.lithology].family if bed.lithology in lithologies else ""
+
+
+def _only_plane(phase: Phase) -> bool:
+    """True for a structure that plane beds alone can make under a current."""
+    return bool(phase.structure) and set(bed_states((phase.structure,))) in (
+        {"lower_plane", "upper_plane"}, {"upper_plane"}, {"lower_plane"},
+    )  # fmt: skip
+
+
+def _told_apart(bed: Bed) -> int:
+    """Number of ways in which the structures of a bed are read; "no structure" is one of them."""
+    return len(
+        {states for s in bed.structures if speaks(s)
+         if (states := bed_states((s.term,))) or s.term == "massive"}
+    )  # fmt: skip
 
 
 def _mud_notes(size: SizeInterval, context: Context) -> tuple[str, ...]:
@@ -287,17 +324,23 @@ def _notes(
     sets = phase.set_thickness
     if sets is not None and sets.mean_m is None and any(id == "dune_sets" for id, _ in depths):
         notes.append("No mean of the sets was written: the geometric middle of their range was taken.")
-    if context.slope is not None and context.setting.name != "river":
-        notes.append("The slope was not used: its resistance relation is for rivers only.")
+    if context.slope is not None and (
+        context.setting.name != "river" or not SAND_MM <= size.middle_mm <= GRAVEL_MM
+    ):
+        notes.append("The slope was not used: its resistance relation is for rivers with a bed of sand.")
     if not size.sure or not phase.structure_sure:
         notes.append("Size or structure was written as uncertain.")
-    if size.middle_mm > 2.0:
+    if size.middle_mm > GRAVEL_MM:
         notes.append("Coarser than the sand (0.06 to 2 mm) for which the bed states were observed.")
     if size.middle_mm < SAND_MM:
         notes.append("Finer than the sand (0.06 to 2 mm) for which the bed states were observed.")
     if phase.largest_mm is not None and phase.size is None:
         notes.append("The matrix was not described; the clast was taken as four times its bed's median size.")
-    if context.whole_bed and sum(speaks(s) for s in context.bed.structures) > 1:
+    if _family(context.bed) in ("carbonate", "marl", "dolomite"):
+        notes.append(
+            "Carbonate grains differ from quartz in density and shape; the relations are for quartz."
+        )
+    if context.whole_bed and _told_apart(context.bed) > 1:
         notes.append("Several structures without recorded places: each of them may have been the last.")
     if phase.setting == "unknown":
         notes.append("The setting is unknown: read as a one-way current of water, with no prior.")

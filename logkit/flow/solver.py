@@ -19,6 +19,9 @@ from logkit.flow.slices import Signature, SliceStore
 from logkit.flow.states import MOVING
 
 LEDGER_LEVELS = (0.10, 0.50, 0.90)
+STATE_SHARE = 0.8
+"""Share of the mass from which one of the states that can make a structure is named."""
+
 CHUNK = 2048
 """Beds answered in one pass, so that memory does not grow with the log."""
 
@@ -240,14 +243,17 @@ class Solver:
         return Disagreement(agreement, 10.0**ln_support, expected)
 
     def likely_states(self, batch: Batch) -> list[str]:
-        """The bed state of every bed: the structure's, or the most probable one where it has half the mass."""
+        """The bed state of every bed: the structure's, or the one of several that has `STATE_SHARE` of the mass.
+
+        A bed without a structure has none, however probable a state is in its flows.
+        """
         shares = np.zeros((len(batch.signatures), len(MOVING), self.grid.depth.count))
         for row, signature in enumerate(batch.signatures):
             for place, (id, reading) in enumerate(signature.factors):
                 if CRITERIA[id].kind != "state":
                     continue
                 for column, state in enumerate(MOVING):
-                    if state in reading or reading == ("moved",):  # type: ignore[operator]
+                    if state in reading:  # type: ignore[operator]
                         factors = list(signature.factors)
                         factors[place] = (id, (state,))
                         one = replace(signature, factors=tuple(factors))
@@ -259,7 +265,7 @@ class Solver:
             weights = self.depth_weights(batch, beds)
             mass = _gathered(flat, batch, chunk).reshape(len(MOVING), -1, len(beds))
             by_bed = (mass * weights).sum(axis=1)
-            sure = by_bed.max(axis=0) >= np.maximum(0.5 * by_bed.sum(axis=0), 1e-30)
+            sure = by_bed.max(axis=0) >= np.maximum(STATE_SHARE * by_bed.sum(axis=0), 1e-30)
             best = by_bed.argmax(axis=0)
             for bed, state in zip(beds[sure].tolist(), best[sure].tolist(), strict=True):
                 names[bed] = MOVING[state]

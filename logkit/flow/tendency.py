@@ -98,7 +98,7 @@ def find_tendencies(
         if estimates[i].phase.bed_index in gaps or estimates[j].phase.bed_index in gaps:
             result.append(None)
             continue
-        waxing, steady = compared.get((i, j)) or _compare_density(estimates[i], estimates[j], log)
+        waxing, steady = compared.get((i, j)) or _compare_density(estimates[i], estimates[j])
         result.append(_transition(estimates[i], estimates[j], waxing, steady, (i, j) in compared, log))
     return tuple(result)
 
@@ -226,20 +226,21 @@ def _chances(first: Array, second: Array, solver: Solver) -> tuple[Array, Array]
     return waxing, np.maximum(steady, 0.0)
 
 
-def _compare_density(
-    below: PhaseEstimate, above: PhaseEstimate, log: Log
-) -> tuple[float | None, float | None]:
-    """P(faster) in a turbidity current: drag cancels; between two suspended loads u*/ws does as well."""
+def _compare_density(below: PhaseEstimate, above: PhaseEstimate) -> tuple[float | None, float | None]:
+    """P(faster) inside the bed of a turbidity current: drag cancels; between two suspended loads u*/ws as well.
+
+    Two beds are two currents, however much one cuts into the other: they are not compared.
+    """
     if (
         not (_has_range(below) and _has_range(above))
         or below.shear_velocity is None
         or above.shear_velocity is None
     ):
         return None, None
-    if below.phase.setting != "turbidity" or above.phase.setting != "turbidity":
+    if not _one_current(below, above):
         return None, None
     numbers = flow_settings().tendency
-    both = all(e.transport_mode == "suspension" for e in (below, above))
+    both = _both_suspended(below, above)
     sizes = [below.phase.size, above.phase.size]
     if both and sizes[0] is not None and sizes[1] is not None:
         ends = [_settling(size) for size in sizes if size is not None]
@@ -251,7 +252,19 @@ def _compare_density(
         middle = math.log(second.p50 / first.p50)
         spread = math.hypot(*(math.log(q.p90 / q.p10) / 2.563 for q in (first, second)))
     ratio = math.log(numbers["steady_ratio"])
-    return _normal(middle / spread), _normal((ratio - middle) / spread) - _normal((-ratio - middle) / spread)
+    doubt = numbers["doubt"]
+    waxing = doubt + (1 - 2 * doubt) * _normal(middle / spread)
+    return waxing, _normal((ratio - middle) / spread) - _normal((-ratio - middle) / spread)
+
+
+def _one_current(below: PhaseEstimate, above: PhaseEstimate) -> bool:
+    """True for two phases of one bed of a turbidity current."""
+    first, second = below.phase, above.phase
+    return first.setting == second.setting == "turbidity" and first.bed_index == second.bed_index
+
+
+def _both_suspended(below: PhaseEstimate, above: PhaseEstimate) -> bool:
+    return all(e.transport_mode == "suspension" for e in (below, above))
 
 
 def _settling(size: SizeInterval) -> tuple[float, float]:
@@ -280,14 +293,17 @@ def _transition(
     change = _size_change(below, above)
     structure = waxing
     thin = log.beds[second.bed_index].thickness_m < numbers["thin_inverse_m"]
-    measured_by_size = waxing is not None and not on_grid
+    measured_by_size = waxing is not None and not on_grid and _both_suspended(below, above)
+    if measured_by_size and waxing is not None and waxing > 0.5:
+        # A traction carpet or sieving sorts grains the same way: sizes alone never prove a waxing current.
+        waxing, steady = (None, None) if thin else (min(waxing, numbers["inverse_alone"]), steady)
     graded = within and change is not None and abs(change) >= GRADED_PHI and not measured_by_size
     if graded and change is not None and not (change < 0 and thin):
         weight = numbers["grading_weight"] * (1 - math.exp(-abs(change) / numbers["grading_scale_phi"]))
         chance = 0.5 - math.copysign(weight, change)
         base = 0.5 if waxing is None else min(max(waxing, 1e-6), 1 - 1e-6)
         waxing = base * chance / (base * chance + (1 - base) * (1 - chance))
-    steps = _divisions(below, above, log) if within else 0
+    steps = _divisions(below, above) if within else 0
     if steps:
         chance = 0.5 - math.copysign(numbers["division_weight"], steps)
         base = 0.5 if waxing is None else min(max(waxing, 1e-6), 1 - 1e-6)
@@ -302,23 +318,22 @@ def _transition(
         tendency = "waning"
     grading = "" if change is None or abs(change) < GRADED_PHI else ("fining" if change > 0 else "coarsening")
     agreement = _agreement(grading, structure if on_grid else None, within, thin, measured_by_size)
+    if not within and first.setting == second.setting == "turbidity":
+        agreement = "each bed is a current of its own"
     if steps:
         order = "rising" if steps > 0 else "falling back"
+        if grading and (grading == "fining") != (steps > 0):
+            agreement = f"{grading} points the other way: they disagree"
         agreement = "; ".join(filter(None, (f"Bouma divisions {order} in the bed", agreement)))
     return Transition(first.section, first.bed, first.index, second.bed, second.index, within, tendency,
                       probability, waxing, grading, agreement)  # fmt: skip
 
 
-def _divisions(below: PhaseEstimate, above: PhaseEstimate, log: Log) -> int:
+def _divisions(below: PhaseEstimate, above: PhaseEstimate) -> int:
     """Steps between the Bouma divisions of two phases; 0 where they have none. Rising means falling stress."""
     if below.phase.setting != "turbidity" or above.phase.setting != "turbidity":
         return 0
-    order = []
-    for phase in (below.phase, above.phase):
-        codes = {s.term: s.code for s in log.beds[phase.bed_index].structures if s.code[:1] == "T"}
-        order.append(
-            " abcde".find(bouma_division(phase.structure, codes.get(phase.structure, ""))[1:] or "-")
-        )
+    order = [" abcde".find(bouma_division(phase)[1:] or "-") for phase in (below.phase, above.phase)]
     return order[1] - order[0] if min(order) > 0 else 0
 
 
@@ -332,6 +347,9 @@ def _size_change(below: PhaseEstimate, above: PhaseEstimate) -> float | None:
 def _agreement(grading: str, structure: float | None, within: bool, thin: bool, by_size: bool) -> str:
     """How the grain-size change and the structures fit together."""
     if by_size:
+        if grading == "coarsening":
+            layer = "in so thin a layer" if thin else "without a change of structure"
+            return f"inverse grading {layer} is no proof of waxing"
         return "the sizes themselves measure the suspension" if grading else ""
     from_structure = ""
     if structure is not None:

@@ -80,9 +80,10 @@ def _answer(estimate: PhaseEstimate) -> str:
     if estimate.status == "no estimate":
         return f"no estimate ({estimate.reason})"
     if estimate.bound == "above" and estimate.limit_velocity_m_s is not None:
-        what = "the wind was" if estimate.transport_mode == "saltation in wind" else "the flow was"
         limit = f"{estimate.limit_velocity_m_s:.2g} m/s"
-        return f"{what} faster than {limit} (nine chances in ten); no upper limit is known"
+        if estimate.is_wind:
+            return f"the wind 10 m above the ground was faster than {limit}; no upper limit is known"
+        return f"the flow was faster than {limit} (nine chances in ten); no upper limit is known"
     if estimate.bound == "below" and estimate.limit_velocity_m_s is not None:
         return f"the current was slower than {estimate.limit_velocity_m_s:.2g} m/s"
     parts = []

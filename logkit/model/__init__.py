@@ -15,7 +15,7 @@ from logkit.model.bed import (
 )
 from logkit.model.caution import CAUTION, CAUTION_SHORT
 from logkit.model.finding import LEVELS, Finding, Level
-from logkit.model.flow import Bound, Clash, Phase, PhaseEstimate, Quantiles, Tendency
+from logkit.model.flow import WIND_TRANSPORT, Bound, Clash, Phase, PhaseEstimate, Quantiles, Tendency
 from logkit.model.log import LOG_TOOLS, SETTINGS, Header, Log
 from logkit.model.trend import CurrentSummary, Grading, GradingWord, Package
 
@@ -25,6 +25,7 @@ __all__ = [
     "LEVELS",
     "LOG_TOOLS",
     "SETTINGS",
+    "WIND_TRANSPORT",
     "Bed",
     "Bioturbation",
     "Bound",

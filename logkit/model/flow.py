@@ -10,6 +10,9 @@ from logkit.model.bed import Contact, SetThickness, SizeInterval
 Bound = Literal["range", "above", "below", ""]
 Tendency = Literal["waxing", "waning", "steady", "not determinable"]
 
+WIND_TRANSPORT = "saltation in wind"
+"""Transport mode of every estimate whose velocity is that of a wind."""
+
 
 @dataclass(frozen=True, slots=True)
 class Quantiles:
@@ -30,6 +33,7 @@ class Phase:
         divided evenly for want of a record, "bed" when the phase is the whole bed
     base_size, top_size : size at the base and the top of the phase
     structure : vocabulary id, "" for none recorded
+    structure_code : Bouma letter it was written with ("Tb"), "" when it was written otherwise
     """
 
     section: str
@@ -47,6 +51,7 @@ class Phase:
     set_thickness: SetThickness | None = None
     contact: Contact | None = None
     bed_index: int = 0
+    structure_code: str = ""
 
     @property
     def size(self) -> SizeInterval | None:
@@ -110,3 +115,8 @@ class PhaseEstimate:
     tendency: Tendency = "not determinable"
     tendency_probability: float | None = None
     notes: tuple[str, ...] = ()
+
+    @property
+    def is_wind(self) -> bool:
+        """True when the velocity is that of the wind 10 m above the ground, and not of water."""
+        return self.transport_mode == WIND_TRANSPORT

@@ -146,4 +146,4 @@ def test_the_formulas_behind_a_history_are_registered(history: FlowHistory) -> N
 def test_wind_is_called_wind_in_any_setting() -> None:
     """A wind-made structure in a river log speaks of wind and not of the river."""
     found = infer_flow(log(bed("fU", "wind_ripple_lamination")))
-    assert "the wind was faster than" in found.explain("1")[0]
+    assert "the wind 10 m above the ground was faster than" in found.explain("1")[0]

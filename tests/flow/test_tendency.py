@@ -128,3 +128,34 @@ def test_bouma_divisions_read_upward_mean_a_waning_flow() -> None:
         assert history.tendency[0] is not None
         assert history.tendency[0].tendency == word
         assert "Bouma divisions" in history.tendency[0].agreement
+
+
+def test_sizes_alone_never_make_a_turbidity_current_wax() -> None:
+    """Inverse grading of a suspended load: silent in a thin layer, no more than a leaning in a thick one."""
+    states = (GrainState(0.0, size("fL")), GrainState(1.0, size("mU")))
+    ta = (Structure("massive", code="Ta"),)
+    for top_m, chance in ((0.05, None), (0.6, 0.7)):
+        history = infer_flow(log(Bed("1", 0.0, top_m, grain=states, structures=ta), setting="turbidity"))
+        transition = history.tendency[0]
+        assert transition is not None
+        assert (transition.tendency, transition.probability) == ("not determinable", chance)
+        assert "no proof of waxing" in transition.agreement
+
+
+def test_no_probability_of_a_suspension_is_one() -> None:
+    """However far the sizes fall, a share of doubt stays."""
+    states = (GrainState(0.0, size("cU")), GrainState(1.0, size("vfL")))
+    found = infer_flow(
+        log(Bed("1", 0.0, 1.0, grain=states, structures=(Structure("massive"),)), setting="turbidity")
+    ).tendency[0]
+    assert found is not None
+    assert (found.tendency, found.probability) == ("waning", pytest.approx(0.98, abs=0.001))
+
+
+def test_each_turbidite_is_a_current_of_its_own() -> None:
+    """Amalgamated beds are not one flow that waxed."""
+    fine, coarse = (bed(g, "massive") for g in ("fL", "mU"))
+    transition = infer_flow(log(fine, coarse, setting="turbidity")).tendency[0]
+    assert transition is not None
+    assert (transition.tendency, transition.probability) == ("not determinable", None)
+    assert transition.agreement == "each bed is a current of its own"

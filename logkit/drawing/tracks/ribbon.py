@@ -188,6 +188,8 @@ def _bound(
     reach = min(7.0, axis.x1 - x - 0.2) if above else min(7.0, x - axis.x0 - 0.2)
     tip = x + max(reach, 2.0) * (1 if above else -1)
     words = "at least" if above else "at most"
+    if estimate.is_wind:
+        words = f"wind 10 m up: {words}"
     return arrow(scene, x, tip, span, words, (axis.x0, axis.x1))
 
 
