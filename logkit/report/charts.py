@@ -103,11 +103,13 @@ def bed_state_plane(well: Well) -> Picture | None:
                 continue
             middle = size.middle_mm / 1000
             low, mid, high = (v**2 / (R_QUARTZ * GRAVITY_M_S2 * middle) for v in (u.p10, u.p50, u.p90))
-            bars.append([(size.middle_mm, low), (size.middle_mm, high)])
-            bars.append([(size.low_mm, mid), (size.high_mm, mid)])
+            bars.append(((size.middle_mm, low), (size.middle_mm, high)))
+            bars.append(((size.low_mm, mid), (size.high_mm, mid)))
             points.append((size.middle_mm, mid))
-        axes.add_collection(LineCollection(bars, colors=EDGE, linewidths=0.5, alpha=0.7, zorder=3))
-        axes.plot(*zip(*points, strict=True), ".", color=INK, ms=3, zorder=4)
+        axes.add_collection(
+            LineCollection(list(dict.fromkeys(bars)), colors=EDGE, linewidths=0.5, alpha=0.7, zorder=3)
+        )
+        axes.plot(*zip(*dict.fromkeys(points), strict=True), ".", color=INK, ms=3, zorder=4)
         axes.set(xscale="log", yscale="log", xlim=(0.06, 4), ylim=(0.01, 10))
         axes.set(xlabel="grain size, mm", ylabel="grain Shields number")
         _plain_ticks(axes, (0.0625, 0.125, 0.25, 0.5, 1, 2, 4))
@@ -138,10 +140,14 @@ def velocity_size_chart(well: Well) -> Picture | None:
             if size is None or v is None:
                 continue
             left, right = size.low_mm, size.high_mm
-            boxes.append([(left, v.p10), (right, v.p10), (right, v.p90), (left, v.p90)])
-            lines.append([(left, v.p50), (right, v.p50)])
-        axes.add_collection(PolyCollection(boxes, facecolors=OUTER, edgecolors="none", alpha=0.35, zorder=3))
-        axes.add_collection(LineCollection(lines, colors=EDGE, linewidths=0.8, zorder=4))
+            boxes.append(((left, v.p10), (right, v.p10), (right, v.p90), (left, v.p90)))
+            lines.append(((left, v.p50), (right, v.p50)))
+        axes.add_collection(
+            PolyCollection(
+                list(dict.fromkeys(boxes)), facecolors=OUTER, edgecolors="none", alpha=0.35, zorder=3
+            )
+        )
+        axes.add_collection(LineCollection(list(dict.fromkeys(lines)), colors=EDGE, linewidths=0.8, zorder=4))
         axes.set(xscale="log", yscale="log", xlim=(0.002, 100), ylim=(0.001, 10))
         axes.set(xlabel="grain size, mm", ylabel="mean velocity, m/s")
         _plain_ticks(axes, (0.002, 0.0156, 0.0625, 0.25, 1, 4, 16, 64))

@@ -32,7 +32,6 @@ class Column:
     name: str
     unit: str = ""
     align: Literal["left", "right"] = "left"
-    width: float = 1.0
 
     @property
     def label(self) -> str:

@@ -9,7 +9,7 @@ from logkit.drawing.shapes import Group, Paint, Path, Shape, Sheet, Text, polyli
 from logkit.drawing.svg import sheet_svg
 from logkit.model import PhaseEstimate, Quantiles
 from logkit.report.wells import Well, depth_or_height
-from logkit.report.wording import Units
+from logkit.report.wording import FEET, Units
 
 WIDTH, LEFT, RIGHT, TOP, FOOT = 170.0, 22.0, 164.0, 12.0, 12.0
 INK, SOFT, GRID, OUTER, INNER = "#1d2430", "#575e69", "#d5d8db", "#b2dbea", "#6bb0c8"
@@ -110,16 +110,17 @@ def _axes(frame: _Frame) -> Iterator[Shape]:
         bold=True,
         anchor="middle",
     )
-    span = frame.units.number(frame.top - frame.base)
-    step = next((s for s in Y_STEPS if span / s <= 12), Y_STEPS[-1])
-    sign = -1 if frame.well.log.header.direction == "down" else 1
-    first = math.ceil(frame.units.number(frame.base) / step - 1e-9)
-    last = math.floor(frame.units.number(frame.top) / step + 1e-9)
+    unit = frame.well.position_unit(frame.units)
+    metres = FEET if unit == "ft" else 1.0
+    step = next((s for s in Y_STEPS if (frame.top - frame.base) / metres / s <= 12), Y_STEPS[-1])
+    sign = -1 if frame.well.downward else 1
+    first = math.ceil(frame.base / metres / step - 1e-9)
+    last = math.floor(frame.top / metres / step + 1e-9)
     for n in range(first, last + 1):
-        y = frame.y(n * step * (0.3048 if frame.units.feet else 1.0))
+        y = frame.y(n * step * metres)
         yield Path(polyline([(LEFT - 1.5, y), (RIGHT, y)]), Paint(stroke=GRID, width=0.125))
         yield Text((LEFT - 2.2, y + 0.8), f"{sign * n * step:g}", 6, INK, anchor="end")
-    word = f"{depth_or_height(frame.well)}, {frame.units.length}"
+    word = f"{depth_or_height(frame.well)}, {unit}"
     yield Text((7.0, (low + high) / 2), word, 7, INK, bold=True, anchor="middle", turn=-90.0)
     yield Path(
         polyline([(LEFT, low), (RIGHT, low), (RIGHT, high), (LEFT, high)], True),

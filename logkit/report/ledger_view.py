@@ -13,7 +13,7 @@ from logkit.flow import FlowHistory
 from logkit.flow.ledger import LedgerRow
 from logkit.references import cited
 from logkit.report.wording import Units
-from logkit.words import digits
+from logkit.words import NO_BREAK, digits
 
 
 @dataclass(frozen=True, slots=True)
@@ -96,9 +96,9 @@ def phase_ledgers(history: FlowHistory, units: Units) -> Iterator[PhaseLedger]:
 
 def _velocity(bound: str, low: float | None, high: float | None, units: Units) -> str:
     if bound == "above" and low is not None:
-        return f"above {digits(units.number(low))}"
+        return f"above{NO_BREAK}{digits(units.number(low))}"
     if bound == "below" and high is not None:
-        return f"below {digits(units.number(high))}"
+        return f"below{NO_BREAK}{digits(units.number(high))}"
     if low is None or high is None:
         return ""
     return f"{digits(units.number(low))}–{digits(units.number(high))}"

@@ -69,16 +69,9 @@ def bed_records(well: Well, units: Units, first_ledger: int = 0) -> Iterator[dic
         }
 
 
-LONG_LOG = 250
-"""Beds above which the page's column goes without texture dots, to keep the file small."""
-
-
 def page_columns(well: Well, settings: ReportSettings) -> list[Figure]:
-    """The column of a log for the page: bed groups named by their keys; without dots for a long log."""
-    dots = len(well.log.beds) <= LONG_LOG
-    return [
-        replace(figure, svg=_keyed(figure.svg)) for figure in parts_log.columns(well, settings, dots=dots)
-    ]
+    """The column of a log for the page: bed groups named by their keys."""
+    return [replace(figure, svg=_keyed(figure.svg)) for figure in parts_log.columns(well, settings)]
 
 
 def _keyed(svg: str) -> str:
@@ -100,9 +93,11 @@ def _facts(well: Well, bed: Bed, units: Units) -> list[tuple[str, str]]:
             f", probability {grading.probability:.2f}" if grading.probability else ""
         )
         verdict += f" ({grading.basis})" if grading.basis else ""
-    where = f"{units.height(bed.base_m)} to {units.height_words(bed.top_m)}"
-    if bed.depth_base is not None and bed.depth_top is not None:
-        where = f"{bed.depth_top:g} to {bed.depth_base:g} {well.log.header.unit} as written"
+    where = (
+        f"{well.position(bed.base_m, units)} to {well.position(bed.top_m, units)} {well.position_unit(units)}"
+    )
+    if well.downward:
+        where = f"depth {well.position(bed.top_m, units)} to {well.position(bed.base_m, units)} {well.position_unit(units)}"
     return [
         ("position", where),
         ("thickness", units.height_words(bed.thickness_m) + (" at least" if bed.minimum_thickness else "")),

@@ -8,9 +8,13 @@ from collections.abc import Iterator
 from logkit.model import PhaseEstimate
 from logkit.report.document import Block, Column, Figure, Heading, Paragraph, Table
 from logkit.report.ledger_view import LedgerLine, ledger_headings
-from logkit.report.wells import Well
+from logkit.report.parts_log import label
+from logkit.report.wells import Well, depth_or_height
 from logkit.report.wording import Units, depth_cell, size_cell, velocity_cell
 from logkit.words import counted, digits, joined
+
+LEAST_CONFLICT = 0.05
+"""Conflicts below this are left blank in the table."""
 
 P10_P90 = "Ranges are P10–P90: four chances in five that the value lies inside, given the criteria used."
 
@@ -73,59 +77,77 @@ def history(well: Well, units: Units) -> Iterator[Block]:
         svg, width, height = history_figure(well, units)
         yield Figure(
             f"history-{well.keys[0]}",
-            f"Flow history of {well.name}: velocity of each phase against {_axis(well)}, not to the scale of "
+            f"Flow history of {well.name}: velocity of each phase against {depth_or_height(well)}, not to the scale of "
             f"the column. Bar P10–P90, line median, arrow a one-sided bound; a lean shows grain-size change "
-            f"inside a phase. Source: the table of phases below.",
-            f"Bars of velocity ranges of {counted(len(well.history.estimates), 'phase')} against {_axis(well)}.",
+            f"inside a phase. Source: table of phases.",
+            f"Bars of velocity ranges of {counted(len(well.history.estimates), 'phase')} against {depth_or_height(well)}.",
             svg,
             width,
             height,
         )
-    rows, keys = [], []
-    for e in well.history.estimates:
-        change: str = e.tendency if e.tendency != "not determinable" else ""
-        if change and e.tendency_probability is not None:
-            change += f" ({e.tendency_probability:.2f})"
-        rows.append(
+    yield from _phase_tables(well, units)
+
+
+def _phase_tables(well: Well, units: Units) -> Iterator[Table]:
+    """The phases with an estimate, and by their reasons those without."""
+    told = [e for e in well.history.estimates if e.status == "estimated"]
+    silent: dict[str, list[int]] = {}
+    for place, e in enumerate(well.history.estimates):
+        if e.status != "estimated":
+            silent.setdefault(e.reason or "not said", []).append(place)
+    unit = well.position_unit(units)
+    if told:
+        yield Table(
+            f"phases-{well.keys[0]}",
+            f"Phases of {well.name} with an estimate, upward. {P10_P90} Median beside it only where there is a "
+            "two-sided range. Tendency: change from the phase below with its probability. Conflict: blank below 0.05. "
+            "Source: flow engine; criteria in the ledgers.",
             (
-                e.phase.bed,
-                str(e.phase.index + 1),
-                units.height(e.phase.base_m),
-                units.height(e.phase.top_m),
-                e.phase.structure.replace("_", " "),
-                velocity_cell(e, units),
-                units.middle(e.velocity),
-                depth_cell(e, units),
-                "" if e.froude is None else f"{digits(e.froude.p10)}–{digits(e.froude.p90)}",
-                e.bed_state.replace("_", " "),
-                e.transport_mode.replace("_", " "),
-                change,
-                digits(e.conflict, 1) if e.conflict else "",
-            )
+                Column("bed"),
+                Column("phase", align="right"),
+                Column("base", unit, "right"),
+                Column("top", unit, "right"),
+                Column("structure"),
+                Column("velocity", units.speed, "right"),
+                Column("median", units.speed, "right"),
+                Column("depth", units.length, "right"),
+                Column("Froude", "", "right"),
+                Column("bed state"),
+                Column("transport"),
+                Column("tendency"),
+                Column("conflict", "0–1", "right"),
+            ),
+            tuple(_phase_row(well, e, units) for e in told),
+            tuple(well.key_of(e) for e in told),
         )
-        keys.append(well.key_of(e))
-    yield Table(
-        f"phases-{well.keys[0]}" if well.keys else "phases",
-        f"Phases of {well.name}, upward. {P10_P90} Median beside it only where there is a two-sided range. "
-        "Tendency: change from the phase below with its probability. Source: flow engine; criteria in the "
-        "ledgers.",
-        (
-            Column("bed", width=1.1),
-            Column("phase", align="right", width=0.8),
-            Column("base", units.length, "right", 1.1),
-            Column("top", units.length, "right", 1.1),
-            Column("structure", width=2.0),
-            Column("velocity", units.speed, "right", 1.5),
-            Column("median", units.speed, "right", 1.1),
-            Column("depth", units.length, "right", 1.4),
-            Column("Froude", "", "right", 1.4),
-            Column("bed state", width=1.4),
-            Column("transport", width=1.5),
-            Column("tendency", width=1.6),
-            Column("conflict", "0–1", "right", 1.0),
-        ),
-        tuple(rows),
-        tuple(keys),
+    if silent:
+        yield Table(
+            f"silent-{well.keys[0]}",
+            f"Phases and gaps of {well.name} without an estimate, and why. No estimate is not still water. Source: "
+            "flow engine.",
+            (Column("because"), Column("number", align="right"), Column("where")),
+            tuple((reason, str(len(places)), well.places_words(places)) for reason, places in silent.items()),
+        )
+
+
+def _phase_row(well: Well, e: PhaseEstimate, units: Units) -> tuple[str, ...]:
+    change: str = e.tendency if e.tendency != "not determinable" else ""
+    if change and e.tendency_probability is not None:
+        change += f" ({e.tendency_probability:.2f})"
+    return (
+        e.phase.bed,
+        str(e.phase.index + 1),
+        well.position(e.phase.base_m, units),
+        well.position(e.phase.top_m, units),
+        label("structures", e.phase.structure),
+        velocity_cell(e, units),
+        units.middle(e.velocity),
+        depth_cell(e, units),
+        "" if e.froude is None else f"{digits(e.froude.p10)}–{digits(e.froude.p90)}",
+        e.bed_state.replace("_", " "),
+        e.transport_mode.replace("_", " "),
+        change,
+        f"{e.conflict:.2f}" if e.conflict >= LEAST_CONFLICT else "",
     )
 
 
@@ -175,11 +197,11 @@ def ledgers(well: Well, units: Units) -> Iterator[Block]:
         f"Criteria that spoke in {well.name}, in how many phases, and the range in which each was tested. "
         "Source: ledgers below.",
         (
-            Column("criterion", width=1.6),
-            Column("phases", align="right", width=0.6),
-            Column("tested range", width=3),
-            Column("source", width=2.4),
-            Column("status", width=0.9),
+            Column("criterion"),
+            Column("phases", align="right"),
+            Column("tested range"),
+            Column("source"),
+            Column("status"),
         ),
         tuple((n, str(spoke[n]), c.validity, c.source, c.status) for n, c in criteria.items()),
     )
@@ -187,7 +209,6 @@ def ledgers(well: Well, units: Units) -> Iterator[Block]:
     for ledger in found:
         rows.append((well.places_words(ledger.places),))
         rows.extend(line.cells for line in ledger.lines)
-    widths = (1.6, 2.2, 1.2, 1.2, 0.85, 0.6, 2.2, 1.0)
     right = {"alone", "without it", "narrows", "gain"}
     yield Table(
         f"ledger-{well.keys[0]}",
@@ -196,15 +217,10 @@ def ledgers(well: Well, units: Units) -> Iterator[Block]:
         "tells of velocity and depth in bits (0.1 is little, 1 decides). A bold line names the phases that share "
         "the lines under it. Source: flow engine, table of phases.",
         tuple(
-            Column(name, unit, "right" if name in right else "left", width)
-            for (name, unit), width in zip(ledger_headings(units), widths, strict=True)
+            Column(name, unit, "right" if name in right else "left") for name, unit in ledger_headings(units)
         ),
         tuple(rows),
     )
-
-
-def _axis(well: Well) -> str:
-    return "depth" if well.log.header.direction == "down" else "height"
 
 
 def size_words(estimate: PhaseEstimate) -> str:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
+from functools import lru_cache
 
 from logkit.model import LEVELS, Bed
 from logkit.report.document import Block, Column, Figure, Heading, Paragraph, Table
@@ -12,15 +13,25 @@ from logkit.report.wording import Units, size_cell
 from logkit.vocabulary import vocabulary
 from logkit.words import counted, one_line
 
+LONG_LOG = 250
+"""Beds above which the column goes without the dots of its texture, which would be specks at its scale."""
 
-def columns(well: Well, settings: ReportSettings, *, dots: bool = True) -> Iterator[Figure]:
-    """The column on its sheets, true to scale; without the dots of the texture on request."""
+
+def columns(well: Well, settings: ReportSettings) -> Iterator[Figure]:
+    """The column on its sheets, true to scale."""
     from logkit.drawing import draw_column
     from logkit.drawing.style import load_style
 
-    style = load_style(settings.style, None if dots else {"texture": {"dots": False}})
+    style = load_style(
+        settings.style, {"texture": {"dots": False}} if len(well.log.beds) > LONG_LOG else None
+    )
     drawing = draw_column(
-        well.log, well.history, well.trends, style=style, scale=settings.scale, page=settings.page
+        well.log,
+        well.history,
+        well.trends,
+        style=style,
+        scale=column_scale(well, settings),
+        page=settings.page,
     )
     of = len(drawing.sheets)
     for number, sheet in enumerate(drawing.sheets, 1):
@@ -38,6 +49,24 @@ def columns(well: Well, settings: ReportSettings, *, dots: bool = True) -> Itera
         )
 
 
+LONGEST_COLUMN_MM = 2400.0
+"""Columns longer than this, a dozen sheets, are drawn at a smaller scale unless one is asked for."""
+
+SMALLER_SCALES = (100.0, 200.0, 500.0, 1000.0, 2000.0, 5000.0)
+
+
+def column_scale(well: Well, settings: ReportSettings) -> float | None:
+    """Scale of a column: as asked for, the style's own (None), or smaller for a long log."""
+    from logkit.drawing.style import load_style
+
+    if settings.scale is not None or not well.log.beds:
+        return settings.scale
+    longest = 1000 * well.log.thickness_m / LONGEST_COLUMN_MM
+    if longest <= load_style(settings.style).page.scale:
+        return None
+    return next((scale for scale in SMALLER_SCALES if scale >= longest), SMALLER_SCALES[-1])
+
+
 def bed_table(well: Well, units: Units) -> Table:
     """All beds and gaps upward, as read."""
     rows = []
@@ -48,15 +77,11 @@ def bed_table(well: Well, units: Units) -> Table:
             verdict = grading.verdict
             if grading.probability is not None:
                 verdict += f" ({grading.probability:.2f})"
-        position = (bed.depth_base, bed.depth_top)
-        base, top = (units.height(bed.base_m), units.height(bed.top_m))
-        if None not in position:
-            base, top = (f"{p:g}" for p in position)
         rows.append(
             (
                 bed.name,
-                base,
-                top,
+                well.position(bed.base_m, units),
+                well.position(bed.top_m, units),
                 units.height(bed.thickness_m),
                 rock(bed),
                 sizes(bed),
@@ -66,24 +91,23 @@ def bed_table(well: Well, units: Units) -> Table:
                 one_line(bed.notes),
             )
         )
-    unit = well.log.header.unit or "m"
-    written = unit if any(b.depth_base is not None for b in well.log.beds) else units.length
+    unit = well.position_unit(units)
     return Table(
         f"beds-{well.keys[0]}" if well.keys else "beds",
         f"Beds of {well.name}, upward, as read from the table; {depth_or_height(well)}s "
-        f"in {written}. Grading with its probability, blank where not determinable. The wording of every "
+        f"in {unit}. Grading with its probability, blank where not determinable. The wording of every "
         "cell is kept in the tidy table.",
         (
-            Column("bed", width=0.7),
-            Column("base", written, "right", 0.9),
-            Column("top", written, "right", 0.9),
-            Column("thickness", units.length, "right", 1.0),
-            Column("rock", width=1.5),
-            Column("grain size", width=2.0),
-            Column("structures", width=2.2),
-            Column("grading", width=1.3),
-            Column("base contact", width=1.2),
-            Column("notes", width=3.0),
+            Column("bed"),
+            Column("base", unit, "right"),
+            Column("top", unit, "right"),
+            Column("thickness", units.length, "right"),
+            Column("rock"),
+            Column("grain size"),
+            Column("structures"),
+            Column("grading"),
+            Column("base contact"),
+            Column("notes"),
         ),
         tuple(rows),
         well.keys,
@@ -116,6 +140,7 @@ def contact(bed: Bed, units: Units) -> str:
     return ", ".join(words)
 
 
+@lru_cache(maxsize=1024)
 def label(kind: str, term: str) -> str:
     """Words of a vocabulary term; the id itself when the vocabulary lacks it."""
     terms = vocabulary(kind)
@@ -135,12 +160,12 @@ def findings(well: Well) -> Iterator[Block]:
         f"Findings about the table of {well.name}. A question was read in the first way named; answer it in "
         "the table to be sure. Source: the reader's checks.",
         (
-            Column("level", width=0.8),
-            Column("row", align="right", width=0.5),
-            Column("column", width=1.1),
-            Column("cell", width=1.5),
-            Column("finding", width=3.5),
-            Column("what to do", width=2.5),
+            Column("level"),
+            Column("row", align="right"),
+            Column("column"),
+            Column("cell"),
+            Column("finding"),
+            Column("what to do"),
         ),
         tuple(
             (

@@ -59,13 +59,13 @@ def methods(wells: list[Well]) -> Iterator[Block]:
         + "; ".join(f"{word} – {meaning}" for word, meaning in STATUS_WORDS.items())
         + ". A result outside a tested range carries a note.",
         (
-            Column("formula", width=2.2),
-            Column("gives", width=2),
-            Column("equation", width=3.2),
-            Column("source", width=2),
-            Column("tested range", width=1.8),
-            Column("scatter", width=2),
-            Column("status", width=1),
+            Column("formula"),
+            Column("gives"),
+            Column("equation"),
+            Column("source"),
+            Column("tested range"),
+            Column("scatter"),
+            Column("status"),
         ),
         tuple(
             (
@@ -83,8 +83,12 @@ def methods(wells: list[Well]) -> Iterator[Block]:
 
 
 def references(wells: list[Well]) -> Iterator[Block]:
-    """Works behind the formulas used."""
-    keys = {FORMULAS[id].source for id in formulas_used(wells)} - set(NOT_WORKS)
+    """Works behind the formulas used and the criteria of the ledgers."""
+    sources = {FORMULAS[id].source for id in formulas_used(wells)}
+    for well in wells:
+        for place in range(len(well.history.estimates)):
+            sources.update(row.source for row in well.history.ledger_at(place))
+    keys = {key.strip() for source in sources for key in source.split(",")} - set(NOT_WORKS)
     works = sorted({str(reference(key)) + _doubt(key) for key in keys})
     yield Terms(tuple((f"{i}.", work) for i, work in enumerate(works, 1)))
 

@@ -30,22 +30,22 @@ def grading(well: Well, units: Units) -> Iterator[Block]:
             (
                 Column("from bed"),
                 Column("to bed"),
-                Column("base", units.length, "right"),
-                Column("top", units.length, "right"),
+                Column("base", well.position_unit(units), "right"),
+                Column("top", well.position_unit(units), "right"),
                 Column("beds", align="right"),
-                Column("trend", width=1.6),
-                Column("of", width=1.4),
+                Column("trend"),
+                Column("of"),
                 Column("tau", align="right"),
                 Column("p", align="right"),
                 Column("p adjusted", align="right"),
-                Column("verdict", width=2.2),
+                Column("verdict"),
             ),
             tuple(
                 (
                     p.first_bed,
                     p.last_bed,
-                    units.height(p.base_m),
-                    units.height(p.top_m),
+                    well.position(p.base_m, units),
+                    well.position(p.top_m, units),
                     str(p.beds),
                     p.trend,
                     p.quantity,
@@ -102,14 +102,14 @@ def currents(well: Well) -> Iterator[Block]:
         f"Directions of {well.name} by kind of indicator; spread is the circular standard deviation. Lines "
         "without a sense are doubled before averaging. Source: corrected readings of the bed table.",
         (
-            Column("indicator", width=1.6),
+            Column("indicator"),
             Column("sense"),
-            Column("n", align="right", width=0.5),
+            Column("n", align="right"),
             Column("mean", "°", "right"),
             Column("resultant", "0–1", "right"),
             Column("spread", "°", "right"),
             Column("Rayleigh p", align="right"),
-            Column("say with it", width=4),
+            Column("say with it"),
         ),
         tuple(
             (

@@ -8,9 +8,15 @@ from typing import Any
 
 from logkit.errors import LogkitError
 from logkit.report.document import Block, Document, Figure, Heading, Paragraph, Table, Terms
+from logkit.report.widths import breakable, fit
 from logkit.words import one_line
 
 TEMPLATE = "report.typ"
+MARGIN_MM = 18.0
+PAPERS_MM = {"a3": (297.0, 420.0), "a4": (210.0, 297.0), "letter": (215.9, 279.4)}
+"""Papers of the text pages by the page setter's name: width and height."""
+
+TYPST_NAME = {"letter": "us-letter"}
 
 
 def document_pdf(document: Document, *, paper: str = "a4", archive: bool = False) -> bytes:
@@ -18,7 +24,7 @@ def document_pdf(document: Document, *, paper: str = "a4", archive: bool = False
 
     Parameters
     ----------
-    paper : paper name of the text pages; drawings keep their own true size
+    paper : paper name of the text pages, A4 for one that is not known; drawings keep their own true size
     archive : PDF/A-2a
 
     Raises
@@ -30,7 +36,7 @@ def document_pdf(document: Document, *, paper: str = "a4", archive: bool = False
     from logkit.drawing.fonts import font_folder
 
     pictures: dict[str, bytes] = {}
-    content = _content(document, paper, pictures)
+    content = _content(document, paper.lower() if paper.lower() in PAPERS_MM else "a4", pictures)
     project: Any = {
         "main.typ": files("logkit.report").joinpath("data", TEMPLATE).read_bytes(),
         "document.json": json.dumps(content, ensure_ascii=False).encode(),
@@ -55,20 +61,25 @@ def _content(document: Document, paper: str, pictures: dict[str, bytes]) -> dict
         "subtitle": one_line(document.subtitle),
         "authors": [one_line(a) for a in document.authors],
         "keywords": ["sedimentary log", "flow history", "logkit"],
-        "paper": paper.lower(),
+        "paper": TYPST_NAME.get(paper, paper),
+        "margin": MARGIN_MM,
         "footer": f"{one_line(document.title)}. Ranges, not measurements: see limits and cautions.",
         "facts": [[key, one_line(value)] for key, value in document.facts],
         "caution": document.caution,
         "organisation": one_line(document.organisation),
         "logo": logo,
         "sections": [
-            {"id": s.id, "title": s.title, "blocks": [_block(b, pictures) for b in s.blocks]}
+            {
+                "id": s.id,
+                "title": s.title,
+                "blocks": [_block(b, pictures, PAPERS_MM[paper]) for b in s.blocks],
+            }
             for s in document.sections
         ],
     }
 
 
-def _block(block: Block, pictures: dict[str, bytes]) -> dict[str, Any]:
+def _block(block: Block, pictures: dict[str, bytes], paper_mm: tuple[float, float]) -> dict[str, Any]:
     match block:
         case Paragraph(text, kind):
             return {"type": "paragraph", "text": text, "kind": kind}
@@ -77,12 +88,18 @@ def _block(block: Block, pictures: dict[str, bytes]) -> dict[str, Any]:
         case Terms(entries):
             return {"type": "terms", "entries": [list(entry) for entry in entries]}
         case Table():
+            upright, sideways = (side - 2 * MARGIN_MM for side in paper_mm)
+            how = fit(block, upright, sideways)
             return {
                 "type": "table",
                 "caption": block.caption,
-                "columns": [{"label": c.label, "align": c.align, "width": c.width} for c in block.columns],
-                "rows": [list(row) for row in block.rows],
-                "across": any(len(row) == 1 < len(block.columns) for row in block.rows),
+                "columns": [
+                    {"label": breakable(c.label, how.longest), "align": c.align, "width": width}
+                    for c, width in zip(block.columns, how.widths_mm, strict=True)
+                ],
+                "size": how.size_pt,
+                "wide": how.wide,
+                "rows": [[breakable(cell, how.longest) for cell in row] for row in block.rows],
             }
         case Figure():
             file = f"figure-{len(pictures)}.svg"

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 import tomllib
 from dataclasses import dataclass, fields, replace
 from pathlib import Path
@@ -33,7 +34,8 @@ class ReportSettings:
 
     sections : ids in the order wanted; `SECTIONS` names them
     units : "si" or "feet" (lengths in feet, velocities in ft/s)
-    style, scale : of the columns; datum of the panel
+    style, scale : of the columns, 50 for 1:50; the scale of the style by default, less for a log of many sheets
+    page, datum : paper of text and columns; datum of the panel
     organisation, logo : line and picture (svg or png file) of the title page
     archive : PDF/A
     """
@@ -42,7 +44,7 @@ class ReportSettings:
     sections: tuple[str, ...] = tuple(SECTIONS)
     units: Literal["si", "feet"] = "si"
     style: str = "report"
-    scale: float = 50.0
+    scale: float | None = None
     page: str = "A4"
     datum: str = ""
     organisation: str = ""
@@ -93,12 +95,12 @@ def _checked(settings: ReportSettings, given: dict[str, Any], file: str, text: s
                     raise _problem(
                         file, text, key, what, f"Did you mean {hint!r}?" if hint else _list(SECTIONS)
                     )
-        elif isinstance(default, bool) != isinstance(value, bool):
-            raise _problem(file, text, key, f"{key} is {value!r}, but it must be true or false.")
-        elif isinstance(default, float):
-            if not isinstance(value, int | float) or value <= 0:
+        elif key == "scale":
+            if isinstance(value, bool) or not isinstance(value, int | float) or not 0 < value < math.inf:
                 raise _problem(file, text, key, f"{key} is {value!r}, but it must be a number above zero.")
             value = float(value)
+        elif isinstance(default, bool) != isinstance(value, bool):
+            raise _problem(file, text, key, f"{key} is {value!r}, but it must be true or false.")
         elif isinstance(default, str) and not isinstance(value, str):
             raise _problem(file, text, key, f"{key} is {value!r}, but it must be text.")
         if key == "units" and value not in ("si", "feet"):

@@ -9,7 +9,7 @@ from dataclasses import dataclass
 from logkit.flow import FlowHistory
 from logkit.model import Bed, Grading, Log, PhaseEstimate
 from logkit.report.ledger_view import PhaseLedger, phase_ledgers
-from logkit.report.wording import Units
+from logkit.report.wording import FEET, Units
 from logkit.trends import Trends
 from logkit.words import joined
 
@@ -32,6 +32,20 @@ class Well:
     def name(self) -> str:
         """Name of the log."""
         return self.log.name
+
+    @property
+    def downward(self) -> bool:
+        """True for a log of depths."""
+        return self.log.header.direction == "down"
+
+    def position_unit(self, units: Units) -> str:
+        """Unit of positions: depths keep the unit they were written in unless feet are wanted."""
+        return "ft" if units.feet or (self.downward and self.log.header.unit == "ft") else "m"
+
+    def position(self, position_m: float, units: Units) -> str:
+        """A height, or the depth that people who work with the well know, without unit."""
+        value = position_m / (FEET if self.position_unit(units) == "ft" else 1.0)
+        return f"{-value if self.downward else value:.2f}"
 
     def grading(self, bed: Bed) -> Grading | None:
         """Grading of a bed, None without one."""
@@ -78,7 +92,7 @@ def make_well(log: Log, history: FlowHistory | None, trends: Trends | None) -> W
 
 def depth_or_height(well: Well) -> str:
     """The word for positions in this log."""
-    return "depth" if well.log.header.direction == "down" else "height"
+    return "depth" if well.downward else "height"
 
 
 def facts_of(log: Log, units: Units) -> tuple[tuple[str, str], ...]:

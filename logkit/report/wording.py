@@ -66,11 +66,9 @@ class Units:
 
 
 def velocity_cell(estimate: PhaseEstimate, units: Units) -> str:
-    """Velocity as shown in a table: the range, a bound, or the reason why there is none."""
-    if estimate.status != "estimated":
-        return estimate.reason or "no estimate"
+    """Velocity as shown in a table: the range, a bound, or nothing."""
     if estimate.bound in ("above", "below") and estimate.limit_velocity_m_s is not None:
-        return f"{estimate.bound} {digits(units.number(estimate.limit_velocity_m_s))}"
+        return f"{estimate.bound}{NO_BREAK}{digits(units.number(estimate.limit_velocity_m_s))}"
     return units.span(estimate.velocity)
 
 
@@ -79,7 +77,7 @@ def depth_cell(estimate: PhaseEstimate, units: Units) -> str:
     if estimate.flow_depth is not None:
         return units.span(estimate.flow_depth)
     if estimate.limit_flow_depth_m is not None:
-        return f"above {digits(units.number(estimate.limit_flow_depth_m))}"
+        return f"above{NO_BREAK}{digits(units.number(estimate.limit_flow_depth_m))}"
     return ""
 
 
