@@ -70,9 +70,9 @@ class Outcome:
 
     @property
     def findings(self) -> list[Finding]:
-        """All findings, those of failed sources first."""
+        """All findings, those of failed sources first; what concerns several logs of a file stands once."""
         failed = [f for _, e in self.failures if isinstance(e, LogErrors) for f in e.findings]
-        return failed + [finding for run in self.runs for finding in run.log.findings]
+        return list(dict.fromkeys([*failed, *(finding for run in self.runs for finding in run.log.findings)]))
 
 
 def find_sources(sources: Iterable[str]) -> tuple[str, ...]:

@@ -48,7 +48,7 @@ class VerbGroup(click.Group):
     def get_command(self, ctx: click.Context, name: str) -> click.Command | None:
         if name not in VERBS:
             return None
-        return import_module(f"logkit.cli.{name}").command  # type: ignore[no-any-return]
+        return import_module(f"logkit.cli.{name}").command
 
     def resolve_command(self, ctx: click.Context, args: list[str]) -> Any:
         if args and args[0] not in VERBS:

@@ -183,6 +183,7 @@ class Bed:
     qualifiers : vocabulary ids of qualifiers and cements ("calcareous", "silty")
     grain : states upward; empty unknown, one = not graded as far as written, more = written grading.
         A written range is one wide state, never grading.
+    d50_mm : median measured beside the class or in place of one, mm; of the whole bed, None when not measured
     largest, sizes, sorting : largest clasts; in-bed readings upward; sorting class id, "" unknown
     structures : in the order written; `structures_upward` is True when that order is upward in the bed
     measured : False for a layer of a written pattern ("6 x (8 vfs / 4 mdst)"): excluded from thickness tests
@@ -209,6 +210,7 @@ class Bed:
     ripple_height_m: float | None = None
     climb_angle_deg: float | None = None
     wave_period_s: float | None = None
+    d50_mm: float | None = None
     contact: Contact | None = None
     currents: tuple[CurrentReading, ...] = ()
     flow_depth_m: tuple[float, float] | None = None

@@ -124,7 +124,7 @@ class Log:
         return frame
 
     def write(self, path: str | Path) -> Path:
-        """Write the normalised table (csv, tsv, xlsx or ods by ending); `read_log` gives the same log back.
+        """Write the normalised table (csv, tsv or xlsx by ending); `read_log` gives the same log back.
 
         Raises
         ------

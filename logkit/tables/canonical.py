@@ -13,7 +13,7 @@ from logkit.vocabulary import vocabulary
 
 COLUMNS: dict[str, str] = {
     "section": "section", "bed": "bed", "gap": "gap", "base": "base_m", "top": "top_m", "lithology": "lithology",
-    "grain": "grain", "largest": "largest_mm", "sorting": "sorting", "structures": "structures",
+    "grain": "grain", "d50": "d50_mm", "largest": "largest_mm", "sorting": "sorting", "structures": "structures",
     "set_thickness": "set_thickness_m", "ripple_wavelength": "ripple_wavelength_m",
     "ripple_height": "ripple_height_m", "wave_period": "wave_period_s", "contact": "contact",
     "palaeocurrent": "palaeocurrent", "flow_depth": "flow_depth_m", "slope": "slope",
@@ -26,7 +26,7 @@ COLUMNS: dict[str, str] = {
 ALWAYS = frozenset({"bed", "base", "top", "lithology", "grain", "structures", "notes"})
 """Columns that are written even when no bed fills them."""
 
-NUMBERS = frozenset({"base", "top", "ripple_wavelength", "ripple_height", "wave_period"})
+NUMBERS = frozenset({"base", "top", "d50", "ripple_wavelength", "ripple_height", "wave_period"})
 """Columns whose cells are plain numbers."""
 
 
@@ -45,6 +45,7 @@ def bed_cells(bed: Bed, section: str) -> dict[str, Any]:
         "grain": "→".join(
             state.size.label or _size(state.size.low_mm, state.size.high_mm) for state in bed.grain
         ),
+        "d50": bed.d50_mm,
         "largest": _largest(bed.largest),
         "sorting": vocabulary("sorting")[bed.sorting].label
         if bed.sorting in vocabulary("sorting")

@@ -5,7 +5,10 @@ Only the placing of lost core belongs here; the note itself (`cut 30' rec 27.4'`
 
 from __future__ import annotations
 
+from itertools import zip_longest
+
 from logkit.model import Level
+from logkit.tables.cells.lengths import Length
 from logkit.tables.draft import Draft
 from logkit.tables.sheet import Collector
 from logkit.units import METRES
@@ -38,6 +41,41 @@ def add_lost_core(drafts: list[Draft], found: Collector, unit: str) -> None:
             _place(drafts, draft, start + core.recovered_m, start + core.cut_m, recovery, found, unit)
         else:
             _say(draft, found, "note", "core.complete", f"{recovery}: nothing lost")
+
+
+def stack_lost_core(drafts: list[Draft], found: Collector, unit: str) -> bool:
+    """Insert a gap for the core lost in each run of a table of thicknesses; True when there is one.
+
+    A run goes from the row with the core note to the row before the next note.
+
+    Parameters
+    ----------
+    drafts : rows of a downward log, in order, not placed yet; changed in place
+    unit : length unit of the log, for messages
+    """
+    noted = [d for d in drafts if d.core is not None]
+    for draft, after in zip_longest(noted, noted[1:]):
+        core = draft.core
+        if core is None or core.lost_m is None or core.lost_m <= _LEAST_M or core.recovered_m is None:
+            continue
+        end = drafts.index(after) if after is not None else len(drafts)
+        run = drafts[drafts.index(draft) : end]
+        sizes = [d.thickness.metres for d in run if d.thickness is not None]
+        size = f"{core.lost_m / METRES[unit]:.3g} {unit}"
+        if any(d.gap for d in run):
+            _say(draft, found, "note", "core.lost", f"{size} lost; a row of the run is this gap")
+        elif sum(sizes) > core.recovered_m + max(_LEAST_M, 0.05 * core.recovered_m):
+            _say(draft, found, "question", "core.lost_described",
+                 f"{size} lost, but the rows of the run are {sum(sizes) / METRES[unit]:.4g} {unit} thick, more than "
+                 "was recovered, so no gap is placed", "add a row for the lost core where it belongs",
+                 choices=("lost elsewhere in the run", "a slip in cut or recovered"))  # fmt: skip
+        else:
+            _say(draft, found, "question", "core.lost", f"{size} lost, placed at the base of the run",
+                 "add a row for the lost core if it belongs elsewhere",
+                 choices=("base of the run", "top of the run"))  # fmt: skip
+            lost = Length(core.lost_m, unit)
+            drafts.insert(end, Draft(row=None, section=draft.section, gap="lost_core", thickness=lost))
+    return any(d.row is None for d in drafts)
 
 
 def _place(

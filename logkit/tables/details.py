@@ -23,7 +23,8 @@ from logkit.tables.sheet import Collector
 COLUMNS_OF: dict[str, tuple[str, ...]] = {
     "name": ("bed",), "base_m": ("base", "top"), "top_m": ("base", "top"),
     "depth_base": ("base", "top"), "depth_top": ("base", "top"), "lithology": ("lithology",),
-    "qualifiers": ("lithology",), "grain": ("grain",), "largest": ("largest",), "sorting": ("sorting",),
+    "qualifiers": ("lithology",), "grain": ("grain",), "d50_mm": ("d50",), "largest": ("largest",),
+    "sorting": ("sorting",),
     "structures": ("structures",), "structures_upward": ("structures",), "climb_angle_deg": ("structures",),
     "set_thickness": ("set_thickness",), "ripple_wavelength_m": ("ripple_wavelength",),
     "ripple_height_m": ("ripple_height",), "wave_period_s": ("wave_period",), "contact": ("contact",),
@@ -144,6 +145,6 @@ def _check(fields: Mapping[str, Any]) -> None:
     sets = fields.get("set_thickness")
     if sets is not None and not 0 < sets.low_m <= sets.high_m:
         raise ValueError("a set thickness is not above zero and rising")
-    for name in ("ripple_wavelength_m", "ripple_height_m", "wave_period_s"):
+    for name in ("d50_mm", "ripple_wavelength_m", "ripple_height_m", "wave_period_s"):
         if fields.get(name) is not None and fields[name] <= 0:
             raise ValueError(f"{name} is not above zero")

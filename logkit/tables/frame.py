@@ -179,6 +179,7 @@ def _not_read_back(bed: Bed, texts: dict[str, str], log: Log) -> dict[str, Any]:
     manner = Manner(
         unit=log.header.unit or None,
         units={
+            "d50": "mm",
             "largest": "mm",
             "set_thickness": "m",
             "ripple_wavelength": "m",

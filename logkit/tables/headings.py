@@ -1,7 +1,7 @@
 """Columns found by their headings, in any order and case, with a unit in brackets or behind an underscore.
 
 Only headings belong here: which canonical column each is, and which unit its cells have when they name none.
-The words people write for a column are data (`vocabulary/data/columns.toml`).
+The words people write for a column are data (`columns.toml` and `size_columns.toml` of the vocabulary).
 """
 
 from __future__ import annotations
@@ -15,30 +15,6 @@ from logkit.tables.cells.lengths import unit_symbol
 from logkit.tables.sheet import Collector, Row, Sheet
 from logkit.vocabulary import vocabulary
 
-OWN = ("core", "position", "from", "to", "measured", "gap", "as_written", "details")
-"""Columns beside those of the vocabulary.
-
-core : what was cut and recovered; position : heights or depths alone; from, to : in the order of the rows;
-measured : "no" for a layer of a counted pattern; gap : reason of a gap; as_written, details : written by logkit.
-"""
-_OWN_WORDS = {
-    "core": "core", "core run": "core", "run": "core", "core no": "core", "recovery": "core",
-    "height": "position", "running height": "position", "cumulative height": "position", "depth": "position",
-    "position": "position", "elevation": "position", "cum height": "position", "running heights": "position",
-    "heights": "position", "depths": "position",
-    "from": "from", "start": "from", "depth from": "from", "from depth": "from",
-    "to": "to", "end": "to", "depth to": "to", "to depth": "to",
-    "measured": "measured", "gap": "gap", "gap reason": "gap", "as written": "as_written", "details": "details",
-}  # fmt: skip
-SIZES = ("section", "bed", "height_in_bed", "position_m", "d50", "d10", "d90", "d95", "count", "method")
-"""Columns of the sheet of in-bed size readings."""
-_SIZES_WORDS = {
-    "section": "section", "well": "section", "bed": "bed", "bed no": "bed", "bed number": "bed", "unit": "bed",
-    "height in bed": "height_in_bed", "height": "height_in_bed", "height above base": "height_in_bed",
-    "position": "position_m", "depth": "position_m",
-    "d50": "d50", "median": "d50", "d10": "d10", "d90": "d90", "d95": "d95",
-    "count": "count", "n": "count", "number": "count", "grains": "count", "method": "method",
-}  # fmt: skip
 _PLACES = frozenset({"thickness", "base", "top", "position", "from", "to"})
 _MATTER = frozenset({"grain", "lithology", "grain_base", "grain_top", "structures"})
 _LONGEST_HEADING = 100
@@ -130,11 +106,7 @@ def _find(text: str, sizes: bool) -> str:
     plain = " ".join(text.replace("_", " ").casefold().strip(" .:").split())
     if not plain:
         return ""
-    if sizes:
-        return _SIZES_WORDS.get(plain, "")
-    if plain in _OWN_WORDS:
-        return _OWN_WORDS[plain]
-    known = vocabulary("columns")
+    known = vocabulary("size_columns" if sizes else "columns")
     if plain.replace(" ", "_") in known:
         return plain.replace(" ", "_")
     term = known.find(text.replace("_", " "))
@@ -204,7 +176,7 @@ def _columns(row: Row, found: Collector, sizes: bool) -> list[Column]:
             columns.append(Column(index, "", ""))
             continue
         if not name:
-            near = None if sizes else vocabulary("columns").nearest(heading)
+            near = vocabulary("size_columns" if sizes else "columns").nearest(heading)
             found.add("question" if near else "note", "heading.unknown",
                       f"no column is called {heading[:60]!r}; its cells are kept as written and not read",
                       "correct the heading, or leave it if the column is your own",

@@ -14,7 +14,7 @@ from itertools import pairwise
 
 from logkit.model import Level
 from logkit.tables.cells.lengths import Length
-from logkit.tables.cores import add_lost_core
+from logkit.tables.cores import add_lost_core, stack_lost_core
 from logkit.tables.draft import Draft
 from logkit.tables.sheet import Collector
 from logkit.tables.slips import other_readings
@@ -55,9 +55,7 @@ class Placer:
             self._spans_that_are_thicknesses()
         self._running_heights()
         self.tolerance = min(max(0.6 * self._last_place(), ROUNDING_M), _WIDEST_M)
-        pairs = [self._along(d) for d in self.drafts]
-        self.starts = [start for start, _ in pairs]
-        self.ends = [end for _, end in pairs]
+        pairs = self._pairs()
         stacks = any(d.thickness is not None and d.low is None for d in self.drafts)
         both = sum(
             start is not None and end is not None and (self.down or d.low is None or not stacks)
@@ -66,7 +64,16 @@ class Placer:
         if both * 2 >= len(self.drafts):
             self._as_written()
         else:
+            if self.down and stack_lost_core(self.drafts, self.found, self.unit):
+                self._pairs()
             self._stacked()
+
+    def _pairs(self) -> list[tuple[Length | None, Length | None]]:
+        """Start and end of every row as written."""
+        pairs = [self._along(d) for d in self.drafts]
+        self.starts = [start for start, _ in pairs]
+        self.ends = [end for _, end in pairs]
+        return pairs
 
     def say(self, draft: Draft, level: Level, code: str, message: str, remedy: str, *,
             choices: Sequence[str] = (), column: str = "") -> None:  # fmt: skip

@@ -127,8 +127,9 @@ def log_from_frame(frame: pd.DataFrame, **header: Any) -> Log:
 
     chosen = take_options(header)
     found = Collector()
-    logs = _logs_of_sheet(sheet_from_frame(frame), (), None, chosen, found, "")
-    logs = _give(logs, found.found, chosen)
+    logs = _logs_of_sheet(sheet_from_frame(frame), (), chosen, found, "")
+    logs = _chosen(logs, str(chosen.header.get("section") or ""), "")
+    logs = _give(logs, [f for log in logs for f in log.findings], chosen)
     if len(logs) > 1:
         names = ", ".join(log.header.section for log in logs)
         raise LogkitError(f"The frame holds {len(logs)} sections: {names}.", "Choose one with section=.")
@@ -184,15 +185,18 @@ def _read_file(path: str | Path, options: Options) -> tuple[list[Log], list[Find
     found = Collector(file=name)
     source = "" if str(path) == "-" else str(path)
     if is_workbook(body) or Path(name).suffix.lower() in WORKBOOKS:
-        logs = _logs_of_book(body, name, source, options, found)
+        logs, sizes = _logs_of_book(body, name, source, options, found)
     else:
         sheet = sheet_from_text(body, name, found)
         sizes = _sizes_beside(path, options, found)
         if any(f.level == "error" and f.code.startswith("file.") for f in found.found):
             logs = [Log(findings=tuple(found.found), source=source)]
         else:
-            logs = _logs_of_sheet(sheet, (), sizes, options, found, source)
-    return logs, found.found
+            logs = _logs_of_sheet(sheet, (), options, found, source)
+    if sizes is not None:
+        logs = add_sizes(logs, sizes)
+    logs = _chosen(logs, str(options.header.get("section") or ""), source)
+    return logs, list(dict.fromkeys(f for log in logs for f in log.findings))
 
 
 def _standard_input() -> bytes:
@@ -219,7 +223,10 @@ def _sizes_beside(path: str | Path, options: Options, found: Collector) -> SizeR
     return rows
 
 
-def _logs_of_book(body: bytes, name: str, source: str, options: Options, found: Collector) -> list[Log]:
+def _logs_of_book(
+    body: bytes, name: str, source: str, options: Options, found: Collector
+) -> tuple[list[Log], SizeRows | None]:
+    """The logs of a workbook, and the in-bed sizes that it holds or that the caller named."""
     book = open_workbook(body, name, found)
     lines = []
     if book.header is not None:
@@ -242,24 +249,43 @@ def _logs_of_book(body: bytes, name: str, source: str, options: Options, found: 
             "the workbook has no sheet with a table",
             "put the beds on a sheet of their own",
         )
-        return [Log(findings=tuple(found.found), source=source)]
-    several = len(book.beds) > 1
+        return [Log(findings=tuple(found.found), source=source)], None
+    return _logs_of_sheets(book.beds, lines, options, found, source), sizes
+
+
+def _logs_of_sheets(
+    sheets: Sequence[Sheet],
+    lines: Sequence[tuple[str, str, int | None]],
+    options: Options,
+    found: Collector,
+    source: str,
+) -> list[Log]:
+    """The logs of all sheets of a workbook; of several sheets those that hold no table of beds are noted."""
+    shared = tuple(found.found)
+    several = len(sheets) > 1
     logs: list[Log] = []
-    for sheet in book.beds:
-        own = Collector(file=name, sheet=sheet.name)
-        read = _logs_of_sheet(sheet, lines, sizes, options, own, source, optional=several)
-        for log in read:
+    others: list[Finding] = []
+    for sheet in sheets:
+        own = Collector(file=found.file, sheet=sheet.name)
+        for log in _logs_of_sheet(sheet, lines, options, own, source):
+            if not log.beds and any(f.code in _NO_TABLE for f in own.found):
+                others += own.found
+                continue
             if several and not log.header.section:
                 log = replace(log, header=replace(log.header, section=sheet.name.strip()))
-            logs.append(replace(log, findings=(*found.found, *log.findings)))
-        found_here = own.found
-        found.found += [] if several and not read else found_here
+            logs.append(replace(log, findings=(*shared, *log.findings)))
     if not logs:
-        found.add("error", "file.no_table", "no sheet has headings of a table of beds", _NEEDED)
-        return [Log(findings=tuple(found.found), source=source)]
-    return logs
+        return [Log(findings=(*shared, *others), source=source)]
+    notes = tuple(
+        replace(f, level="note", message=f"the sheet is not read as a table of beds: {f.message}", remedy="")
+        for f in others
+        if f.code in _NO_TABLE
+    )
+    return [replace(log, findings=(*log.findings, *notes)) for log in logs]
 
 
+_NO_TABLE = frozenset({"file.no_table", "heading.missing"})
+"""Findings that a sheet is no table of beds at all."""
 _NEEDED = (
     "give a position (thickness, or base and top, or heights) and a grain size or a lithology, "
     "each under a heading"
@@ -269,16 +295,12 @@ _NEEDED = (
 def _logs_of_sheet(
     sheet: Sheet,
     lines: Sequence[tuple[str, str, int | None]],
-    sizes: SizeRows | None,
     options: Options,
     found: Collector,
     source: str,
-    optional: bool = False,
 ) -> list[Log]:
-    """The logs of one sheet, one a section. `optional` sheets without headings give none."""
+    """The logs of one sheet, one a section."""
     headings = find_headings(sheet, found)
-    if headings is None and optional:
-        return []
     if headings is None or not _complete(headings, sheet, found):
         if headings is None:
             found.add("error", "file.no_table", "there is no row of headings that is known", _NEEDED)
@@ -302,17 +324,16 @@ def _logs_of_sheet(
             "error", "file.no_beds", "there are headings but no rows below them", "type one row for each bed"
         )
         return [Log(header=header, findings=tuple(found.found), source=source)]
+    groups = split_sections(drafts, header.section, found)
     manner = settle_units(drafts, manner, header, found)
     for draft in drafts:
         read_row(draft, manner, found)
     stated = "direction" in options.header or any(
         key.strip().casefold() == "direction" for key, _, _ in (*lines, *sheet.header)
     )
-    logs = []
-    groups = split_sections(drafts, header.section, found)
-    groups = _chosen(groups, str(options.header.get("section") or ""), header, source)
-    for name, rows in groups:
-        logs.append(_one_log(replace(header, section=name), rows, manner, sizes, stated, found, source))
+    logs = [
+        _one_log(replace(header, section=name), rows, manner, stated, found, source) for name, rows in groups
+    ]
     shared = [f for f in found.found if not f.section]
     if len(logs) == 1:
         return [replace(logs[0], findings=tuple(found.found))]
@@ -322,17 +343,15 @@ def _logs_of_sheet(
     ]
 
 
-def _chosen(
-    groups: list[tuple[str, list[Draft]]], wanted: str, header: Header, source: str
-) -> list[tuple[str, list[Draft]]]:
-    """The sections wanted; a file that names none gets the name asked for."""
+def _chosen(logs: list[Log], wanted: str, source: str) -> list[Log]:
+    """The logs of the section wanted; the only log of a file that names none gets the name asked for."""
     if not wanted:
-        return groups
-    names = [name for name, _ in groups]
+        return logs
+    names = [log.header.section for log in logs]
     if wanted in names:
-        return [group for group in groups if group[0] == wanted]
+        return [log for log in logs if log.header.section == wanted]
     if names == [""]:
-        return [(wanted, groups[0][1])]
+        return [replace(logs[0], header=replace(logs[0].header, section=wanted))]
     raise ArgumentError(
         "section", wanted, f"one of the sections of {source or 'the table'}: {', '.join(map(repr, names))}"
     )
@@ -359,7 +378,6 @@ def _one_log(
     header: Header,
     drafts: list[Draft],
     manner: Manner,
-    sizes: SizeRows | None,
     stated: bool,
     found: Collector,
     source: str,
@@ -386,8 +404,6 @@ def _one_log(
     check_drafts(drafts, found)
     beds: list[Bed] = build_beds(drafts, down, unit if unit in METRES else "m", found)
     beds = check_beds(beds, header, manner.codes, found)
-    if sizes is not None:
-        beds = add_sizes(beds, sizes, header, found)
     if not beds and not any(f.level == "error" for f in found.found):
         found.add("error", "file.no_beds", "no row can be used as a bed", "type one row for each bed")
     return Log(header=header, beds=tuple(beds), source=source)

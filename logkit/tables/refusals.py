@@ -12,7 +12,7 @@ PLACES = frozenset({"thickness", "base", "top", "position", "from", "to"})
 """Columns that say where a row lies."""
 
 MEASURED = PLACES | {
-    "grain", "grain_base", "grain_top", "largest", "set_thickness", "set_count", "ripple_wavelength",
+    "grain", "grain_base", "grain_top", "d50", "largest", "set_thickness", "set_count", "ripple_wavelength",
     "ripple_height", "wave_period", "relief", "palaeocurrent", "flow_depth", "slope", "bioturbation",
 }  # fmt: skip
 """Columns in which a date can only be a number or a size that the spreadsheet has changed."""

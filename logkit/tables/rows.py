@@ -11,14 +11,15 @@ from collections.abc import Callable
 from dataclasses import replace
 from typing import Any
 
-from logkit.model import Bioturbation, Contact, CurrentReading, GrainState, SetThickness, Structure
+from logkit.model import Contact, CurrentReading, GrainState, SetThickness, Structure
 from logkit.tables.cells.contact import read_contact_cell
 from logkit.tables.cells.core import read_core_note
 from logkit.tables.cells.currents import read_currents
 from logkit.tables.cells.grain import read_grain, read_largest, read_size, read_sorting
-from logkit.tables.cells.lengths import Length, is_span, number, read_length, read_span
+from logkit.tables.cells.lengths import Length, is_span, read_length, read_span
 from logkit.tables.cells.other import (
-    read_bioturbation,
+    BioturbationCell,
+    read_bioturbation_cell,
     read_colour,
     read_fossils,
     read_interval,
@@ -109,7 +110,7 @@ class RowReader:
             text = self.cells.get(column)
             if not text:
                 continue
-            if _is_span(text):
+            if is_span(text):
                 self._span(column, text)
             else:
                 setattr(draft, name, self._length(column, text))
@@ -140,7 +141,7 @@ class RowReader:
             draft.pattern = self.take(read_pattern(text, unit, self.manner.scale), "thickness", text)
             draft.unplaced |= draft.pattern is None
             return
-        if _is_span(text):
+        if is_span(text):
             self._span("thickness", text)
             return
         reason, rest = gap_with_length(text)
@@ -224,6 +225,8 @@ class RowReader:
         self.put("grain", cell.states)
         self.put("largest", cell.largest)
         self.put("sorting", cell.sorting)
+        if len(cell.states) <= 1:
+            self.put("d50_mm", cell.d50_mm)
         self._rock(cell.lithology, cell.qualifiers, column)
         self._more_structures(cell.structures)
 
@@ -242,6 +245,19 @@ class RowReader:
             self.add("note", "grain.ends_first", "sizes at base and top stand beside a size of the bed; they count",
                      "", "grain")  # fmt: skip
         self.put("grain", ends)
+
+    def median(self, column: str, text: str) -> None:
+        """A measured median; it is the size of the bed where no other is written."""
+        size = self.take(read_size(self._with_unit(column, text), self.manner.scale), column, text)
+        if size is None:
+            return
+        if size.low_mm != size.high_mm:
+            self.add("error", "d50.not_measured", f"{text[:60]!r} is a class or a range, not a measured median",
+                     "write one size with its unit, for example 0.25 mm, or use the column grain", column)  # fmt: skip
+            return
+        self.draft.fields["d50_mm"] = size.low_mm
+        if not any(self.cells.get(name) for name in ("grain", "grain_base", "grain_top")):
+            self.put("grain", (GrainState(0.0, size),))
 
     def largest(self, column: str, text: str) -> None:
         """The largest clasts."""
@@ -378,18 +394,23 @@ class RowReader:
         self.draft.fields["flow_depth_m" if column == "flow_depth" else "slope"] = value
 
     def currents(self, column: str, text: str) -> None:
-        """Palaeocurrent readings as written."""
-        self._more_currents(self.take(read_currents(text), column, text) or ())
+        """Palaeocurrent readings as written; without a name they are on the first structure of the bed."""
+        structures = self.draft.fields.get("structures", ())
+        hint = structures[0].term if structures else ""
+        self._more_currents(self.take(read_currents(text, hint), column, text) or ())
 
     def _more_currents(self, currents: tuple[CurrentReading, ...]) -> None:
         if currents:
             self.draft.fields["currents"] = self.draft.fields.get("currents", ()) + currents
 
     def bioturbation(self, column: str, text: str) -> None:
-        """Bioturbation grade; fossils named beside it stay in the text."""
-        value: Bioturbation | None = self.take(read_bioturbation(text), column, text)
-        if value is not None:
-            self.draft.fields["bioturbation"] = value
+        """Bioturbation grade, and the fossils named beside it."""
+        cell: BioturbationCell | None = self.take(read_bioturbation_cell(text), column, text)
+        if cell is None:
+            return
+        if cell.bioturbation is not None:
+            self.draft.fields["bioturbation"] = cell.bioturbation
+        self.put_all("fossils", (*self.draft.fields.get("fossils", ()), *cell.fossils))
 
     def fossils(self, column: str, text: str) -> None:
         """Fossils, added to those of the structures cell."""
@@ -418,11 +439,6 @@ class RowReader:
             self.draft.fields["measured"] = False
 
 
-def _is_span(text: str) -> bool:
-    """True for two numbers joined; a number with an exponent such as 1e-05 is none."""
-    return is_span(text) and number(text)[0] is None
-
-
 def _simple(read: Callable[[str], Reading[Any]], field: str) -> Callable[[RowReader, str, str], None]:
     def into(reader: RowReader, column: str, text: str) -> None:
         value = reader.take(read(text), column, text)
@@ -438,6 +454,7 @@ _READERS: dict[str, Callable[[RowReader, str, str], None]] = {
     "grain": RowReader.grain,
     "grain_base": RowReader.grain_end,
     "grain_top": RowReader.grain_end,
+    "d50": RowReader.median,
     "largest": RowReader.largest,
     "sorting": _simple(read_sorting, "sorting"),
     "structures": RowReader.structures,

@@ -9,7 +9,8 @@ import math
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
 
-from logkit.model import Bed, Header, SizeReading
+from logkit.errors import nearest
+from logkit.model import Bed, Header, Log, SizeReading
 from logkit.tables.cells.lengths import number, read_length
 from logkit.tables.headings import Headings, find_headings
 from logkit.tables.sheet import Collector, Row, Sheet
@@ -155,33 +156,83 @@ def _count(text: str, row: Row, found: Collector) -> int | None:
     return int(value)
 
 
-def add_sizes(beds: list[Bed], sizes: SizeRows, header: Header, found: Collector) -> list[Bed]:
-    """Beds with the readings that belong to them, upward; readings outside their bed are found and left out."""
-    own = Collector(file=sizes.file or found.file, sheet=sizes.sheet)
-    by_name: dict[str, int] = {}
-    for index, bed in enumerate(beds):
-        by_name.setdefault(plain_cell(bed.name), index)
-    placed: dict[int, list[SizeReading]] = {}
+def add_sizes(logs: Sequence[Log], sizes: SizeRows) -> list[Log]:
+    """All logs of a file with the readings that belong to their beds, and with what was found on the way.
+
+    A reading without a section belongs to the only log that has its bed.
+    """
+    if not any(log.beds for log in logs):
+        return list(logs)
+    own = Collector(file=sizes.file, sheet=sizes.sheet)
+    tables = [_Beds(log) for log in logs]
     for row in sizes.rows:
-        if row.section and header.section and row.section != plain_cell(header.section):
-            continue
-        owner = _bed_of(row, beds, by_name, header, own)
+        table = _table_of(row, tables, own)
+        if table is not None:
+            table.take(row, own)
+    result = []
+    for table in tables:
+        section = table.log.header.section
+        said = [f for f in own.found if len(logs) == 1 or not f.section or f.section == section]
+        result.append(replace(table.log, beds=table.filled(), findings=(*table.log.findings, *said)))
+    return result
+
+
+def _table_of(row: SizeRow, tables: Sequence[_Beds], found: Collector) -> _Beds | None:
+    """The log a reading belongs to; None, with an error, when it cannot be told."""
+    owners = [t for t in tables if not row.section or not t.section or t.section == row.section]
+    if not owners:
+        names = [t.section for t in tables]
+        found.add("error", "sizes.no_section", f"{row.section!r} is no section of the table", "correct the section",
+                  row=row.row, column="section", cell=row.section, allowed=names,
+                  nearest=nearest(row.section, names) or "")  # fmt: skip
+        return None
+    if len(owners) == 1:
+        return owners[0]
+    having = [t for t in owners if row.bed in t.by_name]
+    if len(having) == 1:
+        return having[0]
+    names = [t.section for t in having or owners]
+    what = (
+        f"bed {row.bed!r} is in {len(having) or 'none'} of the sections" if row.bed else "no section is named"
+    )
+    found.add("error", "sizes.which_section", what, "write the section into a column section",
+              row=row.row, column="section", cell=row.bed, allowed=names)  # fmt: skip
+    return None
+
+
+class _Beds:
+    """The beds of one log with the readings placed in them so far."""
+
+    def __init__(self, log: Log) -> None:
+        self.log = log
+        self.section = plain_cell(log.header.section)
+        self.by_name: dict[str, int] = {}
+        for index, bed in enumerate(log.beds):
+            self.by_name.setdefault(plain_cell(bed.name), index)
+        self.placed: dict[int, list[SizeReading]] = {}
+
+    def take(self, row: SizeRow, found: Collector) -> None:
+        """Place a reading, or say why it has no place."""
+        header = self.log.header
+        owner = _bed_of(row, self.log.beds, self.by_name, header, found)
         if owner is None:
-            continue
-        bed = beds[owner]
+            return
+        bed = self.log.beds[owner]
         position = _position(row, bed, header)
         if not bed.base_m - _TOLERANCE_M <= position <= bed.top_m + _TOLERANCE_M:
-            own.add("error", "sizes.outside_bed",
-                    f"the reading lies outside bed {bed.name}, which is {bed.thickness_m:.4g} m thick",
-                    "correct the height or the bed", row=row.row, column="height_in_bed", cell=row.cell,
-                    section=header.section, bed=bed.name)  # fmt: skip
-            continue
-        placed.setdefault(owner, []).append(replace(row.reading, position_m=position))
-    found.found += own.found
-    result = list(beds)
-    for index, readings in placed.items():
-        result[index] = replace(beds[index], sizes=tuple(sorted(readings, key=lambda r: r.position_m)))
-    return result
+            found.add("error", "sizes.outside_bed",
+                      f"the reading lies outside bed {bed.name}, which is {bed.thickness_m:.4g} m thick",
+                      "correct the height or the bed", row=row.row, column="height_in_bed", cell=row.cell,
+                      section=header.section, bed=bed.name)  # fmt: skip
+            return
+        self.placed.setdefault(owner, []).append(replace(row.reading, position_m=position))
+
+    def filled(self) -> tuple[Bed, ...]:
+        """The beds with their readings, each upward."""
+        beds = list(self.log.beds)
+        for index, readings in self.placed.items():
+            beds[index] = replace(beds[index], sizes=tuple(sorted(readings, key=lambda r: r.position_m)))
+        return tuple(beds)
 
 
 def _position(row: SizeRow, bed: Bed, header: Header) -> float:

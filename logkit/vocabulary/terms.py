@@ -68,6 +68,7 @@ FILES: dict[str, tuple[str, ...]] = {
     "settings": (),
     "colours": (),
     "columns": ("unit",),
+    "size_columns": ("unit",),
 }
 """Vocabulary -> the fields its terms may have beside label, synonyms and source."""
 

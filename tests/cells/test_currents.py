@@ -118,3 +118,33 @@ def test_dip_towards(text: str) -> None:
     readings = read_currents(text).value
     assert readings is not None
     assert [(r.nature, r.azimuth_deg, r.dip_deg) for r in readings] == [("plane", 130, 25)]
+
+
+@pytest.mark.parametrize(
+    ("text", "read"),
+    [
+        ("22,5/140", [(140, 22.5)]),
+        ("140/22,5", [(140, 22.5)]),
+        ("fs 12,5/090; 14/100", [(90, 12.5), (100, 14)]),
+        ("38/095,33/102", [(95, 38), (102, 33)]),
+        ("350,10,185", [(350, None), (10, None), (185, None)]),
+    ],
+)
+def test_a_decimal_comma_is_told_from_a_list(text: str, read: list[tuple[float, float | None]]) -> None:
+    """One digit behind a comma is a decimal, and asked; anything else parts readings."""
+    reading = read_currents(text)
+    assert reading.value is not None
+    assert [(r.azimuth_deg, r.dip_deg) for r in reading.value] == read
+    assert any(r.code == "currents.decimal_comma" for r in reading.remarks) == any(
+        dip is not None and dip % 1 for _, dip in read
+    )
+
+
+def test_readings_without_a_name_are_on_the_structure_they_stand_beside() -> None:
+    """The hint names the feature; a name in the cell counts before it."""
+    (unnamed,) = read_currents("29/094", "trough_cross_bedding").value or ()
+    assert (unnamed.indicator, unnamed.nature) == ("cross_bedding", "plane")
+    (named,) = read_currents("flute 094", "trough_cross_bedding").value or ()
+    assert named.indicator == "flute"
+    (other,) = read_currents("29/094", "massive").value or ()
+    assert other.indicator == "unspecified"

@@ -236,9 +236,40 @@ def test_grades_outside_their_scheme_are_refused(text: str) -> None:
     assert read_bioturbation_cell("ii0").value is None
 
 
+@pytest.mark.parametrize(
+    ("text", "names"),
+    [
+        ("S7-S9, KG-12", ("S7", "S8", "S9", "KG-12")),
+        ("101-103", ("101", "102", "103")),
+        ("K1-112", ("K1-112",)),
+        ("S7-9", ("S7-9",)),
+        ("AB-12-AB-14", ("AB-12", "AB-13", "AB-14")),
+        ("S9-S7", ("S9-S7",)),
+        ("1-2000", ("1-2000",)),
+    ],
+)
+def test_a_range_of_samples_has_the_same_letters_on_both_sides(text: str, names: tuple[str, ...]) -> None:
+    """A site with a number behind it is the name of one sample."""
+    assert read_samples(text).value == names
+
+
+@pytest.mark.parametrize(
+    ("text", "names"),
+    [
+        ("231-34", ("231", "232", "233", "234")),
+        ("IMG_0231-33", ("IMG_0231", "IMG_0232", "IMG_0233")),
+        ("IMG_1-IMG_2", ("IMG_1", "IMG_2")),
+        ("P1-112", ("P1-112",)),
+        ("K1-112", ("K1-112",)),
+    ],
+)
+def test_a_range_of_photos_is_of_plain_numbers_or_of_one_camera(text: str, names: tuple[str, ...]) -> None:
+    """A name with a short number and a hyphen is one photo."""
+    assert read_photos(text).value == names
+
+
 def test_small_cells() -> None:
     """Samples, photos, markers and colours as people write them."""
-    assert read_samples("S7-9, KG-12").value == ("S7", "S8", "S9", "KG-12")
     assert read_photos("IMG_2031, 2033").value == ("IMG_2031", "2033")
     assert read_marker("Bentonite A?").value == ("Bentonite A", False)
     assert read_marker("Coal 1").value == ("Coal 1", True)

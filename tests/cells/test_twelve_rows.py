@@ -35,7 +35,7 @@ def test_row_1_divisions_grading_and_a_flute() -> None:
     (flute,) = contact.value.currents
     assert (flute.indicator, flute.nature, flute.azimuth_deg, flute.dip_deg) == ("flute", "azimuth", 75, None)
     assert "currents.azimuth_as_read" in codes(contact, "note")
-    bioturbation = cells.read_bioturbation("BI0").value
+    bioturbation = cells.read_bioturbation_cell("BI0").value.bioturbation
     assert bioturbation is not None
     assert (bioturbation.low, bioturbation.high) == (0, 0)
 

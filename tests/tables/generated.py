@@ -152,6 +152,7 @@ def described(draw: st.DrawFn, base: float, top: float) -> dict[str, Any]:
         "ripple_wavelength_m": draw(optional(size(0.01, 5))),
         "ripple_height_m": draw(optional(size(0.001, 1))),
         "climb_angle_deg": draw(optional(st.floats(0, 40))),
+        "d50_mm": draw(optional(size(1e-3, 200))),
         "wave_period_s": draw(optional(size(0.5, 25))),
         "contact": draw(optional(CONTACTS)),
         "currents": tuple(draw(st.lists(CURRENTS, max_size=3))),

@@ -235,6 +235,22 @@ def test_lost_core(read) -> None:  # type: ignore[no-untyped-def]
     assert only(filled, "core.lost_described").level == "question"
 
 
+def test_lost_core_of_a_table_of_thicknesses(read) -> None:  # type: ignore[no-untyped-def]
+    """What was cut and not recovered lies at the base of its run, before the next run begins."""
+    head = "# direction: down\n# unit: m\ncore,bed,thickness,lith\n"
+    log = read(head + "cut 9 m rec 8.5 m,1,4,sst\n,2,4.5,mdst\ncut 9 m rec 9 m,3,9,sst\n")
+    assert [(b.gap_reason, b.depth_top, b.depth_base) for b in log.beds[::-1]] == [
+        ("", 0, 4), ("", 4, 8.5), ("lost_core", 8.5, 9), ("", 9, 18),
+    ]  # fmt: skip
+    assert (only(log, "core.lost").level, only(log, "core.lost").row) == ("question", 4)
+    stated = read(head + "cut 9 m rec 8.5 m,1,8.5,sst\n,,0.5,lost core\n")
+    assert sum(b.is_gap for b in stated.beds) == 1
+    assert only(stated, "core.lost").level == "note"
+    filled = read(head + "cut 9 m rec 8 m,1,9,sst\n")
+    assert not any(b.is_gap for b in filled.beds)
+    assert only(filled, "core.lost_described").level == "question"
+
+
 def test_a_single_bed_and_a_log_of_gaps(read) -> None:  # type: ignore[no-untyped-def]
     """One bed is a log; so are gaps alone."""
     assert places(read("bed,thickness (m),lith\n1,2,sst\n")) == [("1", 0, 2)]

@@ -26,15 +26,14 @@ from logkit.tables.cells.sets import read_sets
 from logkit.tables.cells.structures import StructuresCell, read_structures
 from logkit.tables.cells.traces import (
     BioturbationCell,
-    read_bioturbation,
     read_bioturbation_cell,
     read_fossils,
 )
 
 __all__ = [
     "BioturbationCell", "ContactCell", "CoreNote", "GrainCell", "Length", "Pattern", "PatternPart", "Reading", "Remark",
-    "RockCell", "Span", "StructuresCell", "is_date", "is_pattern", "is_span", "read_attitude", "read_bioturbation",
-    "read_bioturbation_cell", "read_colour", "read_contact", "read_contact_cell", "read_core_note", "read_currents",
+    "RockCell", "Span", "StructuresCell", "is_date", "is_pattern", "is_span", "read_attitude", "read_bioturbation_cell",
+    "read_colour", "read_contact", "read_contact_cell", "read_core_note", "read_currents",
     "read_fossils", "read_gap", "read_grain", "read_interval", "read_largest", "read_length", "read_lithology",
     "read_marker", "read_number", "read_pattern", "read_photos", "read_samples", "read_sets", "read_size",
     "read_sorting", "read_span", "read_structures",

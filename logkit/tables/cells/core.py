@@ -17,6 +17,8 @@ _RECOVERED = re.compile(
 )
 _SPAN = re.compile(rf"(?<![\w.])(?P<span>{_LENGTH}\s*(?:-|to)\s*{_LENGTH})(?![\w])", re.I)
 
+_LEAST_LOSS_M = 0.005
+
 
 @dataclass(frozen=True, slots=True)
 class CoreNote:
@@ -99,6 +101,9 @@ def _say_recovery(cut_m: float | None, recovered_m: float | None, remarks: list[
     if not cut_m or recovered_m is None:
         return
     share = recovered_m / cut_m
+    if abs(cut_m - recovered_m) < _LEAST_LOSS_M:
+        remarks.append(note("core.recovery", "recovery complete, nothing lost"))
+        return
     if share > 1.0:
         remarks.append(
             note("core.over_recovery", f"recovered {share:.1%} of the length cut: the core expanded, or part of it is "

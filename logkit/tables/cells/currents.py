@@ -37,6 +37,9 @@ _NAMED_BEARING = re.compile(
     r"\s*[:=]?\s*(?P<bearings>\d{3}(?:\s*[-,&/]\s*\d{3})*)(?![\d.])",
     re.I,
 )
+_COMMA = re.compile(
+    r"(?<![\d.,])(?P<whole>\d{1,3}),(?P<tenths>\d)(?![\d.,])(?!\s?(?:°|deg\b)?\s?[NSEW]\b)", re.I
+)
 _MOST_READINGS = 500
 
 
@@ -56,9 +59,14 @@ def read_currents(text: str, hint: str = "") -> Reading[tuple[CurrentReading, ..
     if refused:
         return Reading(None, (refused,))
     remarks: list[Remark] = []
-    body = _repeated(_SPREAD.sub(" ", _COUNT.sub(" ", plain)), remarks)
+    body = _with_points(_repeated(_SPREAD.sub(" ", _COUNT.sub(" ", plain)), remarks), remarks)
     attitudes = find_attitudes(body, remarks)[:_MOST_READINGS]
     readings = _named(body, attitudes, hint, remarks)
+    if hint and readings and readings != _named(body, attitudes, "", []):
+        remarks.append(
+            note("currents.on_structure", f"{quoted(plain)} names no feature: read as measured on the structure of "
+                 "the bed", "write the feature before the reading where it is another one")
+        )  # fmt: skip
     if not readings and not any(r.level == "error" for r in remarks):
         remarks.append(
             error("currents.unreadable", f"{quoted(plain)} holds no direction",
@@ -81,6 +89,21 @@ def _repeated(text: str, remarks: list[Remark]) -> str:
         return " & ".join([match["bearing"]] * times) or match["bearing"]
 
     return _TIMES.sub(written_out, text)
+
+
+def _with_points(text: str, remarks: list[Remark]) -> str:
+    """The text with `22,5/140` as 22.5/140, which is asked: the comma could part two readings."""
+
+    def pointed(match: re.Match[str]) -> str:
+        whole, tenths = match["whole"], match["tenths"]
+        remarks.append(
+            question("currents.decimal_comma", f"the comma in {quoted(match[0])} is read as a decimal comma",
+                     "write a decimal point, or part readings with &",
+                     (f"{whole}.{tenths} degrees", f"readings {whole} and {tenths}"))
+        )  # fmt: skip
+        return f"{whole}.{tenths}"
+
+    return _COMMA.sub(pointed, text)
 
 
 def take_currents(text: str, hint: str, remarks: list[Remark]) -> tuple[str, tuple[CurrentReading, ...]]:

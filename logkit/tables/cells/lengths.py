@@ -131,8 +131,11 @@ def read_span(text: str, unit: str | None = None) -> Reading[Span]:
 
 
 def is_span(text: str) -> bool:
-    """True when the cell holds two numbers joined as a span."""
-    parts = [part for part in _SPLIT.split(clean(text), maxsplit=2) if part]
+    """True when the cell holds two numbers joined as a span; a number with an exponent such as 1e-05 is none."""
+    plain = clean(text)
+    if number(plain)[0] is not None:
+        return False
+    parts = [part for part in _SPLIT.split(plain, maxsplit=2) if part]
     return len(parts) == 2 and all(any(c.isdigit() for c in part) for part in parts)
 
 

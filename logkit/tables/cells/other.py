@@ -11,7 +11,6 @@ from logkit.tables.cells.reading import CACHE_SIZE, Reading, Remark, clean, erro
 from logkit.tables.cells.refused import refusal
 from logkit.tables.cells.traces import (
     BioturbationCell,
-    read_bioturbation,
     read_bioturbation_cell,
     read_fossils,
 )
@@ -19,7 +18,7 @@ from logkit.units import METRES
 from logkit.vocabulary import lexicon, vocabulary
 
 __all__ = [
-    "BioturbationCell", "read_bioturbation", "read_bioturbation_cell", "read_colour", "read_fossils", "read_interval",
+    "BioturbationCell", "read_bioturbation_cell", "read_colour", "read_fossils", "read_interval",
     "read_marker", "read_number", "read_photos", "read_samples",
 ]  # fmt: skip
 
@@ -30,18 +29,18 @@ _HUE = re.compile(
 )
 _NEUTRAL = re.compile(r"\bN\s?(?P<value>\d(?:\.\d)?)\b/?", re.I)
 _PHOTO_WORD = re.compile(r"\b(?:ph(?:oto)?s?|pics?|img|images?|fig)\b\.?\s*(?:no\.?|nos\.?|#)?\s*", re.I)
-_SAMPLE = re.compile(
-    r"^(?P<stem>[A-Za-z]{1,8}[-_]?(?:[A-Za-z\d]*[-_])??)(?P<first>\d{1,6})"
-    r"(?:\s*-\s*(?:(?P=stem))?(?P<last>\d{1,6}))?[A-Za-z]?$"
+_SAMPLE = re.compile(r"^[A-Za-z]{1,8}[-_]?(?:[A-Za-z\d]*[-_])?\d{1,6}[A-Za-z]?$")
+_RANGE = re.compile(
+    r"^(?P<stem>(?:[A-Za-z][A-Za-z\d]*[-_])?[A-Za-z_]{0,12}?)(?P<first>\d{1,8})\s*-\s*(?P<again>(?P=stem))(?P<last>\d{1,8})$"
 )
-_PHOTO = re.compile(
-    r"^(?P<stem>(?:IMG|DSC[NF]?|DSC|P)?[-_]?)(?P<first>\d{1,8})(?:\s*-\s*(?P<last>\d{1,8}))?$", re.I
-)
+_HALF_RANGE = re.compile(r"^(?P<stem>[A-Za-z]{1,8}[-_]?)(?P<first>\d{1,6})-(?P<last>\d{1,6})$")
+_CAMERA = re.compile(r"^(?P<stem>(?:IMG|DSC[NF]?|P)[-_]?)(?P<first>\d{3,8})\s*-\s*(?P<last>\d{1,8})$", re.I)
+_PHOTO = re.compile(r"^(?:IMG|DSC[NF]?|P)?[-_]?\d{1,8}$", re.I)
 _ONE_NUMBER = re.compile(
     r"[~]?\s*(?P<n>[-+]?(?:\d+(?:[.,]\d+)*|[.,]\d+)(?:e[-+]?\d{1,3})?)\s*(?:s|sec|seconds?|°|deg|%|°?C)?\??",
     re.I,
 )
-_MOST_EXPANDED = 500
+_MOST_EXPANDED = 100
 _INTERVAL = re.compile(
     r"^[~]?\s*(?P<a>-?(?:\d+(?:[.,]\d+)?|[.,]\d+)(?:e-?\d+)?)\s*(?P<ua>[A-Za-zµ]+)?\s*(?:(?:-|to|…|\.\.)\s*"
     r"(?P<b>-?(?:\d+(?:[.,]\d+)?|[.,]\d+)(?:e-?\d+)?))?\s*(?P<unit>[A-Za-zµ]+|'|\"|%|‰)?\s*\??$",
@@ -102,7 +101,10 @@ def _pieces(text: str) -> list[str]:
 
 @lru_cache(maxsize=CACHE_SIZE)
 def read_samples(text: str) -> Reading[tuple[str, ...]]:
-    """Sample names; `S7-9` is taken apart into S7, S8, S9. Photo numbers in the cell are left out and said."""
+    """Sample names; `S7-S9` and `101-103` are taken apart, `K1-112` is one name.
+
+    Photo numbers in the cell are left out and said.
+    """
     plain = clean(text)
     if not plain:
         return Reading(None)
@@ -113,14 +115,12 @@ def read_samples(text: str) -> Reading[tuple[str, ...]]:
     found: list[str] = []
     remarks: list[Remark] = []
     for piece in _pieces(re.sub(r"(?i)\b(?:samples?|spl|smpl)\b\.?\s*(?=\S)", "", rest)):
-        match = _SAMPLE.match(piece)
-        names = (
-            _expanded(match["stem"], match["first"], match["last"])
-            if match and match["last"] and match["stem"].isalpha()
-            else None
-        )
-        if names and len(names) > 1:
+        names = _range_of_names(_RANGE.match(piece))
+        if len(names) > 1:
             remarks.append(note("samples.range", f"{quoted(piece)} read as {len(names)} samples"))
+        elif len(_range_of_names(_HALF_RANGE.match(piece))) > 1:
+            remarks.append(note("samples.one_name", f"{quoted(piece)} is read as the name of one sample",
+                                "write the letters on both sides of a range, for example S7-S9"))  # fmt: skip
         found.extend(names or [piece[:80]])
     if photos:
         remarks.append(
@@ -142,20 +142,17 @@ def read_photos(text: str) -> Reading[tuple[str, ...]]:
     others: list[str] = []
     remarks: list[Remark] = []
     for piece in _pieces(_PHOTO_WORD.sub("", plain)):
-        match = _PHOTO.match(piece)
-        if match is None:
-            (others if _SAMPLE.match(piece) and _PHOTO_WORD.search(plain) else found).append(piece[:80])
+        names = _range_of_names(_RANGE.match(piece) or _CAMERA.match(piece), shortened=True)
+        if not names and not _PHOTO.match(piece) and _SAMPLE.match(piece) and _PHOTO_WORD.search(plain):
+            others.append(piece[:80])
             continue
-        names = _expanded(match["stem"], match["first"], match["last"])
-        if names is None:
-            names = [piece[:80]]
         if len(names) > 1:
             remarks.append(
                 note(
                     "photos.range", f"{quoted(piece)} read as {len(names)} photos, {names[0]} to {names[-1]}"
                 )
             )
-        found.extend(names)
+        found.extend(names or [piece[:80]])
     if others:
         shown = ", ".join(others)
         remarks.append(
@@ -171,15 +168,16 @@ def _without_photos(text: str) -> tuple[str, str]:
     return f"{text[: match.start()]} {text[match.end() :]}", match[0].strip()
 
 
-def _expanded(stem: str, first: str, last: str | None) -> list[str] | None:
-    """Names of a range; a shorter last number repeats the leading digits of the first. None when implausible."""
-    if last is None:
-        return [stem + first]
-    if len(last) < len(first):
+def _range_of_names(match: re.Match[str] | None, shortened: bool = False) -> list[str]:
+    """Names of a range, empty when implausible; in a `shortened` one `231-34` runs to 234."""
+    if match is None:
+        return []
+    stem, first, last = match["stem"], match["first"], match["last"]
+    if shortened and len(last) < len(first):
         last = first[: len(first) - len(last)] + last
     start, end = int(first), int(last)
-    if not start <= end < start + _MOST_EXPANDED:
-        return None
+    if not start < end < start + _MOST_EXPANDED:
+        return []
     return [f"{stem}{value:0{len(first)}d}" for value in range(start, end + 1)]
 
 

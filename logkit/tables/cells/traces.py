@@ -88,22 +88,6 @@ def read_bioturbation_cell(text: str) -> Reading[BioturbationCell]:
     return Reading(BioturbationCell(grade, fossils), tuple(remarks))
 
 
-def read_bioturbation(text: str) -> Reading[Bioturbation]:
-    """The grade of a bioturbation cell; traces written beside it are in `read_bioturbation_cell`."""
-    reading = read_bioturbation_cell(text)
-    if reading.value is None:
-        return Reading(None, reading.remarks)
-    remarks = reading.remarks
-    if reading.value.fossils:
-        named = ", ".join(reading.value.fossils)
-        remarks += (
-            note(
-                "bioturbation.fossils", f"traces stand beside the grade: {named}", "write them into fossils"
-            ),
-        )
-    return Reading(reading.value.bioturbation, remarks)
-
-
 def take_bioturbation(text: str, remarks: list[Remark]) -> tuple[str, Bioturbation | None]:
     """The text without a bioturbation grade that is named as one, and the grade."""
     match = _GRADE.search(text)
