@@ -8,9 +8,10 @@ from __future__ import annotations
 
 from io import BytesIO
 from typing import Any
+from zipfile import ZIP_DEFLATED, ZipFile, ZipInfo
 
 from logkit.model import CAUTION_SHORT
-from logkit.report.document import Block, Document, Figure, Heading, Paragraph, Table, Terms
+from logkit.report.document import Block, Document, Figure, Heading, Paragraph, Table, Terms, captions
 from logkit.words import one_line
 
 SVG_EXTENSION = "{96DAC541-7B7A-43D3-8B79-37D633B846F1}"
@@ -45,17 +46,27 @@ def document_docx(document: Document) -> bytes:
     file.add_paragraph(document.caution, style="Intense Quote")
     if document.organisation:
         file.add_paragraph(one_line(document.organisation))
+    names = captions(document)
     for section in document.sections:
         file.add_page_break()
         file.add_heading(section.title, 1)
         for block in section.blocks:
-            _add_block(file, block)
+            _add_block(file, block, names)
     buffer = BytesIO()
     file.save(buffer)
-    return buffer.getvalue()
+    return _timeless(buffer.getvalue())
 
 
-def _add_block(file: Any, block: Block) -> None:
+def _timeless(packed: bytes) -> bytes:
+    """The same archive with a fixed time on each part, so that the same log gives the same bytes."""
+    result = BytesIO()
+    with ZipFile(BytesIO(packed)) as old, ZipFile(result, "w", ZIP_DEFLATED) as new:
+        for name in old.namelist():
+            new.writestr(ZipInfo(name, (2000, 1, 1, 0, 0, 0)), old.read(name), ZIP_DEFLATED)
+    return result.getvalue()
+
+
+def _add_block(file: Any, block: Block, names: dict[str, str]) -> None:
     match block:
         case Paragraph(text, kind):
             file.add_paragraph(text, style="Intense Quote" if kind == "caution" else None)
@@ -67,11 +78,11 @@ def _add_block(file: Any, block: Block) -> None:
                 line.add_run(f"{term}  ").bold = True
                 line.add_run(meaning)
         case Table():
-            _add_caption(file, "Table", block.caption)
+            _add_caption(file, names[block.id], block.caption)
             _add_rows(file, [[c.label for c in block.columns], *block.rows], heading=True)
         case Figure():
             _add_picture(file, block)
-            _add_caption(file, "Figure", block.caption)
+            _add_caption(file, names[block.id], block.caption)
 
 
 def _add_rows(file: Any, rows: list[Any], heading: bool = False) -> None:
@@ -109,15 +120,17 @@ def _add_rows(file: Any, rows: list[Any], heading: bool = False) -> None:
     file.add_paragraph()
 
 
-def _add_caption(file: Any, kind: str, text: str) -> None:
+def _add_caption(file: Any, name: str, text: str) -> None:
     """A caption with a counting field, so that cross-references and lists of figures work."""
     from docx.oxml import parse_xml
     from docx.oxml.ns import nsdecls
 
+    kind, number = name.split(" ")
     line = file.add_paragraph(style="Caption")
     line.add_run(f"{kind} ")
     field = (
-        f'<w:fldSimple {nsdecls("w")} w:instr=" SEQ {kind} \\* ARABIC "><w:r><w:t>0</w:t></w:r></w:fldSimple>'
+        f'<w:fldSimple {nsdecls("w")} w:instr=" SEQ {kind} \\* ARABIC ">'
+        f"<w:r><w:t>{number}</w:t></w:r></w:fldSimple>"
     )
     line._p.append(parse_xml(field))
     line.add_run(f". {one_line(text)}")

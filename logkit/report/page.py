@@ -15,7 +15,7 @@ from logkit.report.ledger_view import ledger_headings
 from logkit.report.parts_flow import size_words
 from logkit.report.parts_log import contact, label, rock, sizes
 from logkit.report.settings import ReportSettings
-from logkit.report.wells import Well
+from logkit.report.wells import Well, depth_or_height
 from logkit.report.wording import Units
 from logkit.words import digits
 
@@ -93,11 +93,10 @@ def _facts(well: Well, bed: Bed, units: Units) -> list[tuple[str, str]]:
             f", probability {grading.probability:.2f}" if grading.probability else ""
         )
         verdict += f" ({grading.basis})" if grading.basis else ""
-    where = (
-        f"{well.position(bed.base_m, units)} to {well.position(bed.top_m, units)} {well.position_unit(units)}"
-    )
+    ends = [well.position(bed.base_m, units), well.position(bed.top_m, units)]
     if well.downward:
-        where = f"depth {well.position(bed.top_m, units)} to {well.position(bed.base_m, units)} {well.position_unit(units)}"
+        ends.reverse()
+    where = f"{depth_or_height(well)} {' to '.join(ends)} {well.position_unit(units)}"
     return [
         ("position", where),
         ("thickness", units.height_words(bed.thickness_m) + (" at least" if bed.minimum_thickness else "")),

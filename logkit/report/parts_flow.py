@@ -80,7 +80,7 @@ def history(well: Well, units: Units) -> Iterator[Block]:
             f"Flow history of {well.name}: velocity of each phase against {depth_or_height(well)}, not to the scale of "
             f"the column. Bar P10–P90, line median, arrow a one-sided bound; a lean shows grain-size change "
             f"inside a phase. Source: table of phases.",
-            f"Bars of velocity ranges of {counted(len(well.history.estimates), 'phase')} against {depth_or_height(well)}.",
+            f"Bars of velocity ranges of {counted(len(well.history.estimates), 'phase')} by {depth_or_height(well)}.",
             svg,
             width,
             height,

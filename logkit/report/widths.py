@@ -5,6 +5,7 @@ Only measuring and breaking of words belong here; how a table looks is in the te
 
 from __future__ import annotations
 
+import math
 import re
 from dataclasses import dataclass
 
@@ -14,7 +15,10 @@ from logkit.report.document import Table
 SIZES_PT = (6.6, 6.0, 5.4)
 """Type sizes that are tried, the first that fits is taken."""
 
-PADDING_MM = 2.6
+CLEARLY_SHORTER = 0.85
+"""A smaller type must save this part of the height, its own smallness counted, to be taken."""
+
+PADDING_MM = 2.7
 """Room between the texts of two columns."""
 
 LONGEST_PIECE = (24, 12, 6)
@@ -52,14 +56,23 @@ def fit(table: Table, upright_mm: float, sideways_mm: float) -> Fit:
 
     Returns
     -------
-    The largest type on an upright page in which every word fits, else on a page turned sideways.
+    On an upright page if every word fits there, else on a page turned sideways; smaller type where it makes
+    the table clearly shorter.
     """
     for longest in LONGEST_PIECE:
+        measured = _measure_table(table, longest)
         for wide in (False, True):
+            total = sideways_mm if wide else upright_mm
+            best: tuple[float, Fit] | None = None
             for size in SIZES_PT:
-                widths = _widths(table, sideways_mm if wide else upright_mm, size, longest)
-                if widths is not None:
-                    return Fit(widths, size, wide, longest)
+                widths = _widths(measured, total, size)
+                if widths is None:
+                    continue
+                height = _lines(measured, widths, size) * size
+                if best is None or height < CLEARLY_SHORTER * best[0]:
+                    best = height, Fit(widths, size, wide, longest)
+            if best is not None:
+                return best[1]
     count = len(table.columns)
     return Fit((sideways_mm / count,) * count, SIZES_PT[-1], True, LONGEST_PIECE[-1])
 
@@ -84,23 +97,44 @@ def breakable(text: str, longest: int) -> str:
     return " ".join(words)
 
 
-def _widths(table: Table, total: float, size: float, longest: int) -> tuple[float, ...] | None:
+@dataclass(frozen=True, slots=True)
+class _Measured:
+    """Widths at a type of one point, mm: of the widest word of each column, and of each whole cell."""
+
+    words: tuple[float, ...]
+    heads: tuple[float, ...]
+    cells: tuple[tuple[float, ...], ...]
+
+
+def _measure_table(table: Table, longest: int) -> _Measured:
+    known: dict[str, tuple[float, float]] = {}
+
+    def measured(text: str) -> tuple[float, float]:
+        if text not in known:
+            known[text] = _measure(text, longest)
+        return known[text]
+
+    heads = [_measure(column.label, longest, bold=True) for column in table.columns]
+    rows = [[measured(cell) for cell in row] for row in table.rows if len(row) == len(heads)]
+    words = [max([head[0], *(row[i][0] for row in rows)]) for i, head in enumerate(heads)]
+    cells = tuple(tuple(cell[1] for cell in row) for row in rows)
+    return _Measured(tuple(words), tuple(head[1] for head in heads), cells)
+
+
+def _widths(measured: _Measured, total: float, size: float) -> tuple[float, ...] | None:
     """Widths that hold every word, None when they do not fit."""
-    least, natural, wanted = [], [], []
-    for place, column in enumerate(table.columns):
-        cells = {row[place] for row in table.rows if len(row) > 1}
-        lines = [_measure(cell, size, longest) for cell in cells]
-        lines.append(_measure(column.label, size, longest, bold=True))
-        least.append(max(word for word, _ in lines) + PADDING_MM)
-        natural.append(max(whole for _, whole in lines) + PADDING_MM)
-        wanted.append(sum(whole for _, whole in lines) / len(lines))
+    count = len(measured.heads)
+    columns = [[measured.heads[i], *(row[i] for row in measured.cells)] for i in range(count)]
+    least = [size * word + PADDING_MM for word in measured.words]
+    natural = [size * max(column) + PADDING_MM for column in columns]
+    wanted = [size * sum(column) / len(column) for column in columns]
     if sum(natural) <= total:
         return tuple(natural)
     spare = total - sum(least)
     if spare < 0:
         return None
     widths = list(least)
-    growing = [i for i in range(len(widths)) if natural[i] > least[i]]
+    growing = [i for i in range(count) if natural[i] > least[i]]
     while spare > 0.01 and growing:
         share = spare / sum(wanted[i] for i in growing)
         for i in growing:
@@ -111,8 +145,17 @@ def _widths(table: Table, total: float, size: float, longest: int) -> tuple[floa
     return tuple(widths)
 
 
-def _measure(text: str, size: float, longest: int, bold: bool = False) -> tuple[float, float]:
-    """Width of the widest word and of the whole text, mm; with a little air for kerning."""
+def _lines(measured: _Measured, widths: tuple[float, ...], size: float) -> int:
+    """Lines of text that the table takes, about."""
+    rooms = [(width - PADDING_MM) / size + 1e-6 for width in widths]
+    return sum(
+        max((math.ceil(cell / room) for cell, room in zip(row, rooms, strict=True)), default=1)
+        for row in measured.cells
+    )
+
+
+def _measure(text: str, longest: int, bold: bool = False) -> tuple[float, float]:
+    """Width of the widest word and of the whole text at one point, mm; with a little air for kerning."""
     pieces = _PIECES.split(breakable(text, longest))
-    widest = max((width_mm(piece.replace(JOINED_DASH, "–"), size, bold) for piece in pieces), default=0.0)
-    return 1.02 * widest, 1.02 * width_mm(text, size, bold)
+    widest = max((width_mm(piece.replace(JOINED_DASH, "–"), 1.0, bold) for piece in pieces), default=0.0)
+    return 1.02 * widest, 1.02 * width_mm(text, 1.0, bold)
