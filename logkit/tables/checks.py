@@ -264,6 +264,26 @@ def _sizes(beds: Sequence[Bed], codes: str, found: Collector) -> None:
                 "check both", "grain" if bed.written_in("grain") else "lithology",
                 choices=("as written", "a slip in one of the two"))  # fmt: skip
         _code_sizes(bed, tables, found)
+        _structure_sizes(bed, found)
+
+
+def _structure_sizes(bed: Bed, found: Collector) -> None:
+    """The only structure of a bed, written in words, that does not form in its sizes.
+
+    With several structures one of them may sit in a part whose size nobody wrote down.
+    """
+    terms = vocabulary("structures")
+    if len(bed.structures) != 1 or bed.structures[0].code or bed.structures[0].term not in terms:
+        return
+    term = terms[bed.structures[0].term]
+    limits = term.size_mm
+    if limits is None or any(s.size.low_mm < limits[1] and s.size.high_mm > limits[0] for s in bed.grain):
+        return
+    size = bed.size
+    label = size.label if size is not None and size.label else "the size written"
+    _at(bed, found, "question", "structures.size", f"{term.label}: known from {_mm(*limits)}, not from {label}",
+        "check the structure and the size", "structures",
+        choices=("as written", "a slip in one of the two"))  # fmt: skip
 
 
 def _code_sizes(bed: Bed, tables: Sequence[CodeTable], found: Collector) -> None:

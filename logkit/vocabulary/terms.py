@@ -29,7 +29,7 @@ class Term:
     synonyms : other words people write
     group : what kind of structure, contact, fossil … it is
     family : texture family of a lithology
-    size_mm : usual grain-size range of a lithology
+    size_mm : usual grain-size range of a lithology; range of sizes in which a structure can form
     bed_state : state of the bed that makes a structure, where there is exactly one
     limit_phi : upper limit of a sorting class
     sense, nature, rank : of a palaeocurrent indicator: "direction" or "axis"; "plane" or "line"; "high" …
@@ -56,7 +56,7 @@ class Term:
 
 
 FILES: dict[str, tuple[str, ...]] = {
-    "structures": ("group", "bed_state"),
+    "structures": ("group", "bed_state", "size_mm"),
     "lithologies": ("family", "size_mm"),
     "qualifiers": ("group",),
     "contacts": (),

@@ -1,4 +1,4 @@
-"""The examples: they read, their planted slips are found, the workbook is made from its rows."""
+"""The examples: they read, and the workbook is made from its rows."""
 
 from __future__ import annotations
 
@@ -9,8 +9,7 @@ import pytest
 from openpyxl import load_workbook
 
 from logkit.compare import compare_logs
-from logkit.errors import LogErrors
-from logkit.model import Finding, Log
+from logkit.model import Log
 from logkit.tables import read_log
 
 EXAMPLES = Path(__file__).parents[2] / "examples"
@@ -27,12 +26,6 @@ def river() -> Log:
     return read_log(EXAMPLES / "river" / "tarrow_bend.csv")
 
 
-def questions(log: Log, row_of_bed: str, column: str) -> list[Finding]:
-    """Questions about a cell, found by the bed's name."""
-    rows = {b.row for b in log.beds if b.name == row_of_bed}
-    return [f for f in log.findings if f.level == "question" and f.row in rows and f.column == column]
-
-
 @pytest.mark.parametrize("path", INPUTS, ids=lambda p: p.stem)
 def test_every_example_reads_without_an_error_and_says_it_is_invented(path: Path) -> None:
     """Examples can be drawn, and none may be taken for a real place."""
@@ -40,28 +33,6 @@ def test_every_example_reads_without_an_error_and_says_it_is_invented(path: Path
     assert not log.count("error")
     assert len(log.real_beds) >= 40
     assert "invented" in " ".join((log.header.location, *(v for _, v in log.header.extra)))
-
-
-@pytest.mark.parametrize(
-    ("bed", "column", "words"),
-    [
-        ("11", "thickness", "read as 0.72 m"),
-        ("12", "structures", "trough cross-bedding"),
-        ("17", "set_thickness", "thicker than its bed"),
-        ("18", "grain", "write cL→mU if grading was meant"),
-        ("23", "structures", "may be plane lamination"),
-        ("25", "bed", "bed 24 is missing"),
-        ("31", "bed", "bed 31 stands in row"),
-        ("38", "grain", "write mU→fL if grading was meant"),
-        ("43", "base", "above the sum of the thicknesses"),
-        ("47", "grain", "alternative"),
-        ("55", "structures", "shale"),
-    ],
-)
-def test_a_planted_slip_of_the_river_is_asked(river: Log, bed: str, column: str, words: str) -> None:
-    """Each planted slip is a question with row, column and remedy."""
-    asked = questions(river, bed, column)
-    assert any(words in f"{f.message} {f.remedy} {f.nearest}" and f.remedy for f in asked), asked
 
 
 def test_the_gaps_of_the_river_count_in_height_only(river: Log) -> None:
@@ -73,14 +44,6 @@ def test_the_gaps_of_the_river_count_in_height_only(river: Log) -> None:
 def test_in_bed_sizes_of_the_river_are_found(river: Log) -> None:
     """The companion file belongs to its beds."""
     assert [len(river.bed(name).sizes) for name in ("13", "29", "34", "43")] == [5, 4, 6, 4]
-
-
-def test_the_page_with_errors_is_refused_with_all_of_them() -> None:
-    """Every planted error is listed at once with its row."""
-    with pytest.raises(LogErrors) as caught:
-        read_log(EXAMPLES / "river" / "tarrow_bend_slips.csv")
-    rows = {f.row for f in caught.value.findings if f.level == "error"}
-    assert rows == {15, 16, 17, 18, 20, 21, 22}
 
 
 def test_the_turbidites_have_forty_rows_and_their_packet() -> None:

@@ -135,7 +135,9 @@ def read_grain(text: str, scale: str = "wentworth") -> Reading[GrainCell]:
     if not states:
         states = _states_without_class(plain, d50, lithology, scale, remarks)
         if not states and largest is None and not (lithology or words.terms):
-            return Reading(None, (*remarks, no_size_remark(plain, scale)))
+            if not any(remark.level == "error" for remark in remarks):
+                remarks.append(no_size_remark(plain, scale))
+            return Reading(None, tuple(remarks))
     elif d50 is not None and len(states) == 1:
         _check_median(states[0].size, d50, remarks)
     left = unread(words.unknown)

@@ -33,7 +33,7 @@ _SAMPLE = re.compile(r"^[A-Za-z]{1,8}[-_]?(?:[A-Za-z\d]*[-_])?\d{1,6}[A-Za-z]?$"
 _RANGE = re.compile(
     r"^(?P<stem>(?:[A-Za-z][A-Za-z\d]*[-_])?[A-Za-z_]{0,12}?)(?P<first>\d{1,8})\s*-\s*(?P<again>(?P=stem))(?P<last>\d{1,8})$"
 )
-_HALF_RANGE = re.compile(r"^(?P<stem>[A-Za-z]{1,8}[-_]?)(?P<first>\d{1,6})-(?P<last>\d{1,6})$")
+_HALF_RANGE = re.compile(r"^(?P<stem>[A-Za-z]{1,8}[-_]?)(?P<first>[1-9]\d{0,5})-(?P<last>[1-9]\d{0,5})$")
 _CAMERA = re.compile(r"^(?P<stem>(?:IMG|DSC[NF]?|P)[-_]?)(?P<first>\d{3,8})\s*-\s*(?P<last>\d{1,8})$", re.I)
 _PHOTO = re.compile(r"^(?:IMG|DSC[NF]?|P)?[-_]?\d{1,8}$", re.I)
 _ONE_NUMBER = re.compile(
@@ -118,7 +118,7 @@ def read_samples(text: str) -> Reading[tuple[str, ...]]:
         names = _range_of_names(_RANGE.match(piece))
         if len(names) > 1:
             remarks.append(note("samples.range", f"{quoted(piece)} read as {len(names)} samples"))
-        elif len(_range_of_names(_HALF_RANGE.match(piece))) > 1:
+        elif _range_of_names(_HALF_RANGE.match(piece)):
             remarks.append(note("samples.one_name", f"{quoted(piece)} is read as the name of one sample",
                                 "write the letters on both sides of a range, for example S7-S9"))  # fmt: skip
         found.extend(names or [piece[:80]])
