@@ -6,7 +6,7 @@ Geometry only. All lines of a bed are cut in one pass, since array code pays per
 from __future__ import annotations
 
 import math
-from collections.abc import Sequence
+from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
@@ -20,45 +20,62 @@ LEAST_REST_MM = 0.35
 """Shorter rests of cut lines are left out."""
 
 
-def cut(lines: Sequence[Array], polygon: Array) -> list[list[Array]]:
+@dataclass(frozen=True, slots=True)
+class Runs:
+    """Polylines one after the other.
+
+    Attributes
+    ----------
+    points : points of all of them, mm
+    starts : where each begins in `points`
+    owners : for each the line it is a part of
+    """
+
+    points: Array
+    starts: list[int]
+    owners: list[int]
+
+    def lines(self) -> list[Array]:
+        """The polylines one by one."""
+        return np.split(self.points, self.starts[1:]) if self.starts else []
+
+
+def cut(points: Array, owner: NDArray[np.int64], polygon: Array) -> Runs:
     """The parts of polylines that lie inside a polygon.
 
     Parameters
     ----------
-    lines : each (n, 2), mm
+    points : points of all lines, one line after the other, (n, 2), mm
+    owner : number of the line of each point, increasing
     polygon : (m, 2), mm
 
     Returns
     -------
-    For each line its parts, in order along the line, simplified
+    the parts, in order along their lines; rests too short to see are left out
     """
-    if not lines:
-        return []
-    sizes = np.array([len(line) for line in lines])
-    points = np.concatenate(lines)
-    owner = np.repeat(np.arange(len(lines)), sizes)
     piece = np.flatnonzero(owner[1:] == owner[:-1])
     start, step = points[piece], points[piece + 1] - points[piece]
     at_piece, along = _crossings(start, step, polygon)
     # every piece is split at its crossings; a part is inside when its middle is
-    which = np.concatenate([np.arange(len(piece)), np.arange(len(piece)), at_piece])
-    share = np.concatenate([np.zeros(len(piece)), np.ones(len(piece)), along])
-    order = np.lexsort((share, which))
-    which, share = which[order], share[order]
-    pairs = np.flatnonzero((which[1:] == which[:-1]) & (share[1:] - share[:-1] > 1e-9))
-    which_part, low, high = which[pairs], share[pairs], share[pairs + 1]
-    origin, vector = start[which_part], step[which_part]
-    middle = origin + (0.5 * (low + high))[:, None] * vector
-    keep = inside(middle, polygon)
-    first, last = origin + low[:, None] * vector, origin + high[:, None] * vector
-    return _joined(owner[piece[which_part]], first, last, keep, len(lines))
+    count = len(piece)
+    which, share = np.arange(count), np.zeros(count)
+    if at_piece.size:
+        which, share = np.concatenate([which, at_piece]), np.concatenate([share, along])
+        order = np.lexsort((share, which))
+        which, share = which[order], share[order]
+    stop = np.ones(which.size)
+    stop[:-1][which[1:] == which[:-1]] = share[1:][which[1:] == which[:-1]]
+    origin, vector = start[which], step[which]
+    first, last = origin + share[:, None] * vector, origin + stop[:, None] * vector
+    keep = np.flatnonzero((stop - share > 1e-9) & inside(0.5 * (first + last), polygon))
+    return _joined(owner[piece[which]], first, last, keep)
 
 
 def inside(points: Array, polygon: Array) -> NDArray[np.bool_]:
     """True for points inside a polygon (even-odd)."""
     x, y = points[:, 0, None], points[:, 1, None]
     ax, ay = polygon[:, 0], polygon[:, 1]
-    bx, by = np.roll(ax, -1), np.roll(ay, -1)
+    bx, by = np.concatenate((ax[1:], ax[:1])), np.concatenate((ay[1:], ay[:1]))
     with np.errstate(divide="ignore", invalid="ignore", over="ignore", under="ignore"):
         at = ax + (y - ay) * ((bx - ax) / (by - ay))
     crosses = ((ay > y) != (by > y)) & (x < at)
@@ -67,7 +84,7 @@ def inside(points: Array, polygon: Array) -> NDArray[np.bool_]:
 
 def _crossings(start: Array, step: Array, polygon: Array) -> tuple[NDArray[np.int64], Array]:
     """Pieces that cross an edge of the polygon, and the share of the piece at which they do."""
-    edge = np.roll(polygon, -1, axis=0) - polygon
+    edge = np.concatenate((polygon[1:], polygon[:1])) - polygon
     cross = step[:, None, 0] * edge[None, :, 1] - step[:, None, 1] * edge[None, :, 0]
     gap = polygon[None, :, :] - start[:, None, :]
     with np.errstate(divide="ignore", invalid="ignore", over="ignore", under="ignore"):
@@ -78,22 +95,23 @@ def _crossings(start: Array, step: Array, polygon: Array) -> tuple[NDArray[np.in
     return pieces, t[pieces, edges]
 
 
-def _joined(
-    owner: NDArray[np.int64], first: Array, last: Array, keep: NDArray[np.bool_], count: int
-) -> list[list[Array]]:
+def _joined(owner: NDArray[np.int64], first: Array, last: Array, kept: NDArray[np.int64]) -> Runs:
     """Parts that are kept and follow each other, as polylines of their line."""
-    parts: list[list[Array]] = [[] for _ in range(count)]
-    kept = np.flatnonzero(keep)
     if not kept.size:
-        return parts
-    joint = (kept[1:] == kept[:-1] + 1) & (owner[kept[1:]] == owner[kept[:-1]])
-    edges = np.concatenate([[0], np.flatnonzero(~joint) + 1, [kept.size]])
-    for low, high in zip(edges[:-1].tolist(), edges[1:].tolist(), strict=True):
-        index = kept[low:high]
-        line = np.concatenate([first[index], last[index[-1:]]])
-        if float(np.hypot(*(line[1:] - line[:-1]).T).sum()) >= LEAST_REST_MM:
-            parts[int(owner[index[0]])].append(simplified(line))
-    return parts
+        return Runs(np.empty((0, 2)), [], [])
+    fresh = np.ones(kept.size, dtype=bool)
+    fresh[1:] = (kept[1:] != kept[:-1] + 1) | (owner[kept[1:]] != owner[kept[:-1]])
+    first, last, owner = first[kept], last[kept], owner[kept]
+    begins = np.flatnonzero(fresh)
+    long = np.add.reduceat(np.hypot(*(last - first).T), begins) >= LEAST_REST_MM
+    seen = np.repeat(long, np.diff(np.append(begins, kept.size)))
+    first, last, owner, fresh = first[seen], last[seen], owner[seen], fresh[seen]
+    place = np.arange(len(last)) + np.cumsum(fresh)
+    points = np.empty((len(last) + int(fresh.sum()), 2))
+    points[place] = last
+    begins = place[fresh] - 1
+    points[begins] = first[fresh]
+    return Runs(points, begins.tolist(), owner[fresh].tolist())
 
 
 def simplified(line: Array) -> Array:

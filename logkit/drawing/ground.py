@@ -7,12 +7,16 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from functools import cache, cached_property
+from typing import TYPE_CHECKING
 
 import numpy as np
 from numpy.typing import NDArray
 
 from logkit.drawing.noise import FINEST_MM, scatter
 from logkit.drawing.shapes import Point
+
+if TYPE_CHECKING:
+    from logkit.drawing.strips import Window
 
 Array = NDArray[np.float64]
 Mask = NDArray[np.bool_]
@@ -32,6 +36,7 @@ class Ground:
     knots : (y on the page, phi); linear between, constant outside
     seed : of every random choice on this ground
     clear : lines that marks keep away from
+    windows : pieces of strips whose lines marks keep away from
     """
 
     def __init__(
@@ -40,6 +45,7 @@ class Ground:
         knots: Sequence[tuple[float, float]],
         seed: int,
         clear: Sequence[LineSegment] = (),
+        windows: Sequence[Window] = (),
     ) -> None:
         points = [(float(x), float(y)) for x, y in outline]
         self.outline = np.array(points)
@@ -53,6 +59,7 @@ class Ground:
         self.area = 0.5 * abs(sum(a[0] * b[1] - a[1] * b[0] for a, b in zip(points, turned, strict=True)))
         self.phi_range = (min(phi for _, phi in ordered), max(phi for _, phi in ordered))
         self._edges = np.array([(*a, *b) for a, b in zip(points, turned, strict=True) if a != b])
+        self._windows = windows
         self._raster: Mask | None = None
         self._cell = _CELL_MM
         if len(clear):
@@ -101,10 +108,13 @@ class Ground:
         if not x.size:
             return np.zeros(x.shape, dtype=bool)
         held = self._inside(x, y, margin)
-        if self._raster is not None:
+        if self._raster is not None or self._windows:
             index = np.flatnonzero(held)
             margins = np.broadcast_to(np.asarray(margin, dtype=float), x.shape)[index]
-            held[index] = ~self._near(x[index], y[index], margins)
+            near = [piece.near(x[index], y[index], margins) for piece in self._windows]
+            if self._raster is not None:
+                near.append(self._near(x[index], y[index], margins))
+            held[index] = ~np.logical_or.reduce(near)
         return held
 
     def holds_marks(self, x: Array, y: Array, margin: float) -> Mask:

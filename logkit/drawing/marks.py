@@ -10,7 +10,7 @@ import math
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 
-from logkit.drawing.shapes import Circle, Paint, Path, Point, Segment, Shape
+from logkit.drawing.shapes import Circle, Paint, Path, Point, Segment, polyline
 from logkit.drawing.style import Style
 
 STEP_WORDS: dict[str, str] = {
@@ -87,7 +87,7 @@ def parse_step(text: str) -> Step:
 
 def draw_mark(
     mark: Mark, place: Place, unit: float, style: Style, ink: str, width: float
-) -> tuple[Shape, ...]:
+) -> tuple[Path | Circle, ...]:
     """Shapes of a mark.
 
     Parameters
@@ -100,19 +100,18 @@ def draw_mark(
     return tuple(_draw(step, place, unit, style, ink, width * step.weight) for step in mark)
 
 
-def _draw(step: Step, place: Place, unit: float, style: Style, ink: str, width: float) -> Shape:
-    line = Paint(stroke=ink, width=width, cap="round", join="round")
-    paper = Paint(fill=style.colours.clast, stroke=ink, width=width, join="round")
-    paints = {
-        "solid": Paint(fill=ink),
-        "bean": Paint(fill=ink),
-        "dot": Paint(fill=ink),
-        "cut": paper,
-        "pebble": paper,
-        "hole": paper,
-        "chip": Paint(fill=style.colours.chip, stroke=ink, width=0.5 * width),
-    }
-    paint = paints.get(step.word, line)
+def _paint(word: str, style: Style, ink: str, width: float) -> Paint:
+    if word in ("solid", "bean", "dot"):
+        return Paint(fill=ink)
+    if word in ("cut", "pebble", "hole"):
+        return Paint(fill=style.colours.clast, stroke=ink, width=width, join="round")
+    if word == "chip":
+        return Paint(fill=style.colours.chip, stroke=ink, width=0.5 * width)
+    return Paint(stroke=ink, width=width, cap="round", join="round")
+
+
+def _draw(step: Step, place: Place, unit: float, style: Style, ink: str, width: float) -> Path | Circle:
+    paint = _paint(step.word, style, ink, width)
     if step.word in ("ring", "hole", "dot"):
         x, y, radius = step.numbers
         return Circle(place(x, y), radius * unit, paint)
@@ -121,10 +120,7 @@ def _draw(step: Step, place: Place, unit: float, style: Style, ink: str, width: 
         return Path(smooth(points), paint)
     if step.word in ("blob", "pebble", "chip", "bean"):
         return Path(smooth(points, closed=True), paint)
-    steps: list[Segment] = [("M" if i == 0 else "L", point) for i, point in enumerate(points)]
-    if step.word != "line":
-        steps.append(("Z", ()))
-    return Path(tuple(steps), paint)
+    return Path(polyline(points, closed=step.word != "line"), paint)
 
 
 def smooth(points: Sequence[Point], closed: bool = False) -> tuple[Segment, ...]:

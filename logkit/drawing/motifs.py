@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import dataclasses
 import itertools
+import math
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from functools import cache
@@ -17,15 +18,16 @@ from typing import Any
 
 import numpy as np
 
-from logkit.drawing.cutting import cut, inside
+from logkit.drawing.cutting import Runs, inside
 from logkit.drawing.data_file import DataText, Reader, field_types, read_data
 from logkit.drawing.ground import Array, LineSegment
 from logkit.drawing.laminae import Folds, Laminae, Ripples
-from logkit.drawing.marks import Mark, draw_mark, mark_outline, parse_step
+from logkit.drawing.marks import Mark, Place, draw_mark, mark_outline, parse_step
 from logkit.drawing.noise import seed_of
 from logkit.drawing.objects import PLACINGS, Objects, Placed
-from logkit.drawing.shapes import Paint, Path, Point, Segment, Shape
+from logkit.drawing.shapes import Circle, Lines, Paint, Path, Point, Shape
 from logkit.drawing.strata import FORMS, ROLES, Box, Domes, Foresets, Troughs, Way
+from logkit.drawing.strips import Window, window
 from logkit.drawing.style import Style
 from logkit.errors import ArgumentError
 from logkit.vocabulary import vocabulary
@@ -75,10 +77,18 @@ class Motif:
 
 @dataclass(frozen=True, slots=True)
 class StructureLines:
-    """Shapes of a structure in a bed, and the segments that grains keep clear of (x0, y0, x1, y1)."""
+    """A structure in its bed.
+
+    Attributes
+    ----------
+    lines : shapes
+    clear : edges of objects that grains keep clear of (x0, y0, x1, y1)
+    window : the lines that grains keep clear of, None without lines
+    """
 
     lines: tuple[Shape, ...]
     clear: tuple[LineSegment, ...]
+    window: Window | None = None
 
 
 @cache
@@ -113,7 +123,7 @@ def has_motif(term: str) -> bool:
 
 def glyph(
     term: str, centre: Point, width: float, height: float, style: Style, ink: str | None = None
-) -> tuple[Shape, ...]:
+) -> tuple[Path | Circle, ...]:
     """The small symbol of a structure, fossil, contact or other term.
 
     Parameters
@@ -157,62 +167,79 @@ def structure_lines(
     if not np.isfinite(box).all() or box[2] <= box[0] or box[3] <= box[1]:
         raise ArgumentError("box", box, "x0, y of the top, x1, y of the base with some area")
     drawn = motif(term)
-    random = np.random.default_rng(seed ^ seed_of(term))
+    term_seed = seed_of(term)
     x0, top, x1, base = box
     polygon = np.asarray(outline or [(x0, top), (x1, top), (x1, base), (x0, base)], dtype=float)
     factor = style.texture.magnify
-    inner = (x0 / factor, top / factor, x1 / factor, base / factor)
-    strokes: dict[str, list[Array]] = {}
+    shapes: list[Shape] = []
+    piece: Window | None = None
     if drawn.fill is not None:
-        size = set_mm / factor if set_mm is not None and set_mm > 0 else None
-        strata = drawn.fill.lines(inner, size, random)
-        for stratum, parts in zip(strata, cut([s.points * factor for s in strata], polygon), strict=True):
-            strokes.setdefault(stratum.role, []).extend(parts)
-    shapes = [_painted(role, lines, style) for role, lines in sorted(strokes.items()) if lines]
-    clear = [segment for lines in strokes.values() for line in lines for segment in _segments(line)]
+        piece = window(drawn.fill, box, set_mm, factor, seed, term_seed)
+        shapes += _painted(*piece.lines(polygon), style)
+    clear: list[LineSegment] = []
     if drawn.objects is not None:
-        for placed in drawn.objects.places(inner, random):
-            made, edges = _object(drawn.mark or drawn.glyph, placed.times(factor), polygon, style)
-            shapes += made
-            clear += edges
-    return StructureLines(tuple(shapes), tuple(clear))
+        random = np.random.default_rng(seed ^ term_seed)
+        inner = (x0 / factor, top / factor, x1 / factor, base / factor)
+        places = [placed.times(factor) for placed in drawn.objects.places(inner, random)]
+        made, clear = _objects_in(drawn.mark or drawn.glyph, places, polygon, style)
+        shapes += made
+    return StructureLines(tuple(shapes), tuple(clear), piece)
 
 
-def _segments(line: Array) -> list[LineSegment]:
-    points = line.tolist()
-    return [(*a, *b) for a, b in itertools.pairwise(points)]
-
-
-def _painted(role: str, lines: list[Array], style: Style) -> Shape:
+def _painted(runs: Runs, roles: Sequence[str], style: Style) -> list[Shape]:
+    """Lines of one role as one shape each."""
     widths = style.lines
     weight = {"set": widths.set, "crest": widths.crest, "drape": widths.drape}
     colour = {"set": style.colours.ink, "drape": style.colours.drape}
-    steps: list[Segment] = []
-    for line in lines:
-        steps += [("M" if i == 0 else "L", (x, y)) for i, (x, y) in enumerate(line.tolist())]
-    ink = colour.get(role, style.colours.structure)
-    width = weight.get(role, widths.lamina)
-    return Path(tuple(steps), Paint(stroke=ink, width=width, cap="round", join="round"))
+    if not runs.starts:
+        return []
+    points = list(zip(runs.points[:, 0].tolist(), runs.points[:, 1].tolist(), strict=True))
+    stops = [*runs.starts[1:], len(points)]
+    by_role: dict[str, list[tuple[Point, ...]]] = {}
+    for role, start, stop in zip(roles, runs.starts, stops, strict=True):
+        by_role.setdefault(role, []).append(tuple(points[start:stop]))
+    shapes: list[Shape] = []
+    for role, lines in by_role.items():
+        ink, width = colour.get(role, style.colours.structure), weight.get(role, widths.lamina)
+        shapes.append(Lines(tuple(lines), Paint(stroke=ink, width=width, cap="round")))
+    return shapes
 
 
-def _object(
-    mark: Mark, placed: Placed, polygon: Array, style: Style
-) -> tuple[tuple[Shape, ...], list[LineSegment]]:
-    """One object, or nothing where it would leave the bed."""
-    cos, sin = float(np.cos(placed.turn)), float(np.sin(placed.turn))
+def _objects_in(
+    mark: Mark, places: Sequence[Placed], polygon: Array, style: Style
+) -> tuple[list[Shape], list[LineSegment]]:
+    """The objects that stay inside the bed, with their edges."""
+    outlines: list[list[list[Point]]] = []
+    around: list[Array] = []
+    for placed in places:
+        edges = mark_outline(mark, _placer(placed), min(placed.half_width, placed.half_height))
+        points = np.array([point for line in edges for point in line])
+        centre = np.array([placed.x, placed.y])
+        outlines.append(edges)
+        around.append(centre + _SLACK * (points - centre))
+    if not places:
+        return [], []
+    held = np.all(inside(np.concatenate(around), polygon).reshape(len(places), -1), axis=1)
+    shapes: list[Shape] = []
+    clear: list[LineSegment] = []
+    for placed, edges, kept in zip(places, outlines, held, strict=True):
+        if kept:
+            unit = min(placed.half_width, placed.half_height)
+            ink, width = style.colours.structure, style.lines.crest
+            shapes += draw_mark(mark, _placer(placed), unit, style, ink, width)
+            clear += [(*a, *b) for line in edges for a, b in itertools.pairwise(line)]
+    return shapes, clear
+
+
+def _placer(placed: Placed) -> Place:
+    """Page position of a point of a mark's box."""
+    cos, sin = math.cos(placed.turn), math.sin(placed.turn)
 
     def place(x: float, y: float) -> Point:
         across, up = x * placed.half_width, -y * placed.half_height
         return placed.x + across * cos - up * sin, placed.y + across * sin + up * cos
 
-    unit = min(placed.half_width, placed.half_height)
-    edges = mark_outline(mark, place, unit)
-    points = np.array([point for line in edges for point in line])
-    centre = np.array([placed.x, placed.y])
-    if not inside(centre + _SLACK * (points - centre), polygon).all():
-        return (), []
-    shapes = draw_mark(mark, place, unit, style, style.colours.structure, style.lines.crest)
-    return shapes, [(*a, *b) for line in edges for a, b in itertools.pairwise(line)]
+    return place
 
 
 def _motif(term: str, data: DataText, chain: tuple[str, ...] = ()) -> Motif:

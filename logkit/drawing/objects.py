@@ -57,16 +57,16 @@ class Objects:
             return self._scattered(box, random)
         if self.where == "rows":
             rows = max(1, int(room / self.spacing * 1.6))
-            made = []
+            stacked: list[Placed] = []
             for row in range(rows):
                 level = box[1] + (row + 0.5) * room / rows
-                made += self._row(box, level, room / rows, random)
-            return made
+                stacked += self._row(box, level, room / rows, random)
+            return stacked
         if self.where == "across":
             return [
                 Placed(x, (box[1] + box[3]) / 2, self.width / 2, room / 2) for x in self._columns(box, random)
             ]
-        made = []
+        made: list[Placed] = []
         for x in self._columns(box, random):
             share = self.sizes + (1 - self.sizes) * random.random()
             tall = min(self.height * share, self.depth * room)
@@ -75,7 +75,8 @@ class Objects:
         return made
 
     def _columns(self, box: Box, random: np.random.Generator) -> list[float]:
-        x, made = box[0] + self.width / 2 + 0.5 + 0.4 * self.spacing * random.random(), []
+        x = box[0] + self.width / 2 + 0.5 + 0.4 * self.spacing * random.random()
+        made: list[float] = []
         while x < box[2] - self.width / 2 - 0.3 and len(made) < self.most:
             made.append(float(x))
             x += self.spacing * (0.8 + 0.4 * random.random())

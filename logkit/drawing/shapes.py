@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Iterable, Iterator, Sequence
 from dataclasses import dataclass, field
 from typing import Literal
 
@@ -32,6 +32,14 @@ class Path:
     """An open or closed path."""
 
     segments: tuple[Segment, ...]
+    paint: Paint
+
+
+@dataclass(frozen=True, slots=True)
+class Lines:
+    """Open polylines of one paint, each of two points or more."""
+
+    lines: tuple[tuple[Point, ...], ...]
     paint: Paint
 
 
@@ -69,7 +77,10 @@ class Text:
 
 @dataclass(frozen=True, slots=True)
 class Gradient:
-    """A vertical gradient between two heights on the page: (y, colour) stops from top to bottom."""
+    """A gradient down the shape it fills: stops of (share of the shape's height, colour) from its top to its foot.
+
+    Gradients of one content have one id, so that beds share them.
+    """
 
     id: str
     stops: tuple[tuple[float, str], ...]
@@ -97,7 +108,7 @@ class Group:
     clip: tuple[Segment, ...] = ()
 
 
-Shape = Path | Dots | Circle | Text | Group
+Shape = Path | Lines | Dots | Circle | Text | Group
 
 
 @dataclass(frozen=True, slots=True)
@@ -129,3 +140,39 @@ def walk(shapes: tuple[Shape, ...]) -> Iterator[Shape]:
         yield shape
         if isinstance(shape, Group):
             yield from walk(shape.children)
+
+
+def shifted(shape: Path | Circle, dx: float, dy: float) -> Path | Circle:
+    """The same shape elsewhere on the page."""
+    if isinstance(shape, Circle):
+        return Circle((shape.centre[0] + dx, shape.centre[1] + dy), shape.radius, shape.paint)
+    steps: list[Segment] = []
+    for command, values in shape.segments:
+        if len(values) == 2:
+            steps.append((command, (values[0] + dx, values[1] + dy)))
+        else:
+            steps.append((command, tuple(v + (dy if i % 2 else dx) for i, v in enumerate(values))))
+    return Path(tuple(steps), shape.paint)
+
+
+def gathered(marks: Iterable[Sequence[Shape]]) -> list[Shape]:
+    """Marks that do not touch each other, what they have in common written once.
+
+    Paths of one paint that come at the same place in their marks become one path, texts one group: a column of a
+    thousand marks is then a handful of shapes. The order within each mark is kept.
+    """
+    layers: dict[tuple[int, Paint], list[Segment]] = {}
+    others: dict[int, list[Shape]] = {}
+    texts: list[Shape] = []
+    for mark in marks:
+        for place, shape in enumerate(mark):
+            if isinstance(shape, Path):
+                layers.setdefault((place, shape.paint), []).extend(shape.segments)
+            elif isinstance(shape, Text):
+                texts.append(shape)
+            else:
+                others.setdefault(place, []).append(shape)
+    found: list[tuple[int, Shape]] = [(place, Path(tuple(s), paint)) for (place, paint), s in layers.items()]
+    found += [(place, shape) for place, shapes in others.items() for shape in shapes]
+    shapes = [shape for _, shape in sorted(found, key=lambda pair: pair[0])]
+    return [*shapes, Group(tuple(texts))] if texts else shapes

@@ -7,7 +7,7 @@ gives polylines, oldest first. Flow runs from left to right. Cutting to the bed 
 from __future__ import annotations
 
 import math
-from collections.abc import Iterator
+from collections.abc import Hashable, Iterator
 from dataclasses import dataclass
 from typing import Protocol
 
@@ -34,7 +34,7 @@ class Stratum:
     role: str
 
 
-class Way(Protocol):
+class Way(Hashable, Protocol):
     """A way of filling a bed with lines."""
 
     def lines(self, box: Box, set_mm: float | None, random: np.random.Generator) -> list[Stratum]:

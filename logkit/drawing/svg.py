@@ -7,14 +7,16 @@ one function that escapes it, so markup in it stays text. Same shapes, same byte
 from __future__ import annotations
 
 import re
-from collections.abc import Iterable
+import zlib
+from collections import Counter
+from collections.abc import Iterable, Sequence
 from functools import lru_cache
 from xml.sax.saxutils import escape
 
 import svgwrite
 
 from logkit.drawing.metrics import MM_PER_POINT
-from logkit.drawing.shapes import Circle, Dots, Group, Paint, Path, Point, Segment, Shape, Sheet, Text
+from logkit.drawing.shapes import Circle, Dots, Group, Lines, Paint, Path, Point, Segment, Shape, Sheet, Text
 from logkit.errors import LogkitError
 
 FONT = "DejaVu Sans"
@@ -47,39 +49,59 @@ def path_data(segments: Iterable[Segment]) -> str:
     last = ""
     try:
         for command, values in segments:
-            if command == "Z":
+            if command == "L":
+                x_end, y_end = round(values[0] * 100), round(values[1] * 100)
+                dx, dy = x_end - x, y_end - y
+                if dy:
+                    if dx:
+                        lead = "l" if last != "l" else "" if dx < 0 else " "
+                        parts.append(f"{lead}{dx}{dy}" if dy < 0 else f"{lead}{dx} {dy}")
+                        last = "l"
+                    else:
+                        parts.append(f"v{dy}")
+                        last = "v"
+                elif dx or last == "m":
+                    parts.append(f"h{dx}")
+                    last = "h"
+            elif command == "M":
+                x_end, y_end = round(values[0] * 100), round(values[1] * 100)
+                dx, dy = (x_end - x, y_end - y) if parts else (x_end, y_end)
+                lead = "m" if parts else "M"
+                parts.append(f"{lead}{dx}{dy}" if dy < 0 else f"{lead}{dx} {dy}")
+                x_start, y_start, last = x_end, y_end, "m"
+            elif command == "Z":
                 parts.append("z")
                 x, y, last = x_start, y_start, "z"
                 continue
-            numbers = [round(value * 100) for value in values]
-            x_end, y_end = numbers[-2], numbers[-1]
-            if command == "L":
-                dx, dy = x_end - x, y_end - y
-                if dy == 0 and dx == 0 and last != "m":
-                    continue
-                if dy == 0:
-                    parts.append(f"h{dx}")
-                    last = "h"
-                elif dx == 0:
-                    parts.append(f"v{dy}")
-                    last = "v"
-                else:
-                    lead = "l" if last != "l" else "" if dx < 0 else " "
-                    parts.append(f"{lead}{dx}{dy}" if dy < 0 else f"{lead}{dx} {dy}")
-                    last = "l"
-            elif command == "M":
-                dx, dy = x_end - x, y_end - y
-                if parts:
-                    parts.append(f"m{dx}{dy}" if dy < 0 else f"m{dx} {dy}")
-                else:
-                    parts.append(f"M{x_end}{y_end}" if y_end < 0 else f"M{x_end} {y_end}")
-                x_start, y_start, last = x_end, y_end, "m"
             else:
+                numbers = [round(value * 100) for value in values]
+                x_end, y_end = numbers[-2], numbers[-1]
                 steps = [n - (y if i % 2 else x) for i, n in enumerate(numbers)]
                 name = command.lower()
                 parts.append((name if last != name else " ") + " ".join(map(str, steps)).replace(" -", "-"))
                 last = name
             x, y = x_end, y_end
+    except (ValueError, OverflowError):
+        units(float("nan"))
+    return "".join(parts)
+
+
+def lines_data(lines: Iterable[Sequence[Point]]) -> str:
+    """The `d` attribute of open polylines, as steps from point to point."""
+    parts: list[str] = []
+    x = y = 0
+    try:
+        for line in lines:
+            lead = "m" if parts else "M"
+            for a, b in line:
+                x_end, y_end = round(a * 100), round(b * 100)
+                dx, dy = x_end - x, y_end - y
+                if lead == " " and dx < 0:
+                    parts.append(f"{dx}{dy}" if dy < 0 else f"{dx} {dy}")
+                else:
+                    parts.append(f"{lead}{dx}{dy}" if dy < 0 else f"{lead}{dx} {dy}")
+                x, y = x_end, y_end
+                lead = " " if lead in "l " else "l"
     except (ValueError, OverflowError):
         units(float("nan"))
     return "".join(parts)
@@ -131,21 +153,23 @@ def sheet_svg(sheet: Sheet) -> str:
     drawing.add(drawing.g(id=BODY, fill="none"))
     before, _, after = drawing.tostring().partition(f'<g fill="none" id="{BODY}" />')
     writer = _Writer()
-    for gradient in sheet.gradients:
+    for gradient in dict.fromkeys(sheet.gradients):
         writer.gradient(gradient.id, gradient.stops)
     writer.write_all(sheet.shapes, _PLAIN)
     definitions = f"<defs>{''.join(writer.definitions)}</defs>" if writer.definitions else ""
+    definitions += writer.style_sheet()
     body = f'<g id="{BODY}" fill="none" stroke-linejoin="round">{"".join(writer.parts)}</g>'
     return f'<?xml version="1.0" encoding="utf-8"?>\n{before}{definitions}{body}{after}\n'
 
 
 class _Writer:
-    """Turns shapes into text, and collects the gradients and clip paths they need."""
+    """Turns shapes into text, and collects the gradients, clip paths and classes they need."""
 
     def __init__(self) -> None:
         self.parts: list[str] = []
         self.definitions: list[str] = []
         self._clips = 0
+        self._painted: list[int] = []
 
     def write_all(self, shapes: tuple[Shape, ...], shared: _Look) -> None:
         """Append shapes; lines of one paint that follow each other become one path."""
@@ -153,34 +177,54 @@ class _Writer:
         paint: Paint | None = None
         for shape in shapes:
             if line and not (isinstance(shape, Path) and shape.paint == paint):
-                self.parts.append(f'<path d="{path_data(line)}"{_paint(paint)}/>')
+                self._path(path_data(line), paint)
                 line = []
             if isinstance(shape, Path) and shape.paint.fill is None and shape.paint.opacity == 1.0:
                 paint = shape.paint
                 line.extend(shape.segments)
             else:
                 self.write(shape, shared)
-        if line and paint:
-            self.parts.append(f'<path d="{path_data(line)}"{_paint(paint)}/>')
+        if line:
+            self._path(path_data(line), paint)
 
     def write(self, shape: Shape, shared: _Look) -> None:
         """Append one shape; `shared` is what the groups around it say about texts."""
         if isinstance(shape, Path):
-            self.parts.append(f'<path d="{path_data(shape.segments)}"{_paint(shape.paint)}/>')
+            self._path(path_data(shape.segments), shape.paint)
+        elif isinstance(shape, Lines):
+            self._path(lines_data(shape.lines), shape.paint)
         elif isinstance(shape, Text):
             self._text(shape, shared)
         elif isinstance(shape, Dots):
             if shape.points:
-                self.parts.append(
-                    f'<path d="{dots_data(shape.points)}" stroke="{shape.colour}" '
-                    f'stroke-width="{units(shape.diameter)}" stroke-linecap="round"/>'
-                )
+                paint = Paint(stroke=shape.colour, width=shape.diameter, cap="round")
+                self._path(dots_data(shape.points), paint)
         elif isinstance(shape, Circle):
             x, y = shape.centre
             place = f'cx="{units(x)}" cy="{units(y)}" r="{units(shape.radius)}"'
             self.parts.append(f"<circle {place}{_paint(shape.paint)}/>")
         else:
             self._group(shape, shared)
+
+    def _path(self, steps: str, paint: Paint | None) -> None:
+        look = _paint(paint) if paint else ""
+        if len(look) > _LEAST_SHARED:
+            self._painted.append(len(self.parts) + 1)
+        self.parts.extend((f'<path d="{steps}"', look, "/>"))
+
+    def style_sheet(self) -> str:
+        """Rules for the paints that many paths have; those paths get a class instead.
+
+        A class is named after what it says, so the sheets of a drawing can stand in one page.
+        """
+        counts = Counter(self.parts[place] for place in self._painted)
+        classes = {look: f"p{zlib.crc32(look.encode()):08x}" for look, n in counts.items() if n > 2}
+        for place in self._painted:
+            name = classes.get(self.parts[place])
+            if name:
+                self.parts[place] = f' class="{name}"'
+        rules = (f".{name}{{{_rule(look)}}}" for look, name in classes.items())
+        return f"<style>{''.join(rules)}</style>" if classes else ""
 
     def _group(self, group: Group, shared: _Look) -> None:
         opening = ["<g"]
@@ -216,14 +260,9 @@ class _Writer:
         self.parts.append(f'<text x="{x}" y="{y}"{look}{turn}>{_escaped(text.text)}</text>')
 
     def gradient(self, name: str, stops: tuple[tuple[float, str], ...]) -> None:
-        """A vertical gradient between the first and the last stop."""
-        first, last = stops[0][0], stops[-1][0]
-        rate = 1 / (last - first) if last > first else 0.0
-        marks = "".join(f'<stop offset="{(y - first) * rate:.3g}" stop-color="{c}"/>' for y, c in stops)
-        self.definitions.append(
-            f'<linearGradient id="{name}" gradientUnits="userSpaceOnUse" x1="0" x2="0" '
-            f'y1="{units(first)}" y2="{units(last)}">{marks}</linearGradient>'
-        )
+        """A gradient from the top to the foot of the shape it fills."""
+        marks = "".join(f'<stop offset="{share:.3g}" stop-color="{colour}"/>' for share, colour in stops)
+        self.definitions.append(f'<linearGradient id="{name}" x2="0" y2="1">{marks}</linearGradient>')
 
 
 _Look = tuple[str, str, str, str, str]
@@ -248,6 +287,15 @@ def _changed(own: _Look, shared: _Look) -> str:
     """Attributes for what differs from the groups around."""
     pairs = zip(_LOOK_NAMES, own, shared, strict=True)
     return "".join(f' {name}="{value}"' for name, value, other in pairs if value != other)
+
+
+_LEAST_SHARED = 24
+"""Attributes shorter than this are not worth a class."""
+
+
+def _rule(look: str) -> str:
+    """Attributes as the declarations of a style rule."""
+    return ";".join(f"{name}:{value}" for name, value in re.findall(r'([\w-]+)="([^"]*)"', look))
 
 
 @lru_cache(maxsize=4096)

@@ -100,13 +100,19 @@ class _Canvas:
         box = (min(xs), min(ys), max(xs), max(ys))
         lines = structure_lines(term, box, set_mm, seed_of(name), style, outline) if term else None
         marks = bed_texture(
-            outline, knots, family, style, seed=seed_of(name), clear=lines.clear if lines else ()
+            outline,
+            knots,
+            family,
+            style,
+            seed=seed_of(name),
+            clear=lines.clear if lines else (),
+            windows=(lines.window,) if lines and lines.window else (),
         )
         edge = polyline(list(outline), closed=True)
         if len(knots) > 1:
-            self.gradients.append(
-                Gradient(f"ramp-{name}", tuple((y, fill(family, phi, style)) for y, phi in sorted(knots)))
-            )
+            tall = box[3] - box[1]
+            stops = tuple(((y - box[1]) / tall, fill(family, phi, style)) for y, phi in sorted(knots))
+            self.gradients.append(Gradient(f"ramp-{name}", stops))
             paint = Paint(fill=f"gradient:ramp-{name}")
         else:
             paint = Paint(fill=fill(family, knots[0][1], style))

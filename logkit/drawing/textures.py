@@ -16,6 +16,7 @@ from logkit.drawing.ground import Array, Ground, LineSegment
 from logkit.drawing.noise import FINEST_MM, seed_of
 from logkit.drawing.palette import stipple
 from logkit.drawing.shapes import Dots, Paint, Path, Point, Segment, Shape
+from logkit.drawing.strips import Window
 from logkit.drawing.style import Style, TextureStyle
 from logkit.drawing.textures_rock import ROCK_MARKS, organic_flecks, rounded
 from logkit.errors import ArgumentError
@@ -42,6 +43,7 @@ def bed_texture(
     *,
     seed: int,
     clear: Sequence[LineSegment] = (),
+    windows: Sequence[Window] = (),
 ) -> tuple[Shape, ...]:
     """The marks of one bed or of one phase of it.
 
@@ -53,6 +55,7 @@ def bed_texture(
     style : whose sizes and colours are used
     seed : `seed_of(bed id)`; the same seed gives the same marks
     clear : structure lines (x0, y0, x1, y1) that marks keep away from
+    windows : of the strips whose lines marks keep away from
 
     Returns
     -------
@@ -70,7 +73,7 @@ def bed_texture(
     if not style.texture.dots or max(ys) - min(ys) < style.texture.least_bed:
         return ()
     sizes = knots or [(ys[0], UNKNOWN_PHI.get(family, 2.0))]
-    ground = Ground(outline, sizes, seed, clear)
+    ground = Ground(outline, sizes, seed, clear, windows)
     ink = stipple(family, style)
     rock = ROCK_MARKS.get(family)
     if rock is not None:

@@ -34,8 +34,8 @@ def river(count: int, mean_m: float = 0.3) -> tuple[Log, Results]:
     cycle = (
         ("trough_cross_bedding", 0.7),
         ("planar_cross_bedding", 0.45),
-        ("plane_bedding", 0.3),
-        ("ripples", 0.18),
+        ("plane_lamination", 0.3),
+        ("current_ripples", 0.18),
     )
     for number in range(count):
         thickness = mean_m * rng.uniform(0.3, 1.7)

@@ -11,7 +11,7 @@ from PIL import Image
 
 from logkit.drawing import Drawing
 from logkit.drawing.metrics import Box, text_box
-from logkit.drawing.shapes import Circle, Dots, Group, Path, Shape, Sheet, Text, walk
+from logkit.drawing.shapes import Circle, Dots, Group, Lines, Path, Shape, Sheet, Text, walk
 
 TOUCH_MM = 0.15
 DARK = 140
@@ -58,6 +58,9 @@ def points_of(sheet: Sheet) -> Iterator[tuple[float, float]]:
             for _, values in shape.segments:
                 if values:
                     yield values[-2], values[-1]
+        elif isinstance(shape, Lines):
+            for line in shape.lines:
+                yield from line
         elif isinstance(shape, Dots):
             yield from shape.points
         elif isinstance(shape, Circle):

@@ -8,7 +8,19 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from logkit.drawing.shapes import Circle, Dots, Gradient, Group, Paint, Path, Sheet, Text, polyline
+from logkit.drawing.shapes import (
+    Circle,
+    Dots,
+    Gradient,
+    Group,
+    Lines,
+    Paint,
+    Path,
+    Sheet,
+    Text,
+    gathered,
+    polyline,
+)
 from logkit.drawing.svg import path_data, sheet_svg
 from logkit.errors import LogkitError
 
@@ -121,9 +133,43 @@ def test_rounding_does_not_add_up(points: list[tuple[float, float]]) -> None:
 
 
 def test_gradient_is_defined_where_it_is_used() -> None:
-    """A gradient runs between its first and last height on the page."""
-    fade = Gradient("g1", ((1.0, "#000000"), (3.0, "#ffffff")))
-    sheet = Sheet(10, 10, (Path(polyline(((0, 1), (1, 3))), Paint(fill="gradient:g1")),), (fade,))
+    """A gradient runs down the shape it fills; beds that fade alike share one."""
+    fade = Gradient("g1", ((0.0, "#000000"), (1.0, "#ffffff")))
+    sheet = Sheet(10, 10, (Path(polyline(((0, 1), (1, 3))), Paint(fill="gradient:g1")),), (fade, fade))
     text = sheet_svg(sheet)
     assert 'fill="url(#g1)"' in text
-    assert '<linearGradient id="g1" gradientUnits="userSpaceOnUse" x1="0" x2="0" y1="100" y2="300">' in text
+    assert text.count('<linearGradient id="g1" x2="0" y2="1"><stop offset="0" stop-color="#000000"/>') == 1
+
+
+def test_a_paint_of_many_paths_becomes_a_class() -> None:
+    """From the third path on a paint is written once, as a rule; the class is the same on every sheet."""
+    paint = Paint(stroke="#123456", width=0.3, dash=(1.2, 0.8))
+    lines = [Group((Path(polyline(((n, 0), (n, 1))), paint),)) for n in range(3)]
+    sheets = [sheet_svg(Sheet(10, 10, tuple(lines[:count]))) for count in (2, 3)]
+    assert sheets[0].count('stroke="#123456"') == 2
+    name = sheets[1].split("<style>.")[1].split("{")[0]
+    assert f".{name}{{stroke:#123456;stroke-width:30;stroke-dasharray:120 80}}" in sheets[1]
+    assert sheets[1].count(f'class="{name}"') == 3
+
+
+def test_lines_are_one_path() -> None:
+    """Open lines of one paint are one path of steps."""
+    lines = Lines((((0.0, 0.0), (1.0, 0.0), (1.5, -0.5)), ((2.0, 2.0), (1.0, 2.0))), Paint(stroke="#000000"))
+    assert 'd="M0 0l100 0 50-50m50 250l-100 0"' in body(lines)
+
+
+def test_gathered_marks_keep_their_order_and_share_their_paints() -> None:
+    """Marks that do not touch become one path a paint, what lies below first; texts form one group."""
+    below, above = Paint(fill="#ffffff"), Paint(stroke="#000000")
+    marks = [
+        (
+            Path(polyline(((n, 0), (n, 1), (n + 0.5, 1))), below),
+            Path(polyline(((n, 0), (n, 1))), above),
+            Text((n, 2), str(n), 6, "#000000"),
+        )
+        for n in range(3)
+    ]
+    first, second, texts = gathered(marks)
+    assert (first.paint, second.paint) == (below, above)
+    assert [len(shape.segments) for shape in (first, second)] == [9, 6]
+    assert [text.text for text in texts.children] == ["0", "1", "2"]

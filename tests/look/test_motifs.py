@@ -12,7 +12,7 @@ from hypothesis import strategies as st
 from logkit.drawing.cutting import inside
 from logkit.drawing.marks import parse_step
 from logkit.drawing.motifs import all_motifs, glyph, has_motif, load_motifs, motif, structure_lines
-from logkit.drawing.shapes import Circle, Path
+from logkit.drawing.shapes import Circle, Lines, Path
 from logkit.drawing.style import list_styles, load_style
 from logkit.errors import ArgumentError, DataFileError
 from logkit.vocabulary import vocabulary
@@ -31,8 +31,15 @@ def extent(shapes):
             points += [(x - r, y - r), (x + r, y + r)]
         elif isinstance(shape, Path):
             points += [s[1][-2:] for s in shape.segments if s[1]]
+        elif isinstance(shape, Lines):
+            points += [point for line in shape.lines for point in line]
     array = np.array(points)
     return (*array.min(axis=0), *array.max(axis=0))
+
+
+def line_points(made):
+    """Points of each line of a structure."""
+    return [np.array(line) for shape in made.lines if isinstance(shape, Lines) for line in shape.lines]
 
 
 @pytest.mark.parametrize("name", ["structures", "fossils", "contacts"])
@@ -80,7 +87,8 @@ def test_structure_lines_stay_in_the_bed(term):
         assert x1 <= 64 + 0.3
         assert y0 >= 20 - 0.3
         assert y1 <= 34 + 0.3
-        ends = np.array([(s[2], s[3]) for s in made.clear])
+        ends = np.array([(s[2], s[3]) for s in made.clear] or [(40.0, 25.0)])
+        ends = np.concatenate([ends, *line_points(made)])
         grown = np.array([(35.5, 19.4), (58.3, 19.4), (64.8, 34.6), (35.5, 34.6)])
         assert inside(ends, grown).all()
 
@@ -91,7 +99,7 @@ def test_structures_that_show_lines_show_them():
     for term in vocabulary("structures").ids:
         made = structure_lines(term, (36.0, 20.0, 64.0, 34.0), None, 3, REPORT)
         assert bool(made.lines) == (term not in plain), term
-        assert bool(made.clear) == (term not in plain), term
+        assert bool(made.clear or made.window) == (term not in plain), term
 
 
 @settings(deadline=None, max_examples=60)
@@ -109,13 +117,17 @@ def test_any_box_and_set_thickness_works(term, height, width, set_mm, seed):
     assert np.isfinite(ends).all()
     assert (ends[:, [0, 2]] >= 36 - 0.6).all()
     assert (ends[:, [0, 2]] <= 36 + width + 0.6).all()
+    for line in line_points(made):
+        assert np.isfinite(line).all()
+        assert (line >= (36 - 1e-6, 50 - 1e-6)).all()
+        assert (line <= (36 + width + 1e-6, 50 + height + 1e-6)).all()
 
 
 def test_sets_have_the_thickness_of_the_record():
     """The boundaries of cross-sets lie a set thickness apart."""
     made = structure_lines("planar_cross_bedding", (0.0, 0.0, 40.0, 24.0), 6.0, 1, REPORT)
-    (boundaries,) = [s for s in made.lines if isinstance(s, Path) and s.paint.width == REPORT.lines.set]
-    heights = sorted({round(seg[1][1], 1) for seg in boundaries.segments})
+    (boundaries,) = [s for s in made.lines if isinstance(s, Lines) and s.paint.width == REPORT.lines.set]
+    heights = sorted({round(y, 1) for line in boundaries.lines for _, y in line})
     assert len([h for h in heights if min(abs(h - k) for k in (6, 12, 18)) < 1.0]) == len(heights)
 
 
@@ -140,7 +152,7 @@ def test_a_large_style_draws_larger_structures():
     """The poster spaces its lines more widely than the report on the same box."""
     box = (0.0, 0.0, 60.0, 30.0)
     small, large = (
-        len(structure_lines("plane_lamination", box, None, 1, load_style(name)).clear)
+        len(line_points(structure_lines("plane_lamination", box, None, 1, load_style(name))))
         for name in ("report", "poster")
     )
     assert large < 0.75 * small

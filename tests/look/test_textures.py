@@ -11,6 +11,7 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from logkit.drawing.cutting import cut, inside, simplified
+from logkit.drawing.motifs import structure_lines
 from logkit.drawing.noise import scatter
 from logkit.drawing.shapes import Dots, Path
 from logkit.drawing.style import load_style
@@ -110,6 +111,26 @@ def test_ink_cover_of_sand_is_even_across_sizes():
         assert 0.03 < cover < 0.09, phi
 
 
+@pytest.mark.parametrize("style", ["report", "poster"])
+@pytest.mark.parametrize("term", ["trough_cross_bedding", "plane_lamination", "climbing_ripples"])
+def test_dots_keep_clear_of_the_lines_of_a_structure(term, style):
+    """Dots keep off the lines that a structure draws in the same bed, within the raster's step."""
+    chosen = load_style(style)
+    box, outline = (36.0, 50.0, 66.0, 62.0), [(36.0, 50.0), (66.0, 50.0), (66.0, 62.0), (36.0, 62.0)]
+    made = structure_lines(term, box, None, 5, chosen, outline)
+    shapes = bed_texture(outline, [(50, 3.0)], "quartz", chosen, seed=5, windows=(made.window,))
+    pieces = [p for s in made.lines for line in s.lines for p in itertools.pairwise(line)]
+    start, end = (np.array([piece[i] for piece in pieces]) for i in (0, 1))
+    step = end - start
+    dots = dots_of(shapes)
+    assert len(dots) > 20
+    for x, y, diameter in dots:
+        along = ((np.array([x, y]) - start) * step).sum(axis=1) / (step**2).sum(axis=1)
+        foot = start + np.clip(along, 0, 1)[:, None] * step
+        away = np.hypot(x - foot[:, 0], y - foot[:, 1]).min() - diameter / 2
+        assert away >= chosen.texture.clear - 0.15 * chosen.texture.magnify
+
+
 def test_marks_keep_clear_of_lines():
     """No dot's edge comes nearer to a structure line than the clear zone, within the raster's step."""
     lines = [(36.0, 55.0, 70.0, 55.0), (36.0, 58.0, 70.0, 60.0)]
@@ -190,16 +211,18 @@ def test_cut_lines_lie_inside(points):
     """Every part of a line cut to a polygon lies inside it."""
     polygon = np.array([(0.0, 0.0), (10.0, 1.0), (8.0, 9.0), (1.0, 10.0)])
     grown = np.array([(-0.05, -0.05), (10.1, 0.95), (8.1, 9.1), (0.9, 10.1)])
-    for part in cut([np.array(points)], polygon)[0]:
+    for part in cut(np.array(points), np.zeros(len(points), dtype=int), polygon).lines():
         assert inside(part, grown).all()
 
 
 def test_a_line_across_is_cut_at_the_edges_and_one_along_the_edge_is_no_trouble():
     """A line through a square keeps its middle; its length is the square's width."""
     square = np.array([(0.0, 0.0), (4.0, 0.0), (4.0, 4.0), (0.0, 4.0)])
-    ((part,),) = cut([np.array([(-3.0, 2.0), (9.0, 2.0)])], square)
+    points = np.array([(-3.0, 2.0), (9.0, 2.0), (0.0, 1.0), (4.0, 1.0), (5.0, 1.0), (6.0, 1.0)])
+    runs = cut(points, np.array([0, 0, 1, 1, 2, 2]), square)
+    part, whole = runs.lines()
+    assert runs.owners == [0, 1]
     assert part == pytest.approx(np.array([(0.0, 2.0), (4.0, 2.0)]))
-    ((whole,),) = cut([np.array([(0.0, 1.0), (4.0, 1.0)])], square)
     assert whole == pytest.approx(np.array([(0.0, 1.0), (4.0, 1.0)]))
 
 

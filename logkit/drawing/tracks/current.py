@@ -7,7 +7,7 @@ import math
 from logkit.drawing.metrics import MM_PER_POINT
 from logkit.drawing.placement import keep_clear
 from logkit.drawing.scene import Scene, Tally, View
-from logkit.drawing.shapes import Group, Paint, Path, Point, Shape, Text, polyline
+from logkit.drawing.shapes import Paint, Path, Point, Shape, Text, gathered, polyline
 
 NEEDLE_MM = 3.6
 PITCH_MM = 2.4
@@ -17,17 +17,17 @@ def draw(scene: Scene, view: View, tally: Tally) -> list[Shape]:
     """Needles that stand clear of each other, thick beds first; the rest is counted."""
     column, style = scene.columns["current"], scene.style
     candidates = [
-        (item, (span[0] + span[1]) / 2, scene.azimuths[item.index])
+        ((span[0] + span[1]) / 2, scene.azimuths[item.index])
         for item, span in reversed(list(view.items()))
         if item.index in scene.azimuths
     ]
-    kept = keep_clear([c[1] for c in candidates], [PITCH_MM] * len(candidates))
+    kept = keep_clear([c[0] for c in candidates], [PITCH_MM] * len(candidates))
     if len(kept) < len(candidates):
         tally.left_out["current needles"] += len(candidates) - len(kept)
-    shapes: list[Shape] = []
+    found: list[list[Shape]] = []
     size = style.fonts.label
     for number in kept:
-        item, y, (azimuth, sense) = candidates[number]
+        y, (azimuth, sense) = candidates[number]
         parts = needle((column.x0 + NEEDLE_MM / 2, y), azimuth, sense, scene)
         text = f"{round(azimuth) % 360:03d}°"
         if sense == "axis":
@@ -35,10 +35,10 @@ def draw(scene: Scene, view: View, tally: Tally) -> list[Shape]:
             text = f"{round(azimuth) % 180:03d}°\u200a↔"
         at = (column.x0 + NEEDLE_MM + 1.2, y + 0.36 * size * MM_PER_POINT)
         parts.append(Text(at, text, size, style.colours.ink))
-        shapes.append(Group(tuple(parts), data=(("for", item.id),)))
+        found.append(parts)
     if kept:
         tally.marks.add("needle")
-    return shapes
+    return gathered(found)
 
 
 def needle(centre: Point, azimuth_deg: float, sense: str, scene: Scene) -> list[Shape]:

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from logkit.drawing.palette import state_tints
 from logkit.drawing.scene import Scene, Tally, View
-from logkit.drawing.shapes import Group, Paint, Path, Shape, polyline
+from logkit.drawing.shapes import Paint, Path, Shape, gathered, polyline
 from logkit.drawing.tracks.ribbon import arrow, is_conflict
 
 BOX_MM = 1.3
@@ -17,7 +17,7 @@ def draw(scene: Scene, view: View, tally: Tally) -> list[Shape]:
         return []
     style = scene.style
     ink = style.colours.ink
-    shapes: list[Shape] = []
+    found: list[list[Shape]] = []
     for item, _ in view.items():
         for estimate in scene.estimates.get(item.index, ()):
             span = view.span(estimate.phase.base_m, estimate.phase.top_m)
@@ -48,5 +48,5 @@ def draw(scene: Scene, view: View, tally: Tally) -> list[Shape]:
                 marks = arrow(scene, x, end, span, "", (axis.x0, axis.x1))
                 tally.marks.add("bound above" if above else "bound below")
             if marks:
-                shapes.append(Group(tuple(marks), data=(("for", item.id),)))
-    return shapes
+                found.append(marks)
+    return gathered(found)

@@ -176,7 +176,7 @@ def _note(
     words: list[Shape] = []
     for number, words_line in enumerate(note.lines):
         words.append(Text((text_x, first + drop + number * line), words_line, size, style.colours.ink))
-    return [Group((*texts, Group(tuple(words))), data=(("for", note.item.id),))]
+    return [Group((*texts, Group(tuple(words))))]
 
 
 def _list_moved(scene: Scene, moved: list[Note], y: float, line: float, tally: Tally) -> list[Shape]:

@@ -11,7 +11,7 @@ from logkit.drawing.axes import LogAxis
 from logkit.drawing.metrics import MM_PER_POINT, shorten, width_mm
 from logkit.drawing.palette import state_letter, state_tints
 from logkit.drawing.scene import Scene, Tally, View
-from logkit.drawing.shapes import Circle, Group, Paint, Path, Point, Segment, Shape, Text, polyline
+from logkit.drawing.shapes import Circle, Group, Paint, Path, Point, Segment, Shape, Text, gathered, polyline
 from logkit.drawing.tracks.texture import gap_reason
 from logkit.model import Clash, PhaseEstimate, Quantiles
 
@@ -52,7 +52,7 @@ def draw(scene: Scene, view: View, tally: Tally) -> list[Shape]:
     axis = scene.velocity
     if axis is None:
         return []
-    groups: list[Shape] = []
+    marks: list[list[Shape]] = []
     wipes: list[Segment] = []
     blanks: list[tuple[tuple[float, float], str]] = []
     solid: list[Segment] = []
@@ -78,18 +78,18 @@ def draw(scene: Scene, view: View, tally: Tally) -> list[Shape]:
                 continue
             if is_conflict(estimate):
                 tally.marks.add("conflict")
-                groups.append(_tag(_conflict(scene, axis, estimate, span), item.id))
+                marks.append(_conflict(scene, axis, estimate, span))
                 last, broken = None, False
             elif estimate.status == "no estimate":
                 wipes.extend(_wipe(scene, span))
                 blanks.append((span, estimate.reason))
                 broken = True
             elif estimate.bound in ("above", "below") or estimate.velocity is None:
-                groups.append(_tag(_bound(scene, axis, estimate, span, tally), item.id))
+                marks.append(_bound(scene, axis, estimate, span, tally))
                 last, broken = None, False
             else:
                 box, start, end = _box(scene, axis, estimate, span, tally)
-                groups.append(_tag(box, item.id))
+                marks.append(box)
                 if last is not None:
                     target = dotted if broken else solid
                     target.extend((("M", last.at), ("L", start)))
@@ -100,13 +100,9 @@ def draw(scene: Scene, view: View, tally: Tally) -> list[Shape]:
     words = [shape for span, reason in blanks for shape in _reason(scene, span, reason, dotted, tally)]
     if words:
         shapes.append(Group(tuple(words)))
-    shapes.extend(groups)
+    shapes.extend(gathered(marks))
     shapes.extend(_links(scene, solid, dotted, tally))
     return shapes
-
-
-def _tag(shapes: list[Shape], bed_id: str) -> Group:
-    return Group(tuple(shapes), data=(("for", bed_id),))
 
 
 def _links(scene: Scene, solid: list[Segment], dotted: list[Segment], tally: Tally) -> list[Shape]:

@@ -5,6 +5,8 @@ The marks themselves come from `textures` and `motifs`; samples and markers besi
 
 from __future__ import annotations
 
+import zlib
+
 from logkit.drawing.ground import LineSegment
 from logkit.drawing.metrics import shorten
 from logkit.drawing.motifs import structure_lines
@@ -12,6 +14,7 @@ from logkit.drawing.outline import Outline, base_path
 from logkit.drawing.palette import fill
 from logkit.drawing.scene import MeasuredBed, Scene, Tally, View, position_unit, structure_label
 from logkit.drawing.shapes import Gradient, Group, Paint, Path, Segment, Shape, Text, polyline
+from logkit.drawing.strips import Window
 from logkit.drawing.textures import bed_texture
 from logkit.vocabulary.terms import vocabulary
 
@@ -116,14 +119,13 @@ def _flat(
             fill=style.colours.paper, stroke=style.colours.ink2, width=style.lines.hairline, dash=(0.9, 0.6)
         )
         return Path(closed, dash)
-    stops: list[tuple[float, str]] = []
-    for y, phi in reversed(outline.sizes):
-        colour = fill(item.family, phi, style)
-        stops.append((y, colour))
-    if outline.y_base - outline.y_top < 0.6 or len({colour for _, colour in stops}) == 1:
+    top, tall = outline.y_top, outline.y_low - outline.y_top
+    stops = [(y, fill(item.family, phi, style)) for y, phi in reversed(outline.sizes)]
+    if outline.y_base - top < 0.6 or len({colour for _, colour in stops}) == 1:
         return Path(closed, Paint(fill=stops[len(stops) // 2][1]))
-    name = f"g{len(tally.gradients) + 1}"
-    tally.gradients.append(Gradient(name, tuple(stops)))
+    shares = tuple((round((y - top) / tall, 2), colour) for y, colour in stops)
+    name = f"g{zlib.crc32(repr(shares).encode()):08x}"
+    tally.gradients.append(Gradient(name, shares))
     return Path(closed, Paint(fill=f"gradient:{name}"))
 
 
@@ -132,6 +134,7 @@ def _inside(scene: Scene, view: View, item: MeasuredBed, outline: Outline, tally
     style = scene.style
     lines: list[Shape] = []
     clear: list[LineSegment] = []
+    windows: list[Window] = []
     polygon = outline.polygon()
     set_m = item.bed.set_thickness.central_m if item.bed.set_thickness else None
     set_mm = set_m * 1000 / scene.scale if set_m else None
@@ -150,9 +153,14 @@ def _inside(scene: Scene, view: View, item: MeasuredBed, outline: Outline, tally
         made = structure_lines(term, box, set_mm, item.seed + number, style, polygon)
         lines.extend(made.lines)
         clear.extend(made.clear)
+        if made.window is not None:
+            windows.append(made.window)
     marks: list[Shape] = []
     if style.texture.dots:
-        marks.extend(bed_texture(polygon, outline.sizes, item.family, style, seed=item.seed, clear=clear))
+        made_marks = bed_texture(
+            polygon, outline.sizes, item.family, style, seed=item.seed, clear=clear, windows=windows
+        )
+        marks.extend(made_marks)
     return marks + lines
 
 

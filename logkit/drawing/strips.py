@@ -1,0 +1,160 @@
+"""Strips: the lines of one structure, drawn once over a long stretch, of which every bed shows a window.
+
+Drawing a structure anew for each bed costs far more than cutting a piece from a strip. A strip belongs to a structure,
+a class of heights and a number of sets; a window is stretched to the height of its bed by a tenth at most and begins at
+a place of the strip that the bed's seed chooses, so no two beds look the same. Ways of drawing lines are in `strata`
+and `laminae`, cutting in `cutting`, painting in `motifs`.
+"""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+from functools import cached_property, lru_cache
+
+import numpy as np
+from numpy.typing import NDArray
+
+from logkit.drawing.cutting import Runs, cut, simplified
+from logkit.drawing.ground import Array, Mask
+from logkit.drawing.strata import Box, Way
+
+HEIGHT_STEP = 1.2
+"""Ratio of one class of heights to the next."""
+
+LEAST_HEIGHT_MM = 0.5
+
+WIDTH_STEP_MM = 60.0
+SPARE_MM = 40.0
+"""Length of a strip beyond the widest bed it serves, in which windows begin."""
+
+CELL_MM = 0.1
+REACH_CELLS = 12
+"""Distances from lines are known up to so many cells."""
+
+
+class Strip:
+    """Lines over a long stretch.
+
+    Attributes
+    ----------
+    height, length : mm
+    roles : role of each line, in order of the alphabet
+    points, owner : points of all lines, mm from the upper left corner, and the number of the line of each
+    first, last : leftmost and rightmost reach of each line, mm
+    """
+
+    def __init__(self, way: Way, height: float, length: float, set_mm: float | None, seed: int) -> None:
+        self.height, self.length = height, length
+        made = way.lines((0.0, 0.0, length, height), set_mm, np.random.default_rng(seed))
+        made = sorted((s for s in made if len(s.points) > 1), key=lambda stratum: stratum.role)
+        lines = [simplified(stratum.points) for stratum in made]
+        self.roles = [stratum.role for stratum in made]
+        self.points = np.concatenate(lines) if lines else np.empty((0, 2))
+        sizes = [len(line) for line in lines]
+        self.owner = np.repeat(np.arange(len(lines)), sizes)
+        self.first = np.array([line[:, 0].min() for line in lines])
+        self.last = np.array([line[:, 0].max() for line in lines])
+
+    @cached_property
+    def distances(self) -> NDArray[np.uint8]:
+        """Squared distance of each cell from the nearest line, in cells, capped; rows downward."""
+        far = REACH_CELLS + 1
+        rows, columns = (int(extent / CELL_MM) + 1 + 2 * far for extent in (self.height, self.length))
+        marked = np.zeros((rows, columns), dtype=bool)
+        pieces = np.flatnonzero(self.owner[1:] == self.owner[:-1])
+        start, step = self.points[pieces], self.points[pieces + 1] - self.points[pieces]
+        count = np.ceil(np.hypot(step[:, 0], step[:, 1]) / (0.9 * CELL_MM)).astype(int) + 1
+        which = np.repeat(np.arange(len(pieces)), count)
+        place = np.arange(count.sum()) - np.repeat(np.cumsum(count) - count, count)
+        at = start[which] + (place / np.maximum(count - 1, 1)[which])[:, None] * step[which]
+        column, row = (np.floor(at[:, axis] / CELL_MM).astype(int) + far for axis in (0, 1))
+        kept = (row >= 0) & (row < rows) & (column >= 0) & (column < columns)
+        marked[row[kept], column[kept]] = True
+        upright = np.where(marked, 0, far).astype(np.int16)
+        for shift in range(1, far):
+            np.minimum(upright[shift:], np.where(marked[:-shift], shift, far), out=upright[shift:])
+            np.minimum(upright[:-shift], np.where(marked[shift:], shift, far), out=upright[:-shift])
+        squared = upright * upright
+        nearest = squared.copy()
+        for shift in range(1, far):
+            sideways = squared + np.int16(shift * shift)
+            np.minimum(nearest[:, shift:], sideways[:, :-shift], out=nearest[:, shift:])
+            np.minimum(nearest[:, :-shift], sideways[:, shift:], out=nearest[:, :-shift])
+        return nearest.astype(np.uint8)
+
+
+@lru_cache(maxsize=96)
+def _strip(way: Way, height_class: int, width_class: int, rows: int, seed: int) -> Strip:
+    height = HEIGHT_STEP**height_class
+    length = WIDTH_STEP_MM * width_class + SPARE_MM
+    return Strip(way, height, length, height / rows if rows else None, seed + 31 * height_class + rows)
+
+
+@dataclass(frozen=True, slots=True)
+class Window:
+    """A bed's piece of a strip.
+
+    Attributes
+    ----------
+    strip : where the lines come from
+    box : x0, y of the top, x1, y of the base on the page, mm
+    shift : where on the strip the window begins, mm
+    factor : how much larger than on the strip the bed's lines are spaced
+    """
+
+    strip: Strip
+    box: Box
+    shift: float
+    factor: float
+
+    def lines(self, polygon: Array) -> tuple[Runs, list[str]]:
+        """The window's lines on the page inside a polygon, and the role of each."""
+        strip, (x0, top, x1, base) = self.strip, self.box
+        width = (x1 - x0) / self.factor
+        shown = (strip.last > self.shift) & (strip.first < self.shift + width)
+        index = np.flatnonzero(shown[strip.owner])
+        if not index.size:
+            return Runs(np.empty((0, 2)), [], []), []
+        points = strip.points[index]
+        points -= (self.shift, 0.0)
+        points *= (self.factor, (base - top) / strip.height)
+        points += (x0, top)
+        runs = cut(points, strip.owner[index], polygon)
+        return runs, [strip.roles[owner] for owner in runs.owners]
+
+    def near(self, x: Array, y: Array, margin: Array) -> Mask:
+        """True for places of the page within `margin` mm of a line."""
+        strip, (x0, top, _, base) = self.strip, self.box
+        distances = strip.distances
+        rows, columns = distances.shape
+        far = REACH_CELLS + 1
+        column = np.floor(((x - x0) / self.factor + self.shift) / CELL_MM).astype(int) + far
+        row = np.floor((y - top) * (strip.height / (base - top)) / CELL_MM).astype(int) + far
+        here = (row >= 0) & (row < rows) & (column >= 0) & (column < columns)
+        reach = np.minimum(np.ceil(margin / (CELL_MM * self.factor)), REACH_CELLS) + 0.3
+        near = np.zeros(x.shape, dtype=bool)
+        near[here] = distances[row[here], column[here]] <= np.square(reach[here])
+        return near
+
+
+def window(way: Way, box: Box, set_mm: float | None, factor: float, seed: int, term_seed: int) -> Window:
+    """The window of a bed.
+
+    Parameters
+    ----------
+    way : how the structure fills a bed
+    box : on the page, mm
+    set_mm : thickness of a set on the page, None when not recorded
+    factor : how much larger the style draws structures
+    seed, term_seed : of the bed, and of the structure
+    """
+    height, width = (box[3] - box[1]) / factor, (box[2] - box[0]) / factor
+    height_class = round(math.log(max(height, LEAST_HEIGHT_MM)) / math.log(HEIGHT_STEP))
+    width_class = max(1, math.ceil(width / WIDTH_STEP_MM))
+    rows = 0
+    if set_mm is not None and set_mm > 0:
+        rows = max(1, round(height * factor / set_mm))
+    strip = _strip(way, height_class, width_class, rows, term_seed)
+    shift = (seed * 0.618033989) % 1.0 * (strip.length - width)
+    return Window(strip, box, shift, factor)
