@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Callable, Iterable, Sequence
 from pathlib import Path
 from typing import Any
@@ -17,6 +18,8 @@ from logkit.report.wording import Units
 from logkit.words import counted, joined
 
 LARGEST_LOGO = 2_000_000
+ISO_DATE = re.compile(r"\d{4}-(0[1-9]|1[0-2])-(0[1-9]|1\d|2[0-8])")
+"""Days that every month has; another date is left out of the metadata."""
 
 
 def build_document(wells: Sequence[Well], settings: ReportSettings, *, for_page: bool = False) -> Document:
@@ -58,6 +61,9 @@ def build_document(wells: Sequence[Well], settings: ReportSettings, *, for_page:
         caution=CAUTION,
         beds=tuple(all_records(wells, units)) if for_page else (),
         ledgers=ledger_data(wells, units) if for_page else {},
+        date=max(
+            (well.log.header.date for well in wells if ISO_DATE.fullmatch(well.log.header.date)), default=""
+        ),
         authors=tuple(dict.fromkeys(w.log.header.logged_by for w in wells if w.log.header.logged_by)),
     )
 

@@ -95,6 +95,7 @@ class Document:
     """The whole report.
 
     facts : header data as (label, text)
+    date : day of the last log (ISO 8601), "" when no log says it
     beds, ledgers : for the html page, a record of every bed and what they share: see `logkit.report.page`
     """
 
@@ -108,6 +109,7 @@ class Document:
     beds: tuple[dict[str, Any], ...] = field(default=())
     ledgers: dict[str, Any] = field(default_factory=dict)
     authors: tuple[str, ...] = ()
+    date: str = ""
 
     def tables(self) -> Iterator[Table]:
         """Every table in order."""

@@ -95,8 +95,8 @@ def bed_table(well: Well, units: Units) -> Table:
     return Table(
         f"beds-{well.keys[0]}" if well.keys else "beds",
         f"Beds of {well.name}, upward, as read from the table; {depth_or_height(well)}s "
-        f"in {unit}. Grading with its probability, blank where not determinable. The wording of every "
-        "cell is kept in the tidy table.",
+        f"in {unit}. Grading with its probability, blank where not determinable. Source: the table that "
+        "was read; the wording of every cell is kept in the tidy table.",
         (
             Column("bed"),
             Column("base", unit, "right"),

@@ -57,7 +57,7 @@ def methods(wells: list[Well]) -> Iterator[Block]:
         "methods",
         "Formulas used in this report. Status: "
         + "; ".join(f"{word} – {meaning}" for word, meaning in STATUS_WORDS.items())
-        + ". A result outside a tested range carries a note.",
+        + ". A result outside a tested range carries a note. Source: records of the formulas; references.",
         (
             Column("formula"),
             Column("gives"),

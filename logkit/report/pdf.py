@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import json
+from dataclasses import replace
 from importlib.resources import files
 from typing import Any
 
@@ -13,6 +14,9 @@ from logkit.words import one_line
 
 TEMPLATE = "report.typ"
 MARGIN_MM = 18.0
+NO_DATE = "2000-01-01"
+"""An archive file must have a date; one that does not change keeps its bytes the same."""
+
 PAPERS_MM = {"a3": (297.0, 420.0), "a4": (210.0, 297.0), "letter": (215.9, 279.4)}
 """Papers of the text pages by the page setter's name: width and height."""
 
@@ -36,6 +40,8 @@ def document_pdf(document: Document, *, paper: str = "a4", archive: bool = False
     from logkit.drawing.fonts import font_folder
 
     pictures: dict[str, bytes] = {}
+    if archive and not document.date:
+        document = replace(document, date=NO_DATE)
     content = _content(document, paper.lower() if paper.lower() in PAPERS_MM else "a4", pictures)
     project: Any = {
         "main.typ": files("logkit.report").joinpath("data", TEMPLATE).read_bytes(),
@@ -59,6 +65,7 @@ def _content(document: Document, paper: str, pictures: dict[str, bytes]) -> dict
     return {
         "title": one_line(document.title),
         "subtitle": one_line(document.subtitle),
+        "date": [int(part) for part in document.date.split("-")] if document.date else [],
         "authors": [one_line(a) for a in document.authors],
         "keywords": ["sedimentary log", "flow history", "logkit"],
         "paper": TYPST_NAME.get(paper, paper),

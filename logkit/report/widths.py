@@ -16,7 +16,7 @@ SIZES_PT = (6.6, 6.0, 5.4)
 """Type sizes that are tried, the first that fits is taken."""
 
 CLEARLY_SHORTER = 0.85
-"""A smaller type must save this part of the height, its own smallness counted, to be taken."""
+"""A smaller type is taken only if the table has fewer than this part of the lines with it."""
 
 PADDING_MM = 2.7
 """Room between the texts of two columns."""
@@ -63,14 +63,14 @@ def fit(table: Table, upright_mm: float, sideways_mm: float) -> Fit:
         measured = _measure_table(table, longest)
         for wide in (False, True):
             total = sideways_mm if wide else upright_mm
-            best: tuple[float, Fit] | None = None
+            best: tuple[int, Fit] | None = None
             for size in SIZES_PT:
                 widths = _widths(measured, total, size)
                 if widths is None:
                     continue
-                height = _lines(measured, widths, size) * size
-                if best is None or height < CLEARLY_SHORTER * best[0]:
-                    best = height, Fit(widths, size, wide, longest)
+                lines = _lines(measured, widths, size)
+                if best is None or lines < CLEARLY_SHORTER * best[0]:
+                    best = lines, Fit(widths, size, wide, longest)
             if best is not None:
                 return best[1]
     count = len(table.columns)
