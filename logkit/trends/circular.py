@@ -103,7 +103,7 @@ def angular_deviation(azimuths_deg: npt.ArrayLike) -> float:
 @formula(
     "stat.rayleigh_p", gives="probability of so long a resultant without a preferred direction, p", unit="1",
     equation="z = n Rbar^2; p = exp(-z)(1 + (2z - z^2)/(4n) - (24z - 132z^2 + 76z^3 - 9z^4)/(288 n^2)), n < 50",
-    source="wilkie_1983", locator="series; exp(-z) from 50 readings on", status="secondary",
+    source="wilkie_1983", locator="series; exp(-z) from 50 readings on; Zar's form below 0", status="secondary",
     inputs=_AZIMUTHS | {"n": "number of readings, instead of azimuths", "resultant": "Rbar, instead of azimuths"},
     domain="alternative of one preferred direction, 5 readings or more", scatter="1 % of p; 8 % low at n = 4",
     pitfalls="Blind to two opposite modes: test doubled angles then.",
@@ -115,7 +115,7 @@ def rayleigh_p(
 
     References
     ----------
-    mardia_1972, wilkie_1983
+    mardia_1972, wilkie_1983, zar_1999
     """
     if azimuths_deg is not None:
         c, s, n = _components(np.radians(azimuths_deg), "azimuths_deg")
@@ -127,7 +127,9 @@ def rayleigh_p(
     if n < 50:
         factor += (2 * z - z**2) / (4 * n)
         factor -= (24 * z - 132 * z**2 + 76 * z**3 - 9 * z**4) / (288 * n**2)
-    return min(max(math.exp(-z) * factor, 0.0), 1.0)
+    if factor <= 0:  # the series has left its range: few readings that nearly agree
+        return _closed_form_p(n, resultant)
+    return min(math.exp(-z) * factor, 1.0)
 
 
 @formula(
@@ -143,7 +145,13 @@ def rayleigh_p_zar(azimuths_rad: npt.ArrayLike) -> float:
     zar_1999
     """
     c, s, n = _components(azimuths_rad, "azimuths_rad")
-    return min(math.exp(math.sqrt(1 + 4 * n + 4 * n**2 * (1 - c * c - s * s)) - (1 + 2 * n)), 1.0)
+    return _closed_form_p(n, math.hypot(c, s))
+
+
+def _closed_form_p(n: int, length: float) -> float:
+    """Zar's closed form from a number and a resultant length."""
+    opposed = max(1 - length**2, 0.0)
+    return min(math.exp(math.sqrt(1 + 4 * n + 4 * n**2 * opposed) - (1 + 2 * n)), 1.0)
 
 
 @formula(

@@ -32,6 +32,9 @@ LEAST_WIDTH_PHI = 0.1
 UNSURE_PHI = 0.5
 """How far a size written with a question mark is widened on both sides: one field class. Ours."""
 
+MISREAD = 0.02
+"""Chance that sizes written for base and top are a class or more off and tell nothing. Ours."""
+
 READING_ERROR_PHI = 0.15
 """Standard error of a reading without a count. Ours."""
 
@@ -68,7 +71,8 @@ def grade_bed(bed: Bed) -> Grading:
 
     Notes
     -----
-    Base and top sizes: each is uniform in phi over its interval; a step under 0.25 phi is no change.
+    Base and top sizes: each is uniform in phi over its interval; a step under 0.25 phi is no change; a small
+    share of sizes is misread, so that no verdict is certain.
     Readings: flat, straight and broken profiles are compared by their marginal likelihood under normal
     changes and a scatter about the reading error; a break may stand at any inner reading, all places being
     equally likely, and with two breaks the middle is flat.
@@ -142,6 +146,8 @@ def _from_states(name: str, sizes: Sequence[SizeInterval]) -> Grading:
     else:
         shares = _state_shares(bounds)
         breaks = _turns([0.5 * (low + high) for low, high in bounds])
+    shares = {word: (1 - MISREAD) * share for word, share in shares.items()}
+    shares["ungraded"] = shares.get("ungraded", 0.0) + MISREAD
     return _verdict(name, shares, "base and top sizes", breaks=breaks)
 
 

@@ -56,13 +56,13 @@ def test_written_sizes_give_their_word(phi: tuple[float, ...], word: str) -> Non
 
 
 def test_a_class_apart_is_less_sure_than_two() -> None:
-    """The width of the classes is carried into the probability, doubt widens it further."""
+    """The width of the classes is carried into the probability, doubt widens it further; none is certain."""
     near, far = grade_bed(bed_of(2.2, 2.7)), grade_bed(bed_of(2.2, 3.2))
     doubtful = grade_bed(bed_of(2.2, 2.7, sure=False))
     assert near.verdict == far.verdict == "normal"
-    assert (doubtful.probability or 0) < (near.probability or 0) < (far.probability or 0) == 1.0
+    assert (doubtful.probability or 0) < (near.probability or 0) < (far.probability or 0) < 1
     # two adjacent uniform half-phi classes: P(difference > 0.25) = 1 - 0.25^2/(2 x 0.5^2)
-    assert near.probability == pytest.approx(1 - 0.125)
+    assert near.probability == pytest.approx(0.98 * (1 - 0.125))
 
 
 @settings(max_examples=40, deadline=None)
