@@ -39,8 +39,6 @@ def add_lost_core(drafts: list[Draft], found: Collector, unit: str) -> None:
                  "the core has expanded, or holds a piece of the run above")  # fmt: skip
         elif lost > _LEAST_M:
             _place(drafts, draft, start + core.recovered_m, start + core.cut_m, recovery, found, unit)
-        else:
-            _say(draft, found, "note", "core.complete", f"{recovery}: nothing lost")
 
 
 def stack_lost_core(drafts: list[Draft], found: Collector, unit: str) -> bool:

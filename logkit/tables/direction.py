@@ -53,11 +53,14 @@ def _likely_unit(column: str, texts: Sequence[str]) -> str:
     return "cm" if values and statistics.median(values) > 5 else "m"
 
 
-def find_direction(drafts: Sequence[Draft], header: Header, stated: bool, found: Collector) -> Direction:
+def find_direction(
+    drafts: Sequence[Draft], header: Header, stated: bool, called_depths: bool, found: Collector
+) -> Direction:
     """The direction of a section: what the header says, unless bases and tops say the opposite.
 
     Depths written as negative numbers are turned round, and bases and tops exchanged in every row are put
-    right; both are said. `stated` is True when the header or the caller gave a direction.
+    right; both are said. `stated` is True when the header or the caller gave a direction, `called_depths` when
+    a heading of positions says depth.
     """
     pairs = [(d, d.base, d.top) for d in drafts if d.base is not None and d.top is not None]
     deeper = sum(base.metres > top.metres for _, base, top in pairs if base and top)
@@ -72,17 +75,11 @@ def find_direction(drafts: Sequence[Draft], header: Header, stated: bool, found:
     if header.direction == "down" and heights:
         _turn(drafts, pairs, found)
         return "down"
-    if header.direction == "up" and not stated and _looks_like_depth(drafts):
+    if header.direction == "up" and not stated and called_depths and drafts:
         _ask(drafts[0], found, "direction.depths", "no direction is given, and the positions are called depths: read "
              "downward", "write # direction: down or up", ("down (depths)", "up (heights)"))  # fmt: skip
         return "down"
     return header.direction
-
-
-def _looks_like_depth(drafts: Sequence[Draft]) -> bool:
-    """True when a column of positions is called a depth; a flow depth is no position."""
-    names = (name.casefold() for d in drafts[:1] for name, _ in d.written)
-    return any("depth" in name and not ("flow" in name or "water" in name) for name in names)
 
 
 def _turn(

@@ -139,7 +139,8 @@ def find_headings(sheet: Sheet, found: Collector, sizes: bool = False) -> Headin
         score = heading_score(row.cells, sizes)
         names = {match_heading(cell, sizes)[0] for cell in row.cells}
         usable = bool(names & {"d50", "bed"}) if sizes else bool(names & _PLACES or names & _MATTER)
-        if usable and score > best:
+        # one known word in a row of many cells is a bed, not its headings
+        if usable and score > best and (len(names - {""}) > 1 or len(list(filter(None, row.cells))) < 3):
             best, place = score, index
     if place < 0:
         return None

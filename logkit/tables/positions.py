@@ -132,6 +132,21 @@ class Placer:
                 d.first = d.first or d.height
             else:
                 d.last = d.last or d.height
+        if begins:
+            self._end_mark()
+
+    def _end_mark(self) -> None:
+        """A last row with nothing but a position is where the bed above ends."""
+        if len(self.drafts) < 2:
+            return
+        last, above = self.drafts[-1], self.drafts[-2]
+        if last.height is None or last.cells.keys() - {"position", "section"}:
+            return
+        if above.last is None and above.thickness is None:
+            above.last = last.height
+        self.say(last, "note", "position.end_mark", f"the last {self.noun} alone is where {above.label} ends", "",
+                 column="position")  # fmt: skip
+        self.drafts.pop()
 
     def _heights_begin(self, rows: list[Draft]) -> bool:
         misfit_begin = misfit_end = 0.0

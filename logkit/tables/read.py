@@ -21,11 +21,13 @@ from logkit.tables.draft import Draft, Manner
 from logkit.tables.header import KEYS, read_header, with_options
 from logkit.tables.headings import Headings, find_headings
 from logkit.tables.positions import Placer
+from logkit.tables.refusals import PLACES
 from logkit.tables.rows import read_row
 from logkit.tables.sections import rows_to_drafts, split_sections
 from logkit.tables.sheet import Collector, Sheet, gathered
 from logkit.tables.sizes import SizeRows, add_sizes, read_sizes
 from logkit.tables.text import sheet_from_text
+from logkit.tables.totals import leave_out_sum
 from logkit.tables.workbook import is_workbook, open_workbook
 from logkit.units import METRES
 from logkit.vocabulary import code_table
@@ -303,7 +305,10 @@ def _logs_of_sheet(
     headings = find_headings(sheet, found)
     if headings is None or not _complete(headings, sheet, found):
         if headings is None:
-            found.add("error", "file.no_table", "there is no row of headings that is known", _NEEDED)
+            first = next((row for row in sheet.rows if not row.is_blank), None)
+            found.add("error", "file.no_table", "there is no row of headings that is known", _NEEDED,
+                      row=first.number if first else None,
+                      cell=" | ".join(c for c in first.cells if c) if first else "")  # fmt: skip
         return [Log(findings=tuple(found.found), source=source)]
     header = read_header([*lines, *sheet.header], found)
     header = replace(
@@ -328,11 +333,13 @@ def _logs_of_sheet(
     manner = settle_units(drafts, manner, header, found)
     for draft in drafts:
         read_row(draft, manner, found)
+    depths = any(c.name in PLACES and "depth" in c.heading.casefold() for c in headings.columns)
     stated = "direction" in options.header or any(
         key.strip().casefold() == "direction" for key, _, _ in (*lines, *sheet.header)
     )
     logs = [
-        _one_log(replace(header, section=name), rows, manner, stated, found, source) for name, rows in groups
+        _one_log(replace(header, section=name), rows, manner, stated, depths, found, source)
+        for name, rows in groups
     ]
     shared = [f for f in found.found if not f.section]
     if len(logs) == 1:
@@ -379,11 +386,13 @@ def _one_log(
     drafts: list[Draft],
     manner: Manner,
     stated: bool,
+    depths: bool,
     found: Collector,
     source: str,
 ) -> Log:
-    """One section from its drafts: direction, places, names, beds, sizes, checks."""
-    direction = find_direction(drafts, header, stated, found)
+    """One section from its drafts: direction, places, names, beds, checks."""
+    leave_out_sum(drafts, found)
+    direction = find_direction(drafts, header, stated, depths, found)
     unit = header.unit
     if direction == "down" and not unit:
         unit = next(

@@ -9,6 +9,7 @@ from logkit.tables.draft import Draft
 from logkit.tables.headings import Headings
 from logkit.tables.sheet import Collector, Row, Sheet
 from logkit.tables.text import plain_cell
+from logkit.tables.totals import is_end_row
 
 
 def rows_to_drafts(sheet: Sheet, headings: Headings, found: Collector) -> list[Draft]:
@@ -38,6 +39,10 @@ def rows_to_drafts(sheet: Sheet, headings: Headings, found: Collector) -> list[D
                       row=row.number, cell=" | ".join(c for c in cells if c))  # fmt: skip
             continue
         texts = {name: cells[i] for i, name in known if i < len(cells) and cells[i]}
+        if is_end_row(texts, cells):
+            found.add("note", "row.total", "a row of totals or an end mark is not a bed; it is left out", "",
+                      row=row.number, cell=" | ".join(c for c in cells if c))  # fmt: skip
+            continue
         written = tuple([(name, cells[i]) for i, name in named if i < len(cells) and cells[i]])
         draft = Draft(row.number, texts.get("bed", ""), texts.get("section", ""), texts, written)
         if "as_written" in texts:
@@ -85,8 +90,8 @@ def split_sections(
             d.section = before
         before = d.section
     if carried:
-        rows = "row has" if carried == 1 else "rows have"
-        found.add("note", "section.carried", f"{carried} {rows} no section and belong to the one above", "",
+        rows = "row has no section and belongs" if carried == 1 else "rows have no section and belong"
+        found.add("note", "section.carried", f"{carried} {rows} to the one above", "",
                   column="section")  # fmt: skip
     groups: dict[str, list[Draft]] = {}
     for name, rows_of in groupby(drafts, key=lambda d: d.section):

@@ -95,7 +95,8 @@ def _without_nulls(body: bytes, found: Collector) -> bytes:
         found.add("error", "file.binary", "the file is not text (it holds null bytes)",
                   "save the table as CSV, TSV, XLSX or ODS")  # fmt: skip
         return b""
-    found.add("question", "file.nulls", f"the file holds {nulls} null bytes, which were left out",
+    noun = "null byte" if nulls == 1 else "null bytes"
+    found.add("question", "file.nulls", f"the file holds {nulls} {noun}, left out",
               "check the file; it may be damaged", choices=("null bytes left out",))  # fmt: skip
     return body.replace(b"\0", b"")
 
@@ -149,27 +150,59 @@ def _read_header_lines(lines: list[str], separator: str, sheet: Sheet) -> int:
 
 def _read_rows(lines: list[str], first: int, separator: str, sheet: Sheet, found: Collector) -> None:
     csv.field_size_limit(LONGEST_CELL)
-    reader = csv.reader(lines[first:], delimiter=separator)
-    while True:
-        start = reader.line_num
-        try:
-            cells = next(reader)
-        except StopIteration:
-            return
-        except csv.Error as problem:
-            found.add("error", "file.unreadable_line", f"the line cannot be read as a row: {problem}",
-                      "check the quotation marks", row=first + start + 1)  # fmt: skip
+    at = first
+    while at < len(lines):
+        cells, count = _row_at(lines, at, separator, found)
+        number, at = at + 1, at + count
+        if cells is None:
             continue
         if sheet.rows and cells and cells[0].lstrip().startswith("#") and not any(map(str.strip, cells[1:])):
             found.add("note", "row.remark_line", "a line between the rows that begins with # is not a bed",
-                      row=first + start + 1, cell=cells[0])  # fmt: skip
+                      row=number, cell=cells[0])  # fmt: skip
             continue
-        if reader.line_num - start > 50:
-            found.add("question", "file.long_cell",
-                      f"one cell runs over {reader.line_num - start} lines; a quotation mark may be missing",
-                      "close the quotation mark", row=first + start + 1,
-                      choices=("one long cell", "a missing quotation mark"))  # fmt: skip
-        sheet.rows.append(Row(first + start + 1, tuple([unescape(cell.strip()) for cell in cells])))
+        sheet.rows.append(Row(number, tuple([unescape(cell.strip()) for cell in cells])))
+
+
+def _row_at(lines: list[str], at: int, separator: str, found: Collector) -> tuple[list[str] | None, int]:
+    """The cells of the row that begins in a line, and how many lines it takes.
+
+    A quotation mark that is never closed would swallow the rows below: it ends with its line, as an error.
+    """
+    line = lines[at]
+    if '"' not in line:
+        return _split(line, separator, at, found), 1
+    reader = csv.reader(lines[at:], delimiter=separator)
+    try:
+        cells: list[str] | None = next(reader)
+    except (csv.Error, StopIteration) as problem:
+        found.add("error", "row.unreadable", f"the line cannot be read as a row: {problem}",
+                  "check the quotation marks", row=at + 1)  # fmt: skip
+        return None, 1
+    count = reader.line_num
+    if count == 1:
+        return cells, 1
+    swallowed = lines[at + 1 : at + count]
+    if sum(part.count('"') for part in lines[at : at + count]) % 2:
+        found.add("error", "row.open_quote", "a quotation mark is opened in this row and never closed",
+                  "close it, or take it out", row=at + 1, cell=line.strip())  # fmt: skip
+        return _split(line.replace('"', ""), separator, at, found), 1
+    width = max(line.count(separator), 1)
+    if count > 50 or any(part.count(separator) >= width for part in swallowed[:-1]):
+        found.add("question", "file.long_cell",
+                  f"one cell runs over {count} lines; a quotation mark may be missing",
+                  "close the quotation mark", row=at + 1, cell=line.strip(),
+                  choices=("one long cell", "a missing quotation mark"))  # fmt: skip
+    return cells, count
+
+
+def _split(line: str, separator: str, at: int, found: Collector) -> list[str] | None:
+    """The cells of a line without quotation marks."""
+    try:
+        return next(csv.reader([line], delimiter=separator), [])
+    except csv.Error as problem:
+        found.add("error", "row.unreadable", f"the line cannot be read as a row: {problem}",
+                  "shorten the cell", row=at + 1)  # fmt: skip
+        return None
 
 
 def unescape(text: str) -> str:

@@ -7,6 +7,9 @@ from __future__ import annotations
 
 import datetime
 import io
+import re
+import zipfile
+import zlib
 from collections import Counter
 from dataclasses import dataclass, field
 from typing import Any
@@ -22,6 +25,10 @@ SPREAD = frozenset({
 })  # fmt: skip
 """Columns in which a merged cell speaks for every row it covers; in others it belongs to its top row only."""
 _MOST_CELLS = 4_000_000
+_MOST_BYTES = 100_000_000
+_EMPTY_FORMULA = re.compile(
+    rb'<c r="([A-Z]{1,3}\d{1,7})"[^>]*><f(?:/>|[^>]*>[^<]*</f>)(?:<v\s*/>|<v></v>)?</c>'
+)
 
 
 @dataclass(slots=True)
@@ -53,6 +60,7 @@ def open_workbook(body: bytes, file: str, found: Collector) -> Book:
         if type(problem).__name__ != "PanicException":
             raise
         raise _cannot_open(file, body, problem) from None
+    _say_empty_formulas(body, found)
     book = Book()
     for name, start, values, merged in raw:
         key = name.strip().casefold()
@@ -89,6 +97,24 @@ def _load(body: bytes) -> list[_Raw]:
             merged = []
         sheets.append((about.name, sheet.start or (0, 0), values, merged))
     return sheets
+
+
+def _say_empty_formulas(body: bytes, found: Collector) -> None:
+    """Ask about formulas without a result: a program wrote the workbook and nobody has calculated it since."""
+    cells: list[str] = []
+    try:
+        with zipfile.ZipFile(io.BytesIO(body)) as parts:
+            for part in parts.infolist():
+                if part.filename.startswith("xl/worksheets/") and part.file_size < _MOST_BYTES:
+                    cells += [m.decode("ascii") for m in _EMPTY_FORMULA.findall(parts.read(part))]
+    except (zipfile.BadZipFile, OSError, ValueError, NotImplementedError, RuntimeError, EOFError, zlib.error):
+        return  # not a zip archive, or one that only the reader of workbooks understands
+    if cells:
+        shown = ", ".join(cells[:6]) + (" …" if len(cells) > 6 else "")
+        noun = "cell holds a formula" if len(cells) == 1 else "cells hold formulas"
+        found.add("question", "cell.formula", f"{len(cells)} {noun} without a result ({shown}); read as empty",
+                  "open the workbook in a spreadsheet and save it, so that the results are in it", cell=cells[0],
+                  choices=("empty",))  # fmt: skip
 
 
 def _cannot_open(file: str, body: bytes, problem: BaseException) -> LogkitError:
