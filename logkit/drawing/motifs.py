@@ -186,22 +186,23 @@ def structure_lines(
     return StructureLines(tuple(shapes), tuple(clear), piece)
 
 
-def _painted(runs: Runs, roles: Sequence[str], style: Style) -> list[Shape]:
+def _painted(found: Sequence[Runs], roles: Sequence[str], style: Style) -> list[Shape]:
     """Lines of one role as one shape each."""
     widths = style.lines
     weight = {"set": widths.set, "crest": widths.crest, "drape": widths.drape}
     colour = {"set": style.colours.ink, "drape": style.colours.drape}
-    if not runs.starts:
-        return []
-    points = list(zip(runs.points[:, 0].tolist(), runs.points[:, 1].tolist(), strict=True))
-    stops = [*runs.starts[1:], len(points)]
+    lines: list[tuple[Point, ...]] = []
+    for runs in found:
+        points = list(zip(runs.points[:, 0].tolist(), runs.points[:, 1].tolist(), strict=True))
+        bounds = [*runs.starts, len(points)]
+        lines += [tuple(points[start:stop]) for start, stop in itertools.pairwise(bounds) if stop > start]
     by_role: dict[str, list[tuple[Point, ...]]] = {}
-    for role, start, stop in zip(roles, runs.starts, stops, strict=True):
-        by_role.setdefault(role, []).append(tuple(points[start:stop]))
+    for role, line in zip(roles, lines, strict=True):
+        by_role.setdefault(role, []).append(line)
     shapes: list[Shape] = []
-    for role, lines in by_role.items():
+    for role, own in sorted(by_role.items()):
         ink, width = colour.get(role, style.colours.structure), weight.get(role, widths.lamina)
-        shapes.append(Lines(tuple(lines), Paint(stroke=ink, width=width, cap="round")))
+        shapes.append(Lines(tuple(own), Paint(stroke=ink, width=width, cap="round")))
     return shapes
 
 

@@ -24,13 +24,13 @@ HEIGHT_STEP = 1.2
 
 LEAST_HEIGHT_MM = 0.5
 
-WIDTH_STEP_MM = 60.0
-SPARE_MM = 40.0
+WIDTH_STEP_MM = 24.0
+SPARE_MM = 24.0
 """Length of a strip beyond the widest bed it serves, in which windows begin."""
 
 CELL_MM = 0.1
-REACH_CELLS = 12
-"""Distances from lines are known up to so many cells."""
+REACH_CELLS = 9
+"""Distances from lines are known up to so many cells; its square and that of the next fit into eight bits."""
 
 
 class Strip:
@@ -42,6 +42,7 @@ class Strip:
     roles : role of each line, in order of the alphabet
     points, owner : points of all lines, mm from the upper left corner, and the number of the line of each
     first, last : leftmost and rightmost reach of each line, mm
+    within : True for lines that keep between top and foot of the strip
     """
 
     def __init__(self, way: Way, height: float, length: float, set_mm: float | None, seed: int) -> None:
@@ -55,6 +56,9 @@ class Strip:
         self.owner = np.repeat(np.arange(len(lines)), sizes)
         self.first = np.array([line[:, 0].min() for line in lines])
         self.last = np.array([line[:, 0].max() for line in lines])
+        self.within = np.array(
+            [line[:, 1].min() >= 0.0 and line[:, 1].max() <= height for line in lines], dtype=bool
+        )
 
     @cached_property
     def distances(self) -> NDArray[np.uint8]:
@@ -71,17 +75,17 @@ class Strip:
         column, row = (np.floor(at[:, axis] / CELL_MM).astype(int) + far for axis in (0, 1))
         kept = (row >= 0) & (row < rows) & (column >= 0) & (column < columns)
         marked[row[kept], column[kept]] = True
-        upright = np.where(marked, 0, far).astype(np.int16)
-        for shift in range(1, far):
-            np.minimum(upright[shift:], np.where(marked[:-shift], shift, far), out=upright[shift:])
-            np.minimum(upright[:-shift], np.where(marked[shift:], shift, far), out=upright[:-shift])
+        upright = np.where(marked, 0, far).astype(np.uint8)
+        for _ in range(far - 1):
+            upright[1:] = np.minimum(upright[1:], upright[:-1] + np.uint8(1))
+            upright[:-1] = np.minimum(upright[:-1], upright[1:] + np.uint8(1))
         squared = upright * upright
         nearest = squared.copy()
         for shift in range(1, far):
-            sideways = squared + np.int16(shift * shift)
+            sideways = squared + np.uint8(shift * shift)
             np.minimum(nearest[:, shift:], sideways[:, :-shift], out=nearest[:, shift:])
             np.minimum(nearest[:, :-shift], sideways[:, shift:], out=nearest[:, :-shift])
-        return nearest.astype(np.uint8)
+        return nearest
 
 
 @lru_cache(maxsize=96)
@@ -108,20 +112,28 @@ class Window:
     shift: float
     factor: float
 
-    def lines(self, polygon: Array) -> tuple[Runs, list[str]]:
-        """The window's lines on the page inside a polygon, and the role of each."""
+    def lines(self, polygon: Array) -> tuple[list[Runs], list[str]]:
+        """The window's lines on the page inside a polygon, and the role of each in order."""
         strip, (x0, top, x1, base) = self.strip, self.box
-        width = (x1 - x0) / self.factor
-        shown = (strip.last > self.shift) & (strip.first < self.shift + width)
-        index = np.flatnonzero(shown[strip.owner])
-        if not index.size:
-            return Runs(np.empty((0, 2)), [], []), []
-        points = strip.points[index]
-        points -= (self.shift, 0.0)
-        points *= (self.factor, (base - top) / strip.height)
-        points += (x0, top)
-        runs = cut(points, strip.owner[index], polygon)
-        return runs, [strip.roles[owner] for owner in runs.owners]
+        stop = self.shift + (x1 - x0) / self.factor
+        shown = (strip.last > self.shift) & (strip.first < stop)
+        free = self.shift + (_free_right(polygon, self.box) - x0) / self.factor
+        whole = shown & strip.within & (strip.first >= self.shift) & (strip.last <= free)
+        found = []
+        for chosen, is_whole in ((whole, True), (shown & ~whole, False)):
+            index = np.flatnonzero(chosen[strip.owner])
+            if not index.size:
+                continue
+            points, owner = strip.points[index], strip.owner[index]
+            points -= (self.shift, 0.0)
+            points *= (self.factor, (base - top) / strip.height)
+            points += (x0, top)
+            if is_whole:
+                starts = np.concatenate(([0], np.flatnonzero(owner[1:] != owner[:-1]) + 1))
+                found.append(Runs(points, starts.tolist(), owner[starts].tolist()))
+            else:
+                found.append(cut(points, owner, polygon))
+        return found, [strip.roles[owner] for runs in found for owner in runs.owners]
 
     def near(self, x: Array, y: Array, margin: Array) -> Mask:
         """True for places of the page within `margin` mm of a line."""
@@ -136,6 +148,15 @@ class Window:
         near = np.zeros(x.shape, dtype=bool)
         near[here] = distances[row[here], column[here]] <= np.square(reach[here])
         return near
+
+
+def _free_right(polygon: Array, box: Box) -> float:
+    """How far to the right a box is free of the polygon's edges, mm; lines up to there need no cutting."""
+    x0, top, x1, base = box
+    x, y = polygon[:, 0], polygon[:, 1]
+    right = float(x[x > x0 + 0.4 * (x1 - x0)].min(initial=x1))
+    in_the_way = (x > x0 + 1e-6) & (x < right - 1e-6) & (y > top + 1e-6) & (y < base - 1e-6)
+    return x0 if in_the_way.any() else right
 
 
 def window(way: Way, box: Box, set_mm: float | None, factor: float, seed: int, term_seed: int) -> Window:
