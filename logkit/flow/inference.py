@@ -29,6 +29,9 @@ RIM_LIMIT = 0.05
 NEAR_CRITICAL = 0.8
 """Froude number from which plane beds and antidunes are not told apart: both were seen at 0.83-0.96."""
 
+SHALLOW_M = 1.0
+"""Depth below which the measured rivers were slower than the calibrated ranges more often than they should."""
+
 OPEN_ABOVE = ("upper_plane", "antidune")
 """Bed states that no faster flow under a deep water ends."""
 
@@ -141,6 +144,8 @@ def estimate_phases(solver: Solver, phases: Sequence[Phase], readings: Sequence[
         quantities: dict[str, Any] = {q: Quantiles(*numbers[q][i]) for q in _quantities_of(phase)}
         if answer.rim[i] > RIM_LIMIT:
             common["notes"] = (*reading.notes, "The answer reaches the limits of the grid.")
+        if reading.case.signature.prior == "river" and quantities["flow_depth"].p50 < SHALLOW_M:
+            common["notes"] = (*common["notes"], _SHALLOW_WORDS)
         if states[i] == "upper_plane" and quantities["froude"].p90 > NEAR_CRITICAL:
             common["notes"] = (*common["notes"], "Near Fr 0.9 plane beds and antidunes pass into each other.")
         return PhaseEstimate(
@@ -151,6 +156,11 @@ def estimate_phases(solver: Solver, phases: Sequence[Phase], readings: Sequence[
 
     return map(build, range(len(cases)))
 
+
+_SHALLOW_WORDS = (
+    "Less than 1 m deep: of the measured streams so shallow four in ten lie outside such a range, most of them "
+    "slower, held back by banks, bars and plants."
+)
 
 _QUANTITIES = ("velocity", "flow_depth", "shear_velocity", "total_shear_velocity", "froude")
 
@@ -165,8 +175,9 @@ def _quantities_of(phase: Phase) -> tuple[str, ...]:
 def _one_sided(case: Case) -> bool:
     """True when the criteria of a case only say "faster than", and no calibrated prior ends the range.
 
-    A prior that was fitted to measured rivers ends a range for sand that moved; a clast that had to move
-    tells of the fastest moment, which a prior of ordinary flows must not cap.
+    A prior that was fitted to measured rivers ends a range for sand that moved or lay in plane beds; no other
+    prior may. A clast that had to move tells of the fastest moment, which a prior of ordinary flows must not
+    cap.
     """
     ids = dict(case.signature.factors)
     clast = ids.get("largest_clast")
@@ -177,7 +188,7 @@ def _one_sided(case: Case) -> bool:
         criterion = CRITERIA[id]
         if criterion.side != "band":
             continue
-        if criterion.kind != "state" or prior != "off":
+        if criterion.kind != "state" or prior == "river":
             return False
         if not set(reading) & set(OPEN_ABOVE):  # type: ignore[call-overload]
             return False

@@ -90,7 +90,7 @@ def find_tendencies(
     gaps = {index for index, bed in enumerate(log.beds) if bed.is_gap}
     on_grid = [
         (i, j) for i, j in pairs
-        if i in readings and j in readings and _has_range(estimates[i]) and _has_range(estimates[j])
+        if all(k in readings and _comparable(estimates[k], readings[k]) for k in (i, j))
     ]  # fmt: skip
     compared = _compare(solver, on_grid, estimates, readings)
     result: list[Transition | None] = []
@@ -140,6 +140,14 @@ def bed_patterns(
             word = "-then-".join(words) if words else "steady"
             patterns.append(BedPattern(index, steps[0].to_bed, word, chance))
     return tuple(patterns)
+
+
+def _comparable(estimate: PhaseEstimate, reading: Reading) -> bool:
+    """True for a range, and for a bed state that is open above where a prior says how fast flows usually are."""
+    signature = reading.case.signature
+    return _has_range(estimate) or (
+        signature.prior != "off" and any(id == "bed_state" for id, _ in signature.factors)
+    )
 
 
 def _has_range(estimate: PhaseEstimate) -> bool:

@@ -449,3 +449,26 @@ def test_an_impossible_depth_of_a_bed_names_the_bed() -> None:
 def test_a_coarse_sand_grain_does_not_open_a_river_range() -> None:
     """Only gravel tells of a faster moment; the largest sand grain leaves the range of the bed as it is."""
     assert one("mL", "massive", largest=LargestClasts((0.8,), 0.8)).bound == "range"
+
+
+def test_plane_beds_outside_rivers_are_open_above() -> None:
+    """No measured tidal flows end the range: a lower bound, and still a waning flow where ripples follow."""
+    history = infer_flow(
+        log(
+            bed("fL", structures_upward=True, terms=(
+                Structure("upper_plane_lamination"), Structure("current_ripples"))),
+            setting="tidal",
+        )
+    )  # fmt: skip
+    plane, ripples = history.estimates
+    assert (plane.bound, plane.velocity, ripples.bound) == ("above", None, "range")
+    assert plane.limit_velocity_m_s is not None
+    assert 0.5 < plane.limit_velocity_m_s < 1.0
+    assert ripples.tendency == "waning"
+
+
+def test_shallow_rivers_carry_their_known_weakness() -> None:
+    """Below 1 m the calibrated range holds too few measured streams; deeper rivers carry no such note."""
+    for depth, told in ((0.5, True), (3.0, False)):
+        found = one("mL", "trough_cross_bedding", ask_flow_depth_m=depth)
+        assert any("Less than 1 m deep" in note for note in found.notes) == told
