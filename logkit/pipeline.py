@@ -5,6 +5,7 @@ Only the order of the steps belongs here; each step lives in its own layer and i
 
 from __future__ import annotations
 
+import os
 from collections.abc import Callable, Iterable
 from dataclasses import dataclass, field
 from pathlib import Path
@@ -86,7 +87,7 @@ def find_sources(sources: Iterable[str]) -> tuple[str, ...]:
     """
     found: list[str] = []
     for source in sources:
-        if source == "-" or not Path(source).is_dir():
+        if source == "-" or not os.path.isdir(source):  # false as well where it may not be looked at
             found.append(source)
             continue
         tables = sorted(

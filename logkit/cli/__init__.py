@@ -64,6 +64,7 @@ class VerbGroup(click.Group):
 @click.group(
     cls=VerbGroup,
     epilog=EPILOG,
+    subcommand_metavar="VERB …",
     context_settings={"help_option_names": ["-h", "--help"], "max_content_width": 110},
 )
 @click.version_option(__version__, prog_name="logkit")

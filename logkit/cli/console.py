@@ -34,14 +34,19 @@ def print_table(headings: Sequence[str], rows: Iterable[Sequence[Any]], title: s
     from rich.table import Table
     from rich.text import Text
 
-    table = Table(box=SIMPLE_HEAD, title=title or None, title_justify="left", pad_edge=False)
+    table = Table(
+        box=SIMPLE_HEAD,
+        title=Text(title, style="bold") if title else None,
+        title_justify="left",
+        pad_edge=False,
+    )
     for heading in headings:
         table.add_column(heading, overflow="fold")
     for row in rows:
         table.add_row(
             *(Text(cell, style=LEVEL_COLOURS.get(cell, "") if colour_wanted() else "") for cell in row)
         )
-    Console(no_color=not colour_wanted(), highlight=False).print(table)
+    Console(color_system="auto" if colour_wanted() else None, highlight=False).print(table)
 
 
 def print_frame(frame: Any, title: str = "") -> None:

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import contextlib
+import os
 import re
 from collections.abc import Callable, Sequence
 from pathlib import Path
@@ -11,26 +13,40 @@ import click
 
 from logkit.cli.console import progress
 from logkit.errors import ArgumentError
-from logkit.pipeline import Outcome, Settings, Step, run
+from logkit.model import SETTINGS
+from logkit.pipeline import Outcome, Settings, Step, find_sources, run
 
 C = TypeVar("C", bound=Callable[..., Any])
 
-logs_argument = click.argument("sources", metavar="LOG…", nargs=-1, required=True)
-log_argument = click.argument("source", metavar="LOG")
+_PATH = click.Path(allow_dash=True)
+"""A path that the reader checks itself; the shell completes it."""
+
+logs_argument = click.argument("sources", metavar="LOG…", nargs=-1, required=True, type=_PATH)
+log_argument = click.argument("source", metavar="LOG", type=_PATH)
 quiet_option = click.option("--quiet", "-q", is_flag=True, help="No messages and no progress bar.")
 section_option = click.option("--section", default="", help="Only this section of a file that holds several.")
 
 
 def output_option(help_text: str, required: bool = True) -> Callable[[C], C]:
     """The `-o` option; `-` stands for standard output where the verb allows it."""
-    return click.option("--output", "-o", metavar="FILE", required=required, help=help_text)
+    return click.option("--output", "-o", metavar="FILE", required=required, help=help_text, type=_PATH)
+
+
+def _complete_codes(ctx: click.Context, param: click.Parameter, typed: str) -> list[str]:
+    from logkit.vocabulary import code_tables
+
+    return [name for name in code_tables() if name.startswith(typed)]
 
 
 def reading_options(command: C) -> C:
     """Options that say how a table is to be read."""
     for option in (
         click.option(
-            "--codes", default=None, metavar="TABLE", help="Table of facies codes the log was written with."
+            "--codes",
+            default=None,
+            metavar="TABLE",
+            shell_complete=_complete_codes,
+            help="Table of facies codes the log was written with.",
         ),
         click.option(
             "--direction",
@@ -48,6 +64,7 @@ def reading_options(command: C) -> C:
             "--setting",
             default=None,
             metavar="WORD",
+            shell_complete=lambda ctx, param, typed: [w for w in SETTINGS if w.startswith(typed)],
             help="What moved the grains: river, tidal, turbidity, waves, combined, wind.",
         ),
         section_option,
@@ -111,7 +128,13 @@ def run_logs(
     on_errors: str | None = None,
     **options: Any,
 ) -> Outcome:
-    """Run the pipeline for a command's options, with a progress bar for many logs."""
+    """Run the pipeline for a command's options, with a progress bar for many logs.
+
+    Raises
+    ------
+    ArgumentError : the command would write over one of its own inputs
+    """
+    spare_sources(sources, click.get_current_context().params.get("output"))
     reading = take_reading(options)
     if on_errors:
         reading["on_errors"] = on_errors
@@ -125,6 +148,21 @@ def run_logs(
         keep_going=keep_going,
     )
     return run(settings, each=lambda found: progress(found, "reading", quiet))
+
+
+def spare_sources(sources: Sequence[str], output: str | None) -> None:
+    """Refuse an output that is one of the inputs: a field table is not replaced by what was made of it.
+
+    Raises
+    ------
+    ArgumentError : the output is an input, by this or by another name
+    """
+    if not output or not os.path.isfile(output):
+        return
+    for source in find_sources(sources):
+        with contextlib.suppress(OSError):
+            if os.path.samefile(source, output):
+                raise ArgumentError("--output", output, f"another file than the log {source}")
 
 
 def parse_scale(text: str) -> float:

@@ -33,7 +33,7 @@ def command(source: str, output: str, quiet: bool, **options: Any) -> None:
     check_ending(output, ("csv", "tsv", "xlsx"))
     logs = run_logs([source], quiet=quiet, **options).logs
     if len(logs) > 1:
-        names = ", ".join(log.header.section for log in logs)
+        names = ", ".join(log.name for log in logs)
         raise LogkitError(f"{source} holds {len(logs)} sections: {names}.", "Choose one with --section.")
     logs[0].write(output)
     say(f"Wrote {output}: {len(logs[0].real_beds)} beds.", quiet)

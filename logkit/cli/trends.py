@@ -17,7 +17,13 @@ TABLES = (
 
 @click.command("trends")
 @logs_argument
-@click.option("--only", type=click.Choice(TABLES), multiple=True, help="Only this table; may be repeated.")
+@click.option(
+    "--only",
+    type=click.Choice(TABLES),
+    multiple=True,
+    metavar="TABLE",
+    help="Only this table; may be repeated: " + ", ".join(TABLES) + ".",
+)
 @click.option("--json", "as_json", is_flag=True, help="Everything as JSON.")
 @reading_options
 @quiet_option
