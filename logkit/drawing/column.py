@@ -20,6 +20,7 @@ from logkit.drawing.legend import legend_pages
 from logkit.drawing.scene import Scene, Tally, View
 from logkit.drawing.shapes import Gradient, Group, Shape, Sheet
 from logkit.drawing.style import Style, load_style
+from logkit.drawing.style_records import read_page
 from logkit.drawing.tables import NoteTable
 from logkit.drawing.tracks import TRACKS
 from logkit.errors import ArgumentError
@@ -72,7 +73,7 @@ def draw_column(
     trends : trends with `gradings`, `packages`, `currents`; without them no sails and no rose
     style : name of a shipped style, path of a style file, or a style
     scale : metres in the section a metre on paper, 50 for 1:50; the style's scale by default
-    page : "A4", "Letter", "roll" …, or (width, height) in mm; the style's page by default
+    page : "A4", "Letter landscape", "roll", "180x240", or (width, height) in mm; the style's page by default
     from_m, to_m : part of the section to draw, m in the log's positions
     fit_height_mm : height that the column shall have; sets the scale, which is printed
     cut_gaps : draw gaps taller than 1.5 m as 10 mm, marked and in words
@@ -97,7 +98,7 @@ def draw_column(
 
 @contextmanager
 def _no_collection() -> Iterator[None]:
-    """Hold back the search for reference cycles: shapes have none, and looking through them takes a fifth of the time."""
+    """Hold back the search for reference cycles: shapes have none, and looking takes a fifth of the time."""
     was_on = gc.isenabled()
     gc.disable()
     try:
@@ -112,7 +113,7 @@ def _style(
 ) -> Style:
     overrides: dict[str, Any] = {}
     if page is not None:
-        overrides["size"] = page if isinstance(page, str) else [float(length) for length in page]
+        overrides = read_page(page if isinstance(page, str) else "x".join(f"{length}" for length in page))
     if landscape is not None:
         overrides["landscape"] = landscape
     return load_style(style, {"page": overrides} if overrides else None)

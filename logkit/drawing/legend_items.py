@@ -13,6 +13,7 @@ from logkit.drawing.shapes import Paint, Path, Point, Segment, Shape, Text, poly
 from logkit.drawing.textures import bed_texture
 from logkit.drawing.tracks.current import needle
 from logkit.drawing.tracks.ribbon import arrow, conflict_sign
+from logkit.drawing.tracks.texture import break_mark
 from logkit.vocabulary.terms import vocabulary
 
 SWATCH_MM = 7.0
@@ -107,7 +108,7 @@ class _Marks:
             "faulted": Item(self._line(lines.erosive, colour=colours.conflict), "faulted"),
             "end": Item(self._line(lines.contact, (1.2, 0.8)), "end of exposure, not seen"),
             "unsized": Item(self._line(lines.profile, (0.9, 0.6)), "size not recorded"),
-            "cut": Item(self._line(lines.contact, (1.0, 1.0)), "scale cut"),
+            "cut": Item(self._cut, "scale cut"),
             "sample": Item(self._solid(triangle), "sample"),
             "marker": Item(self._solid(lozenge), "marker"),
             "needle": Item(self._needle("direction"), "current, to the filled end"),
@@ -138,6 +139,9 @@ class _Marks:
             return [Path(tuple(steps), Paint(stroke=self.ink, width=weight))]
 
         return draw
+
+    def _cut(self, x: float, y: float) -> list[Shape]:
+        return [break_mark(x + SWATCH_MM / 2, y, self.scene)]
 
     def _shade(self, x: float, y: float) -> list[Shape]:
         shapes: list[Shape] = []

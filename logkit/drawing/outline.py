@@ -107,6 +107,7 @@ def bed_outline(
     axis: PhiAxis,
     scale: float,
     style: TextureStyle,
+    open_below: bool = False,
 ) -> Outline:
     """Outline of a bed on a sheet.
 
@@ -117,6 +118,7 @@ def bed_outline(
     axis : grain-size axis
     scale : metres in the section a metre on paper
     style : least relief of an erosive base on paper and the widths of its scours
+    open_below : nothing is known of what lies below; relief drawn into a gap would read as data
     """
     y_base, y_top = span
     sizes = _sizes(item, position)
@@ -125,7 +127,7 @@ def bed_outline(
     contact = item.bed.contact
     kind = contact.kind if contact and item.bed.base_m >= position.base_m else ""
     tall = y_base - y_top
-    if kind in _SHAPED and tall >= 1.0 and right - axis.x0 > 3:
+    if kind in _SHAPED and tall >= 1.0 and right - axis.x0 > 3 and not open_below:
         logged = contact.relief_m if contact and contact.relief_m else 0.0
         relief = max(style.least_relief, logged * 1000 / scale)
         if y_base >= position.y_base:  # the axes stand close below a sheet's lowest bed

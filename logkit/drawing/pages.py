@@ -122,7 +122,15 @@ def make_view(
     outlines = {}
     if scene.phi is not None:
         outlines = {
-            item.index: bed_outline(item, span, position, scene.phi, scale, scene.style.texture)
+            item.index: bed_outline(
+                item,
+                span,
+                position,
+                scene.phi,
+                scale,
+                scene.style.texture,
+                open_below=item.index > 0 and beds[item.index - 1].bed.is_gap,
+            )
             for item, span in zip(shown, spans, strict=True)
             if not item.bed.is_gap
         }

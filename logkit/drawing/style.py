@@ -22,6 +22,7 @@ from logkit.drawing.data_file import (
     read_data,
 )
 from logkit.drawing.style_records import (
+    LEAST_PAGE_MM,
     PAPER_MM,
     ColourStyle,
     FontStyle,
@@ -217,9 +218,9 @@ def _check_ranges(style: Style, check: Reader) -> None:
         raise check.at(("page", "size")).fail(
             ("page", "size"), f"there is no page size {size!r}.", problem.remedy
         )
-    if not isinstance(size, str) and (len(size) != 2 or min(size) < 40):
+    if not isinstance(size, str) and (len(size) != 2 or min(size) < LEAST_PAGE_MM):
         path = ("page", "size")
-        raise check.at(path).fail(path, "page.size must be two lengths of at least 40 mm.")
+        raise check.at(path).fail(path, f"page.size must be two lengths of at least {LEAST_PAGE_MM:g} mm.")
     pairs = {
         ("ribbon", "velocity"): style.ribbon.velocity,
         ("ribbon", "flow_depth"): style.ribbon.flow_depth,

@@ -1,14 +1,20 @@
 """The records a style is made of: one class a section of a style file, one field a key.
 
-No logic belongs here but what a page size is; reading, checking and dumping are in `style`.
+No logic belongs here but what a page is; reading, checking and dumping are in `style`.
 """
 
 from __future__ import annotations
 
+import re
 from collections.abc import Mapping
 from dataclasses import dataclass, field
+from typing import Any
 
 from logkit.drawing.data_file import HexColour
+from logkit.errors import ArgumentError
+
+LEAST_PAGE_MM = 40.0
+"""No page is narrower or lower than this."""
 
 PAPER_MM: dict[str, tuple[float, float]] = {
     "A0": (841.0, 1189.0),
@@ -222,3 +228,29 @@ class Style:
             return PAPER_MM["A4"][0], None
         width, height = PAPER_MM[size]
         return (height, width) if self.page.landscape else (width, height)
+
+
+def read_page(words: str) -> dict[str, Any]:
+    """Page keys of a style from a page in words: `A4`, `Letter landscape`, `roll`, `180x240` in mm.
+
+    Raises
+    ------
+    ArgumentError : none of these; the message lists what is allowed
+    """
+    allowed = (
+        f"{', '.join(PAPER_MM)} (with ` landscape` or ` portrait` if wanted), roll, or WIDTHxHEIGHT in mm"
+    )
+    lengths = re.fullmatch(r"\s*(\d+(?:\.\d+)?)\s*[xX×]\s*(\d+(?:\.\d+)?)\s*(?:mm)?\s*", words)
+    if lengths:
+        size = [float(length) for length in lengths.groups()]
+        if min(size) < LEAST_PAGE_MM:
+            raise ArgumentError("page", words, f"at least {LEAST_PAGE_MM:g} mm wide and high; or {allowed}")
+        return {"size": size}
+    name, *turn = words.lower().split() or [""]
+    known = {paper.lower(): paper for paper in (*PAPER_MM, "roll")}
+    if name not in known or len(turn) > 1 or (turn and turn[0] not in ("landscape", "portrait")):
+        raise ArgumentError("page", words, allowed)
+    page: dict[str, Any] = {"size": known[name]}
+    if turn:
+        page["landscape"] = turn[0] == "landscape"
+    return page

@@ -145,9 +145,11 @@ def sheet_svg(sheet: Sheet) -> str:
         debug=False,
         profile="full",
     )
-    drawing.attribs.update({"font-family": FONT, "role": "img"})
+    drawing.attribs["font-family"] = FONT
     drawing.elements.clear()  # the empty <defs> svgwrite starts with
     if sheet.title:
+        # a picture as a whole would hide the titles of its beds from screen readers
+        drawing.attribs["role"] = "graphics-document"
         drawing.set_desc(title=xml_text(sheet.title), desc=xml_text(sheet.desc) or None)
     drawing.add(drawing.rect((0, 0), (width, height), fill=sheet.background))
     drawing.add(drawing.g(id=BODY, fill="none"))

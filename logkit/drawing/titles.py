@@ -17,7 +17,7 @@ CAUTION = (
 CAUTION_PLAIN = "Drawn from a typed log; check the source before any use that matters."
 LINE_SPACING = 1.2
 LEAST_TITLE = 0.7
-"""A long title shrinks to this part of its size before it is cut."""
+"""A long title shrinks to this part of its size before it takes a second line."""
 
 SYMBOLIC = "Ripples and clasts are drawn at symbolic size."
 
@@ -35,19 +35,23 @@ def title_block(scene: Scene, width: float, scale_words: str, sheet_words: str =
     ]
     shapes: list[Shape] = []
     widest = 0.0
-    y = page.rule - 10.4
+    pitch = LINE_SPACING * max(fonts.subtitle, fonts.label) * MM_PER_POINT
+    y = page.rule - 4.4 - 2 * pitch
     for text, size, colour in lines:
         shown = shorten(text, 0.42 * (right - left), size)
         if shown:
             widest = max(widest, width_mm(shown, size))
             shapes.append(Text((right, y), shown, size, colour, anchor="end"))
-        y += 3.0
+        y += pitch
     room = right - left - widest - 4
     title, size = clean(header.title or scene.log.name), fonts.title
     while size > LEAST_TITLE * fonts.title and width_mm(title, size, True) > room:
         size -= 0.5
-    title = shorten(title, room, size, True)
-    shapes.append(Text((left, page.rule - 7.0), title, size, colours.ink, bold=True))
+    first, *rest = wrap(title, room, size, True) or ("",)
+    title_lines = [first, shorten(" ".join(rest), room, size, True)] if rest else [first]
+    for number, line in enumerate(reversed(title_lines)):
+        above = number * LINE_SPACING * size * MM_PER_POINT
+        shapes.append(Text((left, page.rule - 7.0 - above), line, size, colours.ink, bold=True))
     below = subtitle(scene, room, fonts.subtitle)
     shapes.append(Text((left, page.rule - 2.2), below, fonts.subtitle, colours.ink))
     rule = polyline(((left, page.rule), (right, page.rule)))

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import re
-from pathlib import Path
+from pathlib import Path as FilePath
 from xml.etree import ElementTree
 
 import pytest
@@ -11,7 +11,7 @@ from checks import bed_ids, inked_texts, outside, overlaps, texts_of
 from random_logs import quantiles, random_log
 
 from logkit.drawing import Drawing, draw_column
-from logkit.drawing.shapes import Group, walk
+from logkit.drawing.shapes import Group, Path, walk
 from logkit.errors import ArgumentError
 from logkit.model import Bed, Clash, Contact, GrainState, Header, Log, Phase, PhaseEstimate, SizeInterval
 
@@ -226,6 +226,56 @@ def test_too_narrow_a_page_is_refused() -> None:
         draw_column(log, results, results, page=(60, 300))
 
 
+@pytest.mark.parametrize(
+    ("page", "size"),
+    [
+        ("A4", (210, 297)),
+        ("a4 landscape", (297, 210)),
+        ("Letter portrait", (215.9, 279.4)),
+        ("180x240", (180, 240)),
+        ("180 × 240 mm", (180, 240)),
+        ((180, 240.5), (180, 240.5)),
+    ],
+)
+def test_pages_are_named_or_measured(page: str | tuple[float, float], size: tuple[float, float]) -> None:
+    """A page is a paper, turned if wanted, or a width and a height in mm."""
+    sheet = draw_column(Log(Header(), (sand("1", 0, 1),)), page=page).sheets[0]
+    assert (sheet.width, sheet.height) == size
+
+
+@pytest.mark.parametrize("page", ["A9", "A4 sideways", "", "letterx", "A4 landscape now"])
+def test_a_page_that_is_none_names_those_there_are(page: str) -> None:
+    """A page nobody knows is answered with the papers and the form of a measured page."""
+    with pytest.raises(ArgumentError) as caught:
+        draw_column(Log(Header(), (sand("1", 0, 1),)), page=page)
+    assert f"page is {page!r}, but it must be A0, A1," in str(caught.value)
+    assert "roll, or WIDTHxHEIGHT in mm" in str(caught.value)
+    with pytest.raises(ArgumentError, match="at least 40 mm"):
+        draw_column(Log(Header(), (sand("1", 0, 1),)), page="10x200")
+
+
+def test_an_erosive_base_draws_nothing_into_a_gap() -> None:
+    """Scours over a gap would read as data there: the base stays straight; over a bed they are drawn."""
+    cut_in = {"contact": Contact("erosive", relief_m=0.2)}
+    gap = Bed("g", 1, 2, kind="gap", gap_reason="no_exposure")
+    for below, reaches in ((gap, False), (sand("g", 1, 2), True)):
+        log = Log(Header(), (sand("1", 0, 1), below, sand("2", 2, 3, **cut_in)))
+        sheet = draw_column(log, page="roll").sheets[0]
+        (bed,) = (s for s in walk(sheet.shapes) if isinstance(s, Group) and s.title.startswith("2:"))
+        lines = [s for s in walk(bed.children) if isinstance(s, Path)]
+        assert any(step == "C" for line in lines for step, _ in line.segments) == reaches
+
+
+def test_a_very_long_title_takes_a_second_line() -> None:
+    """A title of ordinary length stands whole; one that is longer goes on below before it is cut."""
+    title = "Left bank above the old weir, from the lower bridge up to the bend with the fallen alders"
+    drawing = draw_column(Log(Header(title=title), (sand("1", 0, 1),)))
+    bold = [t.text for t, _ in texts_of(drawing.sheets[0]) if t.bold and t.size > 9]
+    assert len(bold) == 2
+    assert set(" ".join(reversed(bold)).split()) == set(title.split())
+    check_sheets(drawing, Log(Header(title=title), (sand("1", 0, 1),)))
+
+
 def test_beds_carry_what_a_page_filters_by() -> None:
     """Every bed is a group with a stable id, a title and data attributes."""
     log, results = random_log(12, beds=15, thickness_m=(0.2, 0.6))
@@ -237,7 +287,7 @@ def test_beds_carry_what_a_page_filters_by() -> None:
     assert f'id="{found[1]}"' in again, "the id depends on more than the bed"
 
 
-def test_saving_by_ending(tmp_path: Path) -> None:
+def test_saving_by_ending(tmp_path: FilePath) -> None:
     """One file for a PDF, a file a sheet for SVG and PNG; another ending is refused."""
     log = Log(Header(title="Save"), tuple(sand(str(n), n, n + 1) for n in range(20)))
     drawing = draw_column(log)
