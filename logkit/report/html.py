@@ -117,7 +117,7 @@ def _table(table: Table, names: dict[str, str]) -> Markup:
         lines.append(f"<tr{mark}>{cells}</tr>")
     button = (
         f'<div class="bar"><button type="button" class="copy" data-table="t-{table.id}" '
-        f'aria-label="Copy {names[table.id]} as CSV">Copy as CSV</button><span role="status"></span></div>'
+        f'aria-label="Copy as CSV: {names[table.id]}">Copy as CSV</button><span role="status"></span></div>'
     )
     return Markup(
         f'<div class="table">{button}<table id="t-{table.id}"><caption><b>{names[table.id]}.</b> '

@@ -18,6 +18,9 @@ SIZES_PT = (6.6, 6.0, 5.4)
 CLEARLY_SHORTER = 0.85
 """A smaller type is taken only if the table has fewer than this part of the lines with it."""
 
+TOO_TALL = 4.0
+"""Lines in a row, on the average, from which a page turned sideways is tried."""
+
 PADDING_MM = 2.7
 """Room between the texts of two columns."""
 
@@ -56,25 +59,34 @@ def fit(table: Table, upright_mm: float, sideways_mm: float) -> Fit:
 
     Returns
     -------
-    On an upright page if every word fits there, else on a page turned sideways; smaller type where it makes
-    the table clearly shorter.
+    On an upright page if every word fits there and rows do not get too tall, else on a page turned sideways;
+    smaller type where it makes the table clearly shorter.
     """
     for longest in LONGEST_PIECE:
         measured = _measure_table(table, longest)
-        for wide in (False, True):
-            total = sideways_mm if wide else upright_mm
-            best: tuple[int, Fit] | None = None
-            for size in SIZES_PT:
-                widths = _widths(measured, total, size)
-                if widths is None:
-                    continue
-                lines = _lines(measured, widths, size)
-                if best is None or lines < CLEARLY_SHORTER * best[0]:
-                    best = lines, Fit(widths, size, wide, longest)
-            if best is not None:
-                return best[1]
+        upright = _best(measured, upright_mm, longest, wide=False)
+        if upright is not None and upright[0] <= TOO_TALL * len(measured.cells):
+            return upright[1]
+        sideways = _best(measured, sideways_mm, longest, wide=True)
+        if upright is not None and (sideways is None or sideways[0] > CLEARLY_SHORTER * upright[0]):
+            return upright[1]
+        if sideways is not None:
+            return sideways[1]
     count = len(table.columns)
     return Fit((sideways_mm / count,) * count, SIZES_PT[-1], True, LONGEST_PIECE[-1])
+
+
+def _best(measured: _Measured, total: float, longest: int, wide: bool) -> tuple[int, Fit] | None:
+    """Lines and widths in the type that suits a page of this width; None when no type fits."""
+    best: tuple[int, Fit] | None = None
+    for size in SIZES_PT:
+        widths = _widths(measured, total, size)
+        if widths is None:
+            continue
+        lines = _lines(measured, widths, size)
+        if best is None or lines < CLEARLY_SHORTER * best[0]:
+            best = lines, Fit(widths, size, wide, longest)
+    return best
 
 
 def breakable(text: str, longest: int) -> str:
