@@ -2,25 +2,52 @@
 
 from __future__ import annotations
 
+import contextlib
+import io
 import json
 import os
 import subprocess
 import sys
 from pathlib import Path
+from typing import NamedTuple
 
 import pytest
+
+from logkit.cli import VERBS, main
 
 ROOT = Path(__file__).resolve().parents[2]
 RIVER = ROOT / "examples/river/tarrow_bend.csv"
 SLIPS = ROOT / "examples/river/tarrow_bend_slips.csv"
 
 
-def logkit(
-    *arguments: str | Path, stdin: str | None = None, cwd: Path | None = None
-) -> subprocess.CompletedProcess:
-    """Run the installed command."""
-    command = [str(Path(sys.executable).with_name("logkit")), *map(str, arguments)]
-    return subprocess.run(command, input=stdin, capture_output=True, text=True, cwd=cwd, timeout=120)
+class Ran(NamedTuple):
+    """What a command left: its exit status and what it printed."""
+
+    returncode: int
+    stdout: str
+    stderr: str
+
+
+def logkit(*arguments: str | Path, stdin: str | None = None) -> Ran:
+    """Run the command line in this process, as the installed command does."""
+    out, err, status = io.StringIO(), io.StringIO(), 0
+    before = sys.stdin
+    sys.stdin = io.TextIOWrapper(io.BytesIO((stdin or "").encode("utf-8")))
+    try:
+        with contextlib.redirect_stdout(out), contextlib.redirect_stderr(err):
+            main([str(a) for a in arguments])
+    except SystemExit as end:
+        status = int(end.code or 0)
+    finally:
+        sys.stdin = before
+    return Ran(status, out.getvalue(), err.getvalue())
+
+
+def installed(command: str) -> subprocess.CompletedProcess[str]:
+    """Run a shell line in which `logkit` is the installed command."""
+    path = f"{Path(sys.executable).parent}:{os.environ['PATH']}"
+    return subprocess.run(["bash", "-c", command], capture_output=True, text=True, timeout=120,
+                          env={**os.environ, "PATH": path})  # fmt: skip
 
 
 @pytest.fixture(scope="module")
@@ -41,20 +68,7 @@ def small(tmp_path_factory: pytest.TempPathFactory) -> Path:
 
 @pytest.mark.parametrize(
     "verb",
-    [
-        "new",
-        "check",
-        "tidy",
-        "draw",
-        "flow",
-        "why",
-        "trends",
-        "compare",
-        "report",
-        "export",
-        "styles",
-        "sources",
-    ],
+    VERBS,
 )
 def test_every_verb_has_help_with_an_example(verb: str) -> None:
     """`--help` of a verb ends well and shows a command to copy."""
@@ -186,8 +200,8 @@ def test_a_wrong_ending_is_wrong_usage(small: Path, tmp_path: Path) -> None:
 
 def test_a_reader_that_goes_away_is_no_traceback(small: Path) -> None:
     """A closed pipe ends the command quietly."""
-    command = f'"{Path(sys.executable).with_name("logkit")}" sources | head -n 1'
-    run = subprocess.run(["bash", "-c", command], capture_output=True, text=True)
+    run = installed("logkit sources | head -n 1")
+    assert run.stdout.startswith("id\t")
     assert "Traceback" not in run.stderr
     assert "Exception ignored" not in run.stderr
 
@@ -195,8 +209,7 @@ def test_a_reader_that_goes_away_is_no_traceback(small: Path) -> None:
 @pytest.mark.skipif(not os.path.exists("/dev/full"), reason="needs /dev/full")
 def test_a_full_disk_is_a_sentence(small: Path) -> None:
     """Output that cannot be stored gives an error in words."""
-    command = f'"{Path(sys.executable).with_name("logkit")}" flow "{small}" -q > /dev/full'
-    run = subprocess.run(["bash", "-c", command], capture_output=True, text=True)
+    run = installed(f"logkit check '{RIVER}' -q > /dev/full")
     assert run.returncode == 1
     assert "Traceback" not in run.stderr
     assert "logkit:" in run.stderr
