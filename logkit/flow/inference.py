@@ -18,7 +18,7 @@ from logkit.flow.ledger import LedgerRow, lower_limit
 from logkit.flow.phases import split_phases
 from logkit.flow.reading import Options, Reader, Reading, checked_options
 from logkit.flow.solver import Answer, Case, Solver
-from logkit.flow.states import Fluid
+from logkit.flow.states import OPEN_ABOVE, Fluid
 from logkit.flow.tendency import find_tendencies, with_tendencies
 from logkit.hydraulics.suspension import transport_mode
 from logkit.model import Log, Phase, PhaseEstimate, Quantiles
@@ -31,9 +31,6 @@ NEAR_CRITICAL = 0.8
 
 SHALLOW_M = 1.0
 """Depth below which the measured rivers were slower than the calibrated ranges more often than they should."""
-
-OPEN_ABOVE = ("upper_plane", "antidune")
-"""Bed states that no faster flow under a deep water ends."""
 
 
 @cache

@@ -9,7 +9,7 @@ from __future__ import annotations
 import math
 from dataclasses import dataclass, fields, replace
 from functools import lru_cache
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
 import numpy as np
 
@@ -18,6 +18,7 @@ from logkit.flow.grid import Array, quantiles
 from logkit.flow.settings import flow_settings
 from logkit.flow.slices import Signature
 from logkit.flow.solver import LEDGER_LEVELS, Case, Solver
+from logkit.flow.states import OPEN_ABOVE
 
 if TYPE_CHECKING:
     import pandas as pd
@@ -89,9 +90,10 @@ def _case_rows(solver: Solver, case: Case) -> tuple[LedgerRow, ...]:
         alone = Case(signature.only(id))
         without = Case(signature.without(id), case.depths)
         criterion = CRITERIA[id]
+        side = _side(id, reading, signature.prior)
         rows.append(
-            LedgerRow("", "", 0, id, criterion.label, criterion.words(reading), criterion.side,
-                      *_alone(solver, alone, criterion.side), **_effect(solver, everything, without),
+            LedgerRow("", "", 0, id, criterion.label, criterion.words(reading), side,
+                      *_alone(solver, alone, side), **_effect(solver, everything, without),
                       source=criterion.source, validity=criterion.validity, status=criterion.status)
         )  # fmt: skip
     bare = replace(signature, factors=())
@@ -109,6 +111,14 @@ def _case_rows(solver: Solver, case: Case) -> tuple[LedgerRow, ...]:
         rows.append(_prior_row(solver, case, everything))
     order = {id: place for place, id in enumerate(CRITERIA)}
     return tuple(sorted(rows, key=lambda row: order.get(row.criterion, len(order))))
+
+
+def _side(id: str, reading: Any, prior: str) -> str:
+    """Side of the bound: a bed state that no faster flow ends is a lower bound, but for the prior of measured rivers."""
+    criterion = CRITERIA[id]
+    if criterion.kind == "state" and prior != "river" and set(reading) & set(OPEN_ABOVE):
+        return "above"
+    return criterion.side
 
 
 def _prior_row(solver: Solver, case: Case, everything: Array) -> LedgerRow:

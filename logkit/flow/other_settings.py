@@ -57,10 +57,13 @@ def read_density_current(phase: Phase, context: Context, read_tb: bool) -> Answe
     read_tb : read Tb as dilute upper plane bed, by the user's choice
     """
     division = bouma_division(phase)
-    size = phase.base_size or phase.size
+    ends = [end for end in (phase.base_size, phase.top_size) if end is not None]
+    size = max(ends, key=lambda end: end.middle_mm, default=None)
     if division in ("Td", "Te"):
         return no_estimate(
-            phase, "fall-out of mud", "Td and Te need no traction: no velocity is read from them."
+            phase,
+            "fall-out" if division == "Td" else "fall-out of mud",
+            "Td and Te need no traction: no velocity is read from them.",
         )
     if size is None:
         return no_estimate(phase, "no grain size")

@@ -21,6 +21,9 @@ from logkit.hydraulics.resistance import grain_chezy
 from logkit.hydraulics.threshold import measured_scatter, soulsby_whitehouse
 from logkit.registry import GRAVITY_M_S2
 
+OPEN_ABOVE = ("upper_plane", "antidune")
+"""Bed states that no faster flow under a deep water ends."""
+
 D90_OVER_D50 = 1.5
 """Share of the coarse tail where only a class is known (judgement)."""
 

@@ -62,7 +62,8 @@ class BedPattern:
     ----------
     bed_index, bed : the bed
     pattern : "waxing", "waning", "steady", "waxing-then-waning", "waning-then-waxing" or "not determinable"
-    probability : product of the tendencies' probabilities, None when not determinable
+    probability : of the weakest step of each run of like steps, multiplied where the flow turned; None when
+        not determinable
     """
 
     bed_index: int
@@ -130,10 +131,14 @@ def bed_patterns(
     for index, steps in inside.items():
         known = [s for s in steps if s.tendency != "not determinable"]
         words: list[str] = []
+        chances: list[float] = []  # like steps rest on the same evidence: they stand or fall together
         for step in known:
             if step.tendency != "steady" and (not words or words[-1] != step.tendency):
                 words.append(step.tendency)
-        chance = math.prod(s.probability or 1.0 for s in known)
+                chances.append(1.0)
+            chances = chances or [1.0]
+            chances[-1] = min(chances[-1], step.probability or 1.0)
+        chance = math.prod(chances)
         if not known or len(words) > 2:
             patterns.append(BedPattern(index, steps[0].to_bed, "not determinable", None))
         else:

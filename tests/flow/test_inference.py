@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import math
 
+import numpy as np
 import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
@@ -472,3 +473,23 @@ def test_shallow_rivers_carry_their_known_weakness() -> None:
     for depth, told in ((0.5, True), (3.0, False)):
         found = one("mL", "trough_cross_bedding", ask_flow_depth_m=depth)
         assert any("Less than 1 m deep" in note for note in found.notes) == told
+
+
+def test_an_inversely_graded_ta_is_read_from_its_coarsest_sand() -> None:
+    """The strongest current is told by the coarsest grains it held, wherever in the bed they lie."""
+    both = [one(g, "", terms=(Structure("massive", code="Ta"), Structure("plane_lamination", code="Tb")),
+                structures_upward=True, log_setting="turbidity") for g in ("fL mU fL", "mU fL")]  # fmt: skip
+    inverse, normal = (e.velocity for e in both)
+    assert inverse is not None
+    assert inverse == normal
+
+
+def test_the_ledger_of_an_open_bed_state_has_no_upper_velocity() -> None:
+    """Outside rivers the row of a plane bed ends nowhere; in a river the measured flows end it."""
+    rows = {
+        setting: infer_flow(log(bed("fL", "plane_lamination"), setting=setting)).ledger("1").iloc[0]
+        for setting in ("tidal", "river")
+    }
+    assert rows["tidal"].bound == "above"
+    assert np.isnan(rows["tidal"].alone_p90_m_s)
+    assert rows["river"].alone_p90_m_s < 4

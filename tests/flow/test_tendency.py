@@ -159,3 +159,14 @@ def test_each_turbidite_is_a_current_of_its_own() -> None:
     assert transition is not None
     assert (transition.tendency, transition.probability) == ("not determinable", None)
     assert transition.agreement == "each bed is a current of its own"
+
+
+def test_a_complete_sequence_is_no_less_sure_than_its_weakest_step() -> None:
+    """Four like steps of Ta-e rest on one order of divisions: their chances are not multiplied."""
+    letters = {"Ta": "massive", "Tb": "plane_lamination", "Tc": "ripple_cross_lamination",
+               "Td": "fine_lamination", "Te": "massive"}  # fmt: skip
+    terms = tuple(Structure(term, code=code) for code, term in letters.items())
+    history = infer_flow(log(bed("mU vfU", terms=terms, structures_upward=True), setting="turbidity"))
+    (pattern,) = history.bed_patterns
+    assert pattern.pattern == "waning"
+    assert pattern.probability == min(t.probability for t in history.tendency if t and t.probability)
