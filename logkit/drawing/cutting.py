@@ -13,6 +13,9 @@ from numpy.typing import NDArray
 
 from logkit.drawing.ground import Array
 
+Places = NDArray[np.complex128]
+"""Points of the page as x + y·i."""
+
 TOLERANCE_MM = 0.02
 """Lines are simplified by no more than this."""
 
@@ -53,65 +56,82 @@ def cut(points: Array, owner: NDArray[np.int64], polygon: Array) -> Runs:
     -------
     the parts, in order along their lines; rests too short to see are left out
     """
+    # places as complex numbers: one array to index where there would be two
+    place = np.ascontiguousarray(points).view(np.complex128)[:, 0]
+    corners = np.ascontiguousarray(polygon).view(np.complex128)[:, 0]
     piece = np.flatnonzero(owner[1:] == owner[:-1])
-    start, step = points[piece], points[piece + 1] - points[piece]
-    at_piece, along = _crossings(start, step, polygon)
+    start = place[piece]
+    step = place[piece + 1] - start
+    owner = owner[piece]
+    at_piece, along = _crossings(start, step, corners)
+    if not at_piece.size:
+        kept = np.flatnonzero(_inside(start + 0.5 * step, corners))
+        return _joined(owner, start, start + step, kept)
     # every piece is split at its crossings; a part is inside when its middle is
-    count = len(piece)
-    which, share = np.arange(count), np.zeros(count)
-    if at_piece.size:
-        which, share = np.concatenate([which, at_piece]), np.concatenate([share, along])
-        order = np.lexsort((share, which))
-        which, share = which[order], share[order]
+    which = np.concatenate((np.arange(piece.size), at_piece))
+    share = np.concatenate((np.zeros(piece.size), along))
+    order = np.lexsort((share, which))
+    which, share = which[order], share[order]
     stop = np.ones(which.size)
-    stop[:-1][which[1:] == which[:-1]] = share[1:][which[1:] == which[:-1]]
+    stop[:-1] = np.where(which[1:] == which[:-1], share[1:], 1.0)
     origin, vector = start[which], step[which]
-    first, last = origin + share[:, None] * vector, origin + stop[:, None] * vector
-    keep = np.flatnonzero((stop - share > 1e-9) & inside(0.5 * (first + last), polygon))
-    return _joined(owner[piece[which]], first, last, keep)
+    first, last = origin + share * vector, origin + stop * vector
+    kept = np.flatnonzero((stop - share > 1e-9) & _inside(0.5 * (first + last), corners))
+    return _joined(owner[which], first, last, kept)
 
 
 def inside(points: Array, polygon: Array) -> NDArray[np.bool_]:
     """True for points inside a polygon (even-odd)."""
-    x, y = points[:, 0, None], points[:, 1, None]
-    ax, ay = polygon[:, 0], polygon[:, 1]
-    bx, by = np.concatenate((ax[1:], ax[:1])), np.concatenate((ay[1:], ay[:1]))
+    places, corners = (
+        np.ascontiguousarray(a, dtype=float).view(np.complex128)[:, 0] for a in (points, polygon)
+    )
+    return _inside(places, corners)
+
+
+def _inside(places: Places, corners: Places) -> NDArray[np.bool_]:
+    x, y = places.real[:, None], places.imag[:, None]
+    after = np.concatenate((corners[1:], corners[:1]))
+    ax, ay, by = corners.real, corners.imag, after.imag
     with np.errstate(divide="ignore", invalid="ignore", over="ignore", under="ignore"):
-        at = ax + (y - ay) * ((bx - ax) / (by - ay))
-    crosses = ((ay > y) != (by > y)) & (x < at)
-    return np.asarray(crosses.sum(axis=1) % 2 == 1)
+        slope = (after.real - ax) / (by - ay)
+        crosses = x < ax + (y - ay) * slope
+    crosses &= (ay > y) != (by > y)
+    return np.logical_xor.reduce(crosses, axis=1)
 
 
-def _crossings(start: Array, step: Array, polygon: Array) -> tuple[NDArray[np.int64], Array]:
+def _crossings(start: Places, step: Places, corners: Places) -> tuple[NDArray[np.int64], Array]:
     """Pieces that cross an edge of the polygon, and the share of the piece at which they do."""
-    edge = np.concatenate((polygon[1:], polygon[:1])) - polygon
-    cross = step[:, None, 0] * edge[None, :, 1] - step[:, None, 1] * edge[None, :, 0]
-    gap = polygon[None, :, :] - start[:, None, :]
+    edge = np.concatenate((corners[1:], corners[:1])) - corners
+    ex, ey = edge.real, edge.imag
+    sx, sy = step.real[:, None], step.imag[:, None]
+    gap = corners - start[:, None]
+    gx, gy = gap.real, gap.imag
     with np.errstate(divide="ignore", invalid="ignore", over="ignore", under="ignore"):
-        t = (gap[..., 0] * edge[None, :, 1] - gap[..., 1] * edge[None, :, 0]) / cross
-        u = (gap[..., 0] * step[:, None, 1] - gap[..., 1] * step[:, None, 0]) / cross
-    hit = (cross != 0) & (t > 0) & (t < 1) & (u >= 0) & (u <= 1)
-    pieces, edges = np.nonzero(hit)
+        scale = 1.0 / (sx * ey - sy * ex)
+        t = (gx * ey - gy * ex) * scale
+        u = (gx * sy - gy * sx) * scale
+    pieces, edges = np.nonzero((t > 0) & (t < 1) & (u >= 0) & (u <= 1))
     return pieces, t[pieces, edges]
 
 
-def _joined(owner: NDArray[np.int64], first: Array, last: Array, kept: NDArray[np.int64]) -> Runs:
+def _joined(owner: NDArray[np.int64], first: Places, last: Places, kept: NDArray[np.int64]) -> Runs:
     """Parts that are kept and follow each other, as polylines of their line."""
     if not kept.size:
         return Runs(np.empty((0, 2)), [], [])
-    fresh = np.ones(kept.size, dtype=bool)
-    fresh[1:] = (kept[1:] != kept[:-1] + 1) | (owner[kept[1:]] != owner[kept[:-1]])
     first, last, owner = first[kept], last[kept], owner[kept]
+    fresh = np.ones(kept.size, dtype=bool)
+    fresh[1:] = (kept[1:] != kept[:-1] + 1) | (owner[1:] != owner[:-1])
     begins = np.flatnonzero(fresh)
-    long = np.add.reduceat(np.hypot(*(last - first).T), begins) >= LEAST_REST_MM
-    seen = np.repeat(long, np.diff(np.append(begins, kept.size)))
-    first, last, owner, fresh = first[seen], last[seen], owner[seen], fresh[seen]
-    place = np.arange(len(last)) + np.cumsum(fresh)
-    points = np.empty((len(last) + int(fresh.sum()), 2))
-    points[place] = last
-    begins = place[fresh] - 1
-    points[begins] = first[fresh]
-    return Runs(points, begins.tolist(), owner[fresh].tolist())
+    long = np.add.reduceat(np.abs(last - first), begins) >= LEAST_REST_MM
+    if not long.all():
+        seen = np.repeat(long, np.diff(begins, append=kept.size))
+        first, last, owner, fresh = first[seen], last[seen], owner[seen], fresh[seen]
+        begins = np.flatnonzero(fresh)
+    place = np.empty(last.size + begins.size, dtype=np.complex128)
+    place[np.arange(last.size) + np.cumsum(fresh)] = last
+    starts = begins + np.arange(begins.size)
+    place[starts] = first[begins]
+    return Runs(place.view(np.float64).reshape(-1, 2), starts.tolist(), owner[begins].tolist())
 
 
 def simplified(line: Array) -> Array:

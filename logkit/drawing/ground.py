@@ -56,9 +56,17 @@ class Ground:
         xs, ys = [x for x, _ in points], [y for _, y in points]
         self.box = (min(xs), min(ys), max(xs), max(ys))
         turned = [*points[1:], points[0]]
-        self.area = 0.5 * abs(sum(a[0] * b[1] - a[1] * b[0] for a, b in zip(points, turned, strict=True)))
+        twice = sum(a[0] * b[1] - a[1] * b[0] for a, b in zip(points, turned, strict=True))
+        self.area = 0.5 * abs(twice)
         self.phi_range = (min(phi for _, phi in ordered), max(phi for _, phi in ordered))
-        self._edges = np.array([(*a, *b) for a, b in zip(points, turned, strict=True) if a != b])
+        ax, ay = self.outline[:, 0], self.outline[:, 1]
+        bx, by = np.concatenate((ax[1:], ax[:1])), np.concatenate((ay[1:], ay[:1]))
+        long = (ax != bx) | (ay != by)
+        if not long.all():
+            ax, ay, bx, by = ax[long], ay[long], bx[long], by[long]
+        ex, ey = bx - ax, by - ay
+        with np.errstate(divide="ignore", invalid="ignore"):
+            self._edges = (ax, ay, ex, ey, by, ex / ey, 1.0 / (ex * ex + ey * ey))
         self._windows = windows
         self._raster: Mask | None = None
         self._cell = _CELL_MM
@@ -124,18 +132,17 @@ class Ground:
 
     def _inside(self, x: Array, y: Array, margin: Array | float) -> Mask:
         """Even-odd test and distance from all edges at once; the edges are few."""
-        ax, ay, bx, by = self._edges.T
-        ex, ey = bx - ax, by - ay
-        dx, dy = x[:, None] - ax, y[:, None] - ay
-        crosses = (dy < 0) != (y[:, None] < by)
-        with np.errstate(divide="ignore", invalid="ignore"):
-            crosses &= dx < dy * (ex / ey)
-        along = (dx * ex + dy * ey) / (ex * ex + ey * ey)
-        np.minimum(np.maximum(along, 0.0, out=along), 1.0, out=along)
+        ax, ay, ex, ey, by, slope, shrink = self._edges
+        y = y[:, None]
+        dx, dy = x[:, None] - ax, y - ay
+        with np.errstate(invalid="ignore"):
+            crosses = dx < dy * slope
+        crosses &= (dy < 0) != (y < by)
+        along = np.minimum(np.maximum((dx * ex + dy * ey) * shrink, 0.0), 1.0)
         dx -= along * ex
         dy -= along * ey
-        near = np.min(dx * dx + dy * dy, axis=1)
-        return np.asarray((np.count_nonzero(crosses, axis=1) & 1).astype(bool) & (near >= np.square(margin)))
+        near = (dx * dx + dy * dy).min(axis=1)
+        return np.asarray(np.logical_xor.reduce(crosses, axis=1) & (near >= np.square(margin)))
 
     def _near(self, x: Array, y: Array, margin: Array) -> Mask:
         raster = self._grid()

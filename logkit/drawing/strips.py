@@ -124,7 +124,7 @@ class Window:
             index = np.flatnonzero(chosen[strip.owner])
             if not index.size:
                 continue
-            points, owner = strip.points[index], strip.owner[index]
+            points, owner = strip.points.take(index, axis=0), strip.owner[index]
             points -= (self.shift, 0.0)
             points *= (self.factor, (base - top) / strip.height)
             points += (x0, top)

@@ -85,10 +85,10 @@ def bed_texture(
 def dot_diameter(phi: Array, texture: TextureStyle) -> Array:
     """Diameter of the dots at a grain size, mm, in steps of 0.05 from 0.15 up."""
     wide = texture.diameter * 2 ** (texture.diameter_rate * (4 - np.minimum(np.maximum(phi, -1.0), 5.0)))
-    return np.maximum(np.round(wide / 0.05) * 0.05, 0.15)
+    return np.maximum(np.rint(20 * wide) / 20, 0.15)
 
 
-def dot_spacing(phi: Array, texture: TextureStyle) -> Array:
+def dot_spacing(phi: Array | float, texture: TextureStyle) -> Array:
     """Least distance between dots at a grain size, mm."""
     return np.asarray(
         texture.spacing * 2 ** (texture.spacing_rate * (4 - np.minimum(np.maximum(phi, -1.0), 5.0)))
@@ -112,21 +112,21 @@ def _loose_grains(
 
 def _dots(ground: Ground, style: Style, ink: str, lithic: bool, density: float) -> tuple[Shape, ...]:
     texture = style.texture
-    _, finest = ground.phi_range
+    coarsest, finest = ground.phi_range
     loosened = 1 / math.sqrt(density)
-    closest = float(dot_spacing(np.array(min(finest, MUD_ONLY)), texture)) * loosened
+    closest = float(dot_spacing(min(finest, MUD_ONLY), texture)) * loosened
     expected = 0.7 * ground.area / closest**2
     loosened *= max(1.0, math.sqrt(expected / texture.most_dots))
     x, y, reach = ground.points(max(closest * loosened, FINEST_MM))
-    phi = ground.phi_at(y)
+    phi = ground.phi_at(y) if finest > coarsest else np.full(y.size, finest)
     kept = (reach >= dot_spacing(phi, texture) * loosened) & (phi > SAND_COARSEST) & (phi < MUD_ONLY)
     if finest > SAND_FINEST:
         mixing = np.where(phi <= SAND_FINEST, 1.0, 0.55 * (MUD_ONLY - phi) / 2)
         kept &= ground.random.random(x.size) < mixing
     x, y, diameter = x[kept], y[kept], dot_diameter(phi[kept], texture)
-    needed = (
-        np.maximum(texture.clear + diameter / 2, 1.1 * diameter) if lithic else texture.clear + diameter / 2
-    )
+    needed = texture.clear + diameter / 2
+    if lithic:
+        needed = np.maximum(needed, 1.1 * diameter)
     held = ground.holds(x, y, needed)
     x, y, diameter = x[held], y[held], diameter[held]
     shapes: list[Shape] = []
@@ -134,10 +134,11 @@ def _dots(ground: Ground, style: Style, ink: str, lithic: bool, density: float) 
         angular = (diameter > 0.26) & (ground.random.random(x.size) < texture.triangles)
         shapes += _triangles(ground, x[angular], y[angular], diameter[angular], ink)
         x, y, diameter = x[~angular], y[~angular], diameter[~angular]
-    by_size: dict[float, list[Point]] = {}
-    for size, *point in zip(diameter.tolist(), x.tolist(), y.tolist(), strict=True):
-        by_size.setdefault(round(size, 2), []).append((point[0], point[1]))
-    return (*shapes, *(Dots(tuple(points), size, ink) for size, points in sorted(by_size.items())))
+    for size in sorted(set(diameter.tolist())):
+        own = diameter == size
+        points = tuple(zip(x[own].tolist(), y[own].tolist(), strict=True))
+        shapes.append(Dots(points, round(size, 2), ink))
+    return tuple(shapes)
 
 
 def _triangles(ground: Ground, x: Array, y: Array, diameter: Array, ink: str) -> list[Shape]:
