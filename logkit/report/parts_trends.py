@@ -7,8 +7,8 @@ from collections.abc import Iterator
 
 from logkit.report.document import Block, Column, Figure, Heading, Paragraph, Table
 from logkit.report.wells import Well
-from logkit.report.wording import Units
-from logkit.words import counted, joined
+from logkit.report.wording import Units, chance
+from logkit.words import joined
 
 
 def grading(well: Well, units: Units) -> Iterator[Block]:
@@ -50,8 +50,8 @@ def grading(well: Well, units: Units) -> Iterator[Block]:
                     p.trend,
                     p.quantity,
                     f"{p.tau:+.2f}",
-                    f"{p.p:.3f}",
-                    f"{p.p_adjusted:.3f}",
+                    chance(p.p),
+                    chance(p.p_adjusted),
                     "significant" if p.significant else "not distinguished from random",
                 )
                 for p in packages
@@ -119,17 +119,12 @@ def currents(well: Well) -> Iterator[Block]:
                 "undefined" if s.mean_deg is None else f"{s.mean_deg:03.0f}",
                 f"{s.resultant:.2f}",
                 "" if s.spread_deg is None else f"{s.spread_deg:.0f}",
-                "" if s.rayleigh_p is None else f"{s.rayleigh_p:.3f}",
+                chance(s.rayleigh_p),
                 "; ".join(s.notes),
             )
             for s in summaries
         ),
     )
-
-
-def current_count(wells: list[Well]) -> str:
-    """How many readings there are, in words."""
-    return counted(sum(s.n for well in wells for s in well.trends.currents), "reading")
 
 
 def _cell(value: object) -> str:

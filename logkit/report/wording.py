@@ -65,6 +65,13 @@ class Units:
         return "" if quantiles is None else digits(self.number(quantiles.p50))
 
 
+def chance(p: float | None) -> str:
+    """A probability of a test; one that rounds to nothing is said to be below 0.001."""
+    if p is None:
+        return ""
+    return "below 0.001" if p < 0.001 else f"{p:.3f}"
+
+
 def velocity_cell(estimate: PhaseEstimate, units: Units) -> str:
     """Velocity as shown in a table: the range, a bound, or nothing."""
     if estimate.bound in ("above", "below") and estimate.limit_velocity_m_s is not None:

@@ -123,13 +123,17 @@ def test_ledger_shows_the_numbers_of_why(browser: Any, pages: dict[str, Path]) -
 
 def test_column_history_and_table_light_up_together(browser: Any, pages: dict[str, Path]) -> None:
     """A click on a bed in the column marks the bed in the history and in the tables, and the other way."""
-    with Visit(browser, pages["turbidites"]) as visit:
+    with Visit(browser, pages["turbidites"], reduced_motion="reduce") as visit:
         page = visit.page
         key = page.locator(".history g[data-bed]").first.get_attribute("data-bed")
         page.locator(f'tr[data-bed="{key}"]').first.click()
         for place in (".sheets g", ".history g", "tr"):
             assert page.locator(f'{place}[data-bed="{key}"].chosen').count() >= 1
-        assert page.locator(".chosen-frame").count() >= 1
+        frame = page.locator(".chosen-frame").first
+        assert frame.evaluate("f => getComputedStyle(f).vectorEffect") == "non-scaling-stroke"
+        box, bed = frame.bounding_box(), page.locator(f'.sheets g[data-bed="{key}"]').first.bounding_box()
+        assert box["height"] == pytest.approx(bed["height"], abs=4)
+        assert box["y"] == pytest.approx(bed["y"], abs=4)
         other = page.locator(".sheets g[data-bed]").nth(3)
         other.dispatch_event("click")
         assert page.locator(f'tr[data-bed="{other.get_attribute("data-bed")}"].chosen').count() >= 1

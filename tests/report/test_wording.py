@@ -4,7 +4,7 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from logkit.report.wording import Units
+from logkit.report.wording import Units, chance
 
 
 @pytest.mark.parametrize(
@@ -28,3 +28,8 @@ def test_feet_are_metres_over_0_3048(metres: float) -> None:
     """One foot is 0.3048 m, and SI numbers are left alone."""
     assert Units(True).number(metres) == pytest.approx(metres / 0.3048)
     assert Units().number(metres) == metres
+
+
+def test_a_probability_is_never_nothing() -> None:
+    """A p that rounds to zero is a bound, one that is not there stays blank."""
+    assert [chance(p) for p in (None, 0.0, 0.0009, 0.0214)] == ["", "below 0.001", "below 0.001", "0.021"]

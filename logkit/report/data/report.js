@@ -62,7 +62,7 @@
     svg.querySelectorAll(".chosen-frame").forEach((old) => old.remove());
     const box = target.getBBox();
     const rect = document.createElementNS("http://www.w3.org/2000/svg", "rect");
-    for (const [name, value] of Object.entries({ x: box.x - 0.4, y: box.y, width: box.width + 0.8, height: Math.max(box.height, 0.6) }))
+    for (const [name, value] of Object.entries({ x: box.x, y: box.y, width: box.width, height: box.height }))
       rect.setAttribute(name, value);
     rect.setAttribute("class", "chosen-frame");
     target.parentNode.append(rect);
