@@ -114,7 +114,7 @@ def _case_rows(solver: Solver, case: Case) -> tuple[LedgerRow, ...]:
 
 
 def _side(id: str, reading: Any, prior: str) -> str:
-    """Side of the bound: a bed state that no faster flow ends is a lower bound, but for the prior of measured rivers."""
+    """Side of the bound: a bed state that no faster flow ends is a lower bound, but under measured rivers."""
     criterion = CRITERIA[id]
     if criterion.kind == "state" and prior != "river" and set(reading) & set(OPEN_ABOVE):
         return "above"

@@ -83,7 +83,7 @@ def circular_sd(azimuths_deg: npt.ArrayLike) -> float:
     mardia_1972
     """
     length = resultant(azimuths_deg)
-    return math.sqrt(max(-2 * math.log(length), 0.0)) if length >= UNDEFINED_RESULTANT else math.inf
+    return math.sqrt(max(-2 * math.log(length), 0.0) + 0.0) if length >= UNDEFINED_RESULTANT else math.inf
 
 
 @formula(

@@ -229,7 +229,7 @@ def _summary(indicator: str, rank: str, group: Sequence[CorrectedReading]) -> Cu
         return CurrentSummary(indicator, sense, (), None, 0.0, None, None, rank, tuple(notes))
     factor = 2.0 if sense == "axis" else 1.0
     length = resultant(factor * azimuths)
-    mean = vector_mean(factor * azimuths) / factor
+    mean = round(vector_mean(factor * azimuths) / factor, 9) % (360 / factor)
     spread = math.degrees(circular_sd(factor * azimuths)) / factor
     if math.isnan(mean):
         notes.append("The readings cancel: no mean direction.")
@@ -246,7 +246,8 @@ def _notes(indicator: str, group: Sequence[CorrectedReading], used: Sequence[Cor
     notes = []
     wanted = FEW_LINES if indicator in MANY_WANTED else FEW
     if len(used) < wanted:
-        notes.append(f"{len(used)} readings: below {wanted} a mean is unreliable.")
+        count = "1 reading" if len(used) == 1 else f"{len(used)} readings"
+        notes.append(f"{count}: below {wanted} a mean is unreliable.")
     if len(used) < len(group):
         notes.append(f"{len(group) - len(used)} readings without a direction left out.")
     if all(r.declination_deg is None for r in group):

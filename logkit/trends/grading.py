@@ -216,15 +216,18 @@ def _from_readings(bed: Bed, readings: Sequence[SizeReading]) -> Grading:
     median = np.array([-math.log2(r.d50_mm) for r in readings])
     error = math.sqrt(float(np.mean([_reading_error(r) ** 2 for r in readings])))
     shares, breaks = _compare_shapes(fractions, median, error)
-    coarse_shares, coarse_breaks = _coarse_shares(readings, fractions, error)
+    coarse = np.array([_coarse_phi(r) for r in readings])
+    known = ~np.isnan(coarse)
     style = ""
-    if coarse_shares is not None:
+    if known.sum() >= 3:
+        coarse_shares, coarse_breaks = _compare_shapes(fractions[known], coarse[known], error)
         moves = 1 - shares.get("ungraded", 0.0) > 0.5
         coarse_moves = 1 - coarse_shares.get("ungraded", 0.0) > 0.5
         if coarse_moves:
             style = "distribution" if moves else "coarse-tail"
         if style == "coarse-tail":
             shares, breaks = coarse_shares, coarse_breaks
+            heights, median = heights[known], coarse[known]  # what moved is what the statistics tell of
     order = trend_test(median)
     low, high = theil_sen_interval(heights, median)
     return _verdict(
@@ -234,16 +237,10 @@ def _from_readings(bed: Bed, readings: Sequence[SizeReading]) -> Grading:
     )  # fmt: skip
 
 
-def _coarse_shares(
-    readings: Sequence[SizeReading], fractions: Array, error: float
-) -> tuple[dict[GradingWord, float] | None, tuple[float, ...]]:
-    """Shares for the coarse tail (d95, else d90) where three or more readings give it."""
-    coarse = [r.d95_mm or r.d90_mm for r in readings]
-    known = [k for k, size in enumerate(coarse) if size is not None and size > 0]
-    if len(known) < 3:
-        return None, ()
-    phi = np.array([-math.log2(size) for size in coarse if size is not None and size > 0])
-    return _compare_shapes(fractions[known], phi, error)
+def _coarse_phi(reading: SizeReading) -> float:
+    """Size of the coarse tail (d95, else d90) in phi, NaN where neither was read."""
+    size = reading.d95_mm or reading.d90_mm
+    return -math.log2(size) if size is not None and size > 0 else math.nan
 
 
 def _compare_shapes(x: Array, y: Array, error: float) -> tuple[dict[GradingWord, float], tuple[float, ...]]:

@@ -213,3 +213,13 @@ def test_spread_is_the_circular_standard_deviation() -> None:
 def test_nine_readings_that_nearly_agree_have_a_small_p_and_not_none() -> None:
     """The series falls below zero there; the closed form is a few in a million (resultant 0.993)."""
     assert rayleigh_p(n=9, resultant=0.9931) == pytest.approx(3.5e-6, rel=0.1)
+
+
+def test_axes_about_north_have_a_mean_of_zero_and_one_reading_is_one() -> None:
+    """Rounding leaves neither a mean of 180 nor a tiny number, and the note counts in words."""
+    lines = (reading("parting_lineation", "azimuth", a, sense="axis") for a in (10.0, 170.0))
+    (summary,) = find_currents(log_with(*lines)).summaries
+    assert summary.mean_deg == 0.0
+    (single,) = find_currents(log_with(reading("groove", "azimuth", 40.0, sense="axis"))).summaries
+    assert single.notes[0].startswith("1 reading: ")
+    assert str(single.spread_deg) == "0.0"

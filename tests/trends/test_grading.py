@@ -129,6 +129,8 @@ def test_coarse_tail_is_told_from_distribution_grading() -> None:
     coarse = [-1.0, -0.3, 0.5, 1.2, 2.0]
     tail = grade_bed(bed_read([2.0, 2.02, 1.98, 2.0, 2.05], coarse))
     assert (tail.verdict, tail.style) == ("normal", "coarse-tail")
+    assert tail.tau == pytest.approx(1.0)
+    assert (tail.slope_phi_per_m or 0) > 0
     whole = grade_bed(bed_read([1.0, 1.6, 2.3, 3.0, 3.7], coarse))
     assert (whole.verdict, whole.style) == ("normal", "distribution")
 
