@@ -56,7 +56,7 @@ def print_frame(frame: Any, title: str = "") -> None:
 
 def print_json(value: Any) -> None:
     """JSON to stdout; numbers that are not finite become null."""
-    click.echo(json.dumps(_finite(value), ensure_ascii=False, indent=2))
+    click.echo(json.dumps(finite(value), ensure_ascii=False, indent=2))
 
 
 def say(message: str, quiet: bool = False) -> None:
@@ -99,11 +99,12 @@ def _text(cell: Any) -> str:
     return "".join(c if c.isprintable() or c in "\n\t\u00a0\u202f" else "�" for c in str(cell))
 
 
-def _finite(value: Any) -> Any:
+def finite(value: Any) -> Any:
+    """A value as JSON can hold it: numbers that are not finite become None, arrays of one their number."""
     if isinstance(value, dict):
-        return {str(k): _finite(v) for k, v in value.items()}
+        return {str(k): finite(v) for k, v in value.items()}
     if isinstance(value, list | tuple):
-        return [_finite(v) for v in value]
+        return [finite(v) for v in value]
     if hasattr(value, "item"):
         value = value.item()
     if isinstance(value, float) and (value != value or value in (float("inf"), float("-inf"))):

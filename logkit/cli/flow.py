@@ -6,7 +6,7 @@ from typing import Any
 
 import click
 
-from logkit.cli.console import print_frame, say
+from logkit.cli.console import print_table, say
 from logkit.cli.options import (
     check_ending,
     flow_options,
@@ -16,8 +16,9 @@ from logkit.cli.options import (
     reading_options,
     run_logs,
 )
-from logkit.cli.output import write_frame
+from logkit.cli.output import write_rows
 from logkit.model import CAUTION
+from logkit.words import counted
 
 
 @click.command("flow")
@@ -34,15 +35,13 @@ def command(sources: tuple[str, ...], output: str | None, quiet: bool, **options
     Example:
       logkit flow examples/river/tarrow_bend.csv -o tarrow_bend_flow.csv
     """
-    import pandas as pd
-
     if output and output != "-":
         check_ending(output, ("csv", "json", "parquet"))
     outcome = run_logs(sources, ["flow"], quiet=quiet, **options)
-    frame = pd.concat([run.history.to_frame() for run in outcome.runs if run.history], ignore_index=True)
+    rows = [row for run in outcome.runs if run.history for row in run.history.to_rows()]
     if output and output != "-":
-        write_frame(frame, output, CAUTION)
-        say(f"Wrote {output}: {len(frame)} phases.", quiet)
+        write_rows(rows, output, CAUTION)
+        say(f"Wrote {output}: {counted(len(rows), 'phase')}.", quiet)
     else:
-        print_frame(frame)
+        print_table(list(rows[0]) if rows else (), (list(row.values()) for row in rows))
     say(CAUTION, quiet)

@@ -57,15 +57,15 @@ class FlowHistory:
         """
         return tuple(self.estimates[place] for place in self.places_of(bed))
 
+    def to_rows(self) -> list[dict[str, Any]]:
+        """The rows of `to_frame` without a frame; None stands where there is no number."""
+        return [_row(estimate) for estimate in self.estimates]
+
     def to_frame(self) -> pd.DataFrame:
         """One row a phase; a one-sided answer leaves the quantiles empty and fills the limit columns."""
         import pandas as pd
 
-        columns: dict[str, list[Any]] = {name: [] for name in _COLUMNS}
-        for estimate in self.estimates:
-            for name, value in _row(estimate).items():
-                columns[name].append(value)
-        frame = pd.DataFrame(columns)
+        frame = pd.DataFrame(self.to_rows(), columns=_COLUMNS)
         numbers = [name for name in _COLUMNS if name not in _TEXT and name != "phase"]
         return frame.astype(dict.fromkeys(numbers, float))
 
