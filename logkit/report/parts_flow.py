@@ -49,7 +49,7 @@ def summary(well: Well, units: Units) -> Iterator[Block]:
             f"{sum(e.tendency == 'not determinable' for e in estimates)} changes are not determinable."
         )
     for sentence in well.trends.summary():
-        yield Paragraph(sentence)
+        yield Paragraph(units.words(sentence))
 
 
 def _range_words(ranges: list[PhaseEstimate], units: Units) -> str:

@@ -9,6 +9,7 @@ from logkit.compare import Comparison, compare_logs, draw_panel
 from logkit.report.document import Block, Column, Figure, Paragraph, Table
 from logkit.report.settings import ReportSettings
 from logkit.report.wells import Well
+from logkit.report.wording import Units
 from logkit.words import counted, digits, joined
 
 WIDEST_MM = 390.0
@@ -39,8 +40,9 @@ def panel(wells: list[Well], settings: ReportSettings) -> Iterator[Block]:
 def comparison(wells: list[Well], settings: ReportSettings) -> Iterator[Block]:
     """What differs between the wells, in sentences and tables."""
     result = compare(tuple(wells), settings.datum)
+    units = Units(settings.units == "feet")
     for sentence in result.summary():
-        yield Paragraph(sentence)
+        yield Paragraph(units.words(sentence))
     for name, frame in result.tables().items():
         if not len(frame):
             continue

@@ -1,7 +1,9 @@
 """The ledger as people read it."""
 
-from report_cases import wells_of
+from click.testing import CliRunner
+from report_cases import SOURCES, wells_of
 
+from logkit.cli.why import command as why
 from logkit.report.ledger_view import ledger_headings, ledger_lines
 from logkit.report.wells import Well
 from logkit.report.wording import Units
@@ -61,3 +63,17 @@ def test_phases_are_named_from_one(small: Well) -> None:
     """Words for phases count them from 1 at the base and leave the number away where there is one."""
     assert small.places_words([0, 1, 2]) == "Beds 1, 2 <b> (phases 1 and 2)"
     assert small.places_words([2]) == "Bed 2 <b> (phase 2)"
+
+
+def test_why_prints_the_same_lines() -> None:
+    """`logkit why` prints the lines of the report, phase by phase, and the tested ranges under them."""
+    text = CliRunner().invoke(why, [str(SOURCES["river"]), "--bed", "5", "--quiet"]).stdout
+    history = wells_of("river")[0].history
+    places = history.places_of("5")
+    assert len(places) == 2
+    for place in places:
+        for line in ledger_lines(history.ledger_at(place), Units()):
+            assert "\t".join(line.cells) in text
+            assert f"  {line.criterion}: {line.validity}" in text
+    second = CliRunner().invoke(why, [str(SOURCES["river"]), "--bed", "5", "--phase", "2", "--quiet"]).stdout
+    assert second.count("criterion\tsays") == 1

@@ -106,6 +106,14 @@ def test_logo_organisation_and_feet(tmp_path: Path, small: Well) -> None:
     assert document_pdf(document).startswith(b"%PDF")
 
 
+def test_sentences_of_the_summary_are_in_feet() -> None:
+    """With feet no sentence of the summary has a length in metres or a velocity in m/s."""
+    document = build_document(wells_of("river"), make_settings(None, units="feet", sections=["summary"]))
+    sentences = [block.text for block in document.sections[0].blocks if isinstance(block, Paragraph)]
+    assert any(" ft/s" in text for text in sentences)
+    assert [text for text in sentences if re.search(r"\d[ \u00a0]m(/s)?\b", text)] == []
+
+
 def test_a_logo_that_cannot_be_used_is_told(tmp_path: Path, small: Well) -> None:
     """A logo that is missing or no picture stops with a word on what to do."""
     with pytest.raises(LogkitError, match="cannot be read"):
