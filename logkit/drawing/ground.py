@@ -12,7 +12,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 from numpy.typing import NDArray
 
-from logkit.drawing.noise import FINEST_MM, scatter
+from logkit.drawing.noise import FINEST_MM, Chance, scatter
 from logkit.drawing.shapes import Point
 
 if TYPE_CHECKING:
@@ -74,9 +74,9 @@ class Ground:
             self._mark(np.asarray(clear, dtype=float).reshape(-1, 4))
 
     @cached_property
-    def random(self) -> np.random.Generator:
+    def random(self) -> Chance:
         """Source of every random choice on this ground."""
-        return np.random.default_rng(self.seed)
+        return Chance(self.seed)
 
     @property
     def height(self) -> float:
