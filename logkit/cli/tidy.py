@@ -15,7 +15,7 @@ from logkit.cli.options import (
     reading_options,
     run_logs,
 )
-from logkit.errors import LogkitError
+from logkit.words import counted
 
 
 @click.command("tidy")
@@ -32,8 +32,8 @@ def command(source: str, output: str, quiet: bool, **options: Any) -> None:
     """
     check_ending(output, ("csv", "tsv", "xlsx"))
     logs = run_logs([source], quiet=quiet, **options).logs
-    if len(logs) > 1:
-        names = ", ".join(log.name for log in logs)
-        raise LogkitError(f"{source} holds {len(logs)} sections: {names}.", "Choose one with --section.")
-    logs[0].write(output)
-    say(f"Wrote {output}: {len(logs[0].real_beds)} beds.", quiet)
+    from logkit.tables import write_logs
+
+    write_logs(logs, output)
+    sections = f" in {len(logs)} sections" if len(logs) > 1 else ""
+    say(f"Wrote {output}: {counted(sum(len(log.real_beds) for log in logs), 'bed')}{sections}.", quiet)

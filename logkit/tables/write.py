@@ -8,12 +8,13 @@ from __future__ import annotations
 import csv
 import io
 from collections.abc import Iterable, Sequence
+from dataclasses import replace
 from pathlib import Path
 from typing import Any
 
 from logkit.errors import LogkitError, UnknownNameError
 from logkit.files import write_atomic
-from logkit.model import Log
+from logkit.model import Header, Log
 from logkit.tables.canonical import COLUMNS
 from logkit.tables.frame import columns_used, number_or_text, table_rows
 from logkit.tables.header import header_lines
@@ -43,16 +44,46 @@ def write_log(log: Log, path: str | Path) -> Path:
     ------
     LogkitError : the ending is not known, the file cannot be written, or a text is too long for a workbook
     """
-    target = Path(path)
-    rows = table_rows(log, depths=True)
+    return write_logs([log], path)
+
+
+def write_logs(logs: Sequence[Log], path: str | Path) -> Path:
+    """Write the sections of one table into one table again; `read_logs` gives the same logs back.
+
+    Parameters
+    ----------
+    logs : logs with the same header but for the section, each with a section of its own when there are several
+    path : as for `write_log`
+
+    Raises
+    ------
+    LogkitError : as `write_log`, or the logs do not fit into one table
+    """
+    header = logs[0].header
+    if len(logs) > 1:
+        header = replace(header, section="")
+        _check_sections(logs, header)
+    rows = [row for log in logs for row in table_rows(log, depths=True)]
     names = columns_used(rows)
-    lines = header_lines(log.header)
-    unit = log.header.unit or "m"
-    depth_heads = {"base": f"base_{unit}", "top": f"top_{unit}"} if log.header.direction == "down" else {}
+    lines = header_lines(header)
+    unit = header.unit or "m"
+    depth_heads = {"base": f"base_{unit}", "top": f"top_{unit}"} if header.direction == "down" else {}
     table = [[depth_heads.get(name, COLUMNS[name]) for name in names]]
     table += [[row.get(name, "") for name in names] for row in rows]
-    sizes = [list(SIZES_HEADINGS), *_size_rows(log)]
-    return write_tables(target, lines, table, sizes)
+    sizes = [list(SIZES_HEADINGS), *(row for log in logs for row in _size_rows(log))]
+    return write_tables(Path(path), lines, table, sizes)
+
+
+def _check_sections(logs: Sequence[Log], header: Header) -> None:
+    names = [plain_cell(log.header.section) for log in logs]
+    if len(set(names)) < len(names) or not all(names):
+        raise LogkitError("The logs are not told apart by a section each.", "Write them one by one.")
+    other = next((log for log in logs if replace(log.header, section="") != header), None)
+    if other is not None:
+        raise LogkitError(
+            f"{logs[0].name} and {other.name} have different headers and do not fit into one table.",
+            "Choose one section.",
+        )
 
 
 def write_tables(

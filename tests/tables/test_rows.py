@@ -2,14 +2,15 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
 from pathlib import Path
 
 import pytest
 from openpyxl import Workbook
 
-from logkit.errors import LogErrors
+from logkit.errors import LogErrors, LogkitError
 from logkit.model import Log
-from logkit.tables import read_log, read_logs
+from logkit.tables import read_log, read_logs, write_logs
 from logkit.tables.headings import match_heading
 from logkit.vocabulary import vocabulary
 
@@ -150,3 +151,23 @@ def test_one_sheet_of_several_can_be_chosen(tmp_path: Path) -> None:
     assert not [f for f in log.findings if f.sheet == "South"]
     with pytest.raises(LogErrors):
         read_log(path, section="South")
+
+
+@pytest.mark.parametrize("ending", ["csv", "tsv", "xlsx"])
+def test_sections_are_written_into_one_table_again(ending: str, tmp_path: Path) -> None:
+    """What was read from one table goes into one table, sizes and all, and reads back the same."""
+    logs = two_sections(tmp_path, "section," + SIZES + "A,1,10,0.3\nB,1,20,0.7\n")
+    back = read_logs(write_logs(logs, tmp_path / f"tidy.{ending}"))
+    assert back == logs
+    assert [len(log.beds[0].sizes) for log in back] == [1, 1]
+
+
+def test_logs_of_different_headers_do_not_fit_into_one_table(tmp_path: Path) -> None:
+    """One header cannot speak for a river and a turbidite section."""
+    one, two = two_sections(tmp_path, SIZES)
+    other = replace(two, header=replace(two.header, setting="turbidity"))
+    with pytest.raises(LogkitError, match="A and B have different headers"):
+        write_logs([one, other], tmp_path / "tidy.csv")
+    with pytest.raises(LogkitError, match="a section each"):
+        write_logs([one, one], tmp_path / "tidy.csv")
+    assert not (tmp_path / "tidy.csv").exists()
