@@ -29,6 +29,7 @@ class _Frame:
         self.height = min(210.0, max(60.0, 8.0 * (self.top - self.base)))
         self.units = units
         self.well = well
+        self.moved_by = "wind 10 m above the ground" if all(e.is_wind for e in found) else "flow velocity"
 
     def x(self, speed_m_s: float) -> float:
         """Place of a velocity, mm."""
@@ -104,7 +105,7 @@ def _axes(frame: _Frame) -> Iterator[Shape]:
                 yield Text((x, y), f"{speed:g}", 6, INK, anchor="middle")
     yield Text(
         ((LEFT + RIGHT) / 2, low - 5.0),
-        f"flow velocity, {frame.units.speed}",
+        f"{frame.moved_by}, {frame.units.speed}",
         7,
         INK,
         bold=True,

@@ -125,7 +125,8 @@ def _phase(estimate: PhaseEstimate, ledger: int | None, units: Units) -> dict[st
         words.append(f"No estimate: {estimate.reason}.")
     elif estimate.bound in ("above", "below") and estimate.limit_velocity_m_s is not None:
         limit = digits(units.number(estimate.limit_velocity_m_s))
-        words.append(f"Velocity {estimate.bound} {limit} {units.speed}.")
+        what = "Wind 10 m above the ground" if estimate.is_wind else "Velocity"
+        words.append(f"{what} {estimate.bound} {limit} {units.speed}.")
     if estimate.bed_state:
         words.append(f"Bed state: {estimate.bed_state.replace('_', ' ')}.")
     if estimate.transport_mode:

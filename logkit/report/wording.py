@@ -75,7 +75,8 @@ def chance(p: float | None) -> str:
 def velocity_cell(estimate: PhaseEstimate, units: Units) -> str:
     """Velocity as shown in a table: the range, a bound, or nothing."""
     if estimate.bound in ("above", "below") and estimate.limit_velocity_m_s is not None:
-        return f"{estimate.bound}{NO_BREAK}{digits(units.number(estimate.limit_velocity_m_s))}"
+        wind = " (wind, 10 m up)" if estimate.is_wind else ""
+        return f"{estimate.bound}{NO_BREAK}{digits(units.number(estimate.limit_velocity_m_s))}{wind}"
     return units.span(estimate.velocity)
 
 
