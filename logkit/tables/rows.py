@@ -377,8 +377,16 @@ class RowReader:
         self.put("wave_period_s", self.take(read_number(text.rstrip("s "), 0.1, 3600), column, text))
 
     def interval(self, column: str, text: str) -> None:
-        """A known flow depth or slope as a range."""
-        unit = self.manner.unit_of(column) or "m" if column == "flow_depth" else None
+        """A known flow depth or slope as a range; a depth is in metres unless its heading or cell says else."""
+        unit = self.manner.units.get(column, "m") if column == "flow_depth" else None
+        if (
+            unit
+            and column not in self.manner.units
+            and self.manner.unit not in (None, "m")
+            and text[-1:].isdigit()
+        ):
+            self.add("note", "flow_depth.metres", f"read in metres, though thicknesses are in {self.manner.unit}",
+                     "write the unit into the heading", column)  # fmt: skip
         value = self.take(read_interval(text, unit), column, text)
         if value is None:
             return

@@ -280,3 +280,10 @@ def test_a_flow_depth_is_no_position() -> None:
     assert [bed.name for bed in log.beds] == ["1", "2"]
     assert not log.count("question")
     assert log.beds[0].flow_depth_m == (2.0, 3.0)
+
+
+def test_a_flow_depth_is_in_metres_on_a_centimetre_sheet(read) -> None:  # type: ignore[no-untyped-def]
+    """The unit of thicknesses is not that of flow depths, and this is said."""
+    log = read("# unit: cm\nbed,thickness,grain,flow_depth\n1,40,mL,1.5\n2,40,mL,2 m\n")
+    assert [bed.flow_depth_m for bed in log.beds] == [(1.5, 1.5), (2.0, 2.0)]
+    assert [f.row for f in log.findings if f.code == "flow_depth.metres"] == [3]
