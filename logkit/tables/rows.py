@@ -378,7 +378,7 @@ class RowReader:
 
     def interval(self, column: str, text: str) -> None:
         """A known flow depth or slope as a range; a depth is in metres unless its heading or cell says else."""
-        unit = self.manner.units.get(column, "m") if column == "flow_depth" else None
+        unit = (self.manner.units.get(column) or "m") if column == "flow_depth" else None
         if (
             unit
             and column not in self.manner.units
