@@ -381,7 +381,7 @@ class RowReader:
         unit = (self.manner.units.get(column) or "m") if column == "flow_depth" else None
         if (
             unit
-            and column not in self.manner.units
+            and not self.manner.units.get(column)
             and self.manner.unit not in (None, "m")
             and text[-1:].isdigit()
         ):
