@@ -60,7 +60,8 @@ def rose(ax: Axes, summary: CurrentSummary, class_width_deg: float = 20.0) -> Ax
     for ring in _rings(most):
         radius = float(rose_radius(ring, most))
         ax.add_patch(Circle((0, 0), radius, fill=False, edgecolor=GRID, linewidth=0.5))
-        ax.text(0.02, radius, f"{ring}", fontsize=SIZE - 1, color=INK2, va="bottom")
+        x, y = _point(25.0, radius)  # beside north, so that the outer count does not meet the letter
+        ax.text(x, y, f"{ring}", fontsize=SIZE - 1, color=INK2, va="bottom")
     for azimuth, letter in ((0, "N"), (90, "E"), (180, "S"), (270, "W")):
         x, y = _point(azimuth, 1.18)
         ax.text(x, y, letter, ha="center", va="center", fontsize=SIZE, color=INK)
