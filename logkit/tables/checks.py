@@ -318,7 +318,7 @@ def _trend_words(drafts: Sequence[Draft], found: Collector) -> None:
         if match:
             pair = (coarse, fine) if match[0].casefold().startswith(("f", "n")) else (fine, coarse)
             message = f"the notes say {match[0]!r}, but {text!r} is written as a range"
-        elif _coarse_first(text, fine, coarse):
+        elif "/" not in text and _coarse_first(text, fine, coarse):
             pair = (coarse, fine)
             message = f"the range {text!r} is written with the coarse end first"
         else:

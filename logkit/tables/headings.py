@@ -14,10 +14,12 @@ from functools import lru_cache
 from logkit.tables.cells.lengths import unit_symbol
 from logkit.tables.sheet import Collector, Row, Sheet
 from logkit.vocabulary import vocabulary
+from logkit.words import counted
 
 _PLACES = frozenset({"thickness", "base", "top", "position", "from", "to"})
 _MATTER = frozenset({"grain", "lithology", "grain_base", "grain_top", "structures"})
 _LONGEST_HEADING = 100
+_MOST_NAMED = 12
 _BRACKETS = re.compile(r"^(?P<name>.*?)\s*[\[({]\s*(?P<unit>[^\])}]*)\s*[\])}]\s*$")
 _SIZE_UNITS = {"phi": "phi", "φ": "phi", "Φ": "phi", "ϕ": "phi"}
 _OTHER_UNITS = {
@@ -146,13 +148,24 @@ def find_headings(sheet: Sheet, found: Collector, sizes: bool = False) -> Headin
         return None
     for row in sheet.rows[:place]:
         _keep_above(row, sheet, found)
-    row = sheet.rows[place]
+    row, rest = sheet.rows[place], sheet.rows[place + 1 :]
+    if rest and not sizes and (below := _with_sub_headings(row, rest[0])):
+        row, rest = below, rest[1:]
     columns = _columns(row, found, sizes)
-    rest = sheet.rows[place + 1 :]
     if rest and not sizes:
         columns, rest = _with_unit_row(columns, rest)
     sheet.rows = rest
     return Headings(tuple(columns), row)
+
+
+def _with_sub_headings(row: Row, below: Row) -> Row | None:
+    """Headings in two rows, such as `from` and `to` under `thickness`, as one; None when the row below is a bed."""
+    under = [cell for cell in below.cells if cell]
+    if len(under) < 2 or not all(match_heading(cell)[0] for cell in under):
+        return None
+    width = max(len(row.cells), len(below.cells))
+    pairs = zip(*((*cells, *[""] * (width - len(cells))) for cells in (row.cells, below.cells)), strict=True)
+    return Row(row.number, tuple(lower or upper for upper, lower in pairs))
 
 
 def _keep_above(row: Row, sheet: Sheet, found: Collector) -> None:
@@ -171,6 +184,7 @@ def _keep_above(row: Row, sheet: Sheet, found: Collector) -> None:
 def _columns(row: Row, found: Collector, sizes: bool) -> list[Column]:
     columns: list[Column] = []
     seen: dict[str, str] = {}
+    own: list[str] = []
     for index, heading in enumerate(row.cells):
         name, unit, odd = match_heading(heading, sizes)
         if not heading:
@@ -178,11 +192,14 @@ def _columns(row: Row, found: Collector, sizes: bool) -> list[Column]:
             continue
         if not name:
             near = vocabulary("size_columns" if sizes else "columns").nearest(heading)
-            found.add("question" if near else "note", "heading.unknown",
-                      f"no column is called {heading[:60]!r}; its cells are kept as written and not read",
-                      "correct the heading, or leave it if the column is your own",
-                      row=row.number, cell=heading, nearest=near or "",
-                      choices=("a column of your own", near) if near else ())  # fmt: skip
+            if near:
+                found.add("question", "heading.unknown",
+                          f"no column is called {heading[:60]!r}; its cells are kept as written and not read",
+                          "correct the heading, or leave it if the column is your own",
+                          row=row.number, cell=heading, nearest=near,
+                          choices=("a column of your own", near))  # fmt: skip
+            else:
+                own.append(heading)
         elif name in seen:
             found.add("question", "heading.doubled",
                       f"{heading[:60]!r} and {seen[name][:60]!r} are both the column {name}; the first one is read",
@@ -196,6 +213,13 @@ def _columns(row: Row, found: Collector, sizes: bool) -> list[Column]:
         if name:
             seen[name] = heading
         columns.append(Column(index, name, heading, unit))
+    if own:
+        shown = ", ".join(repr(heading[:60]) for heading in own[:_MOST_NAMED]) + (
+            " …" if len(own) > _MOST_NAMED else ""
+        )
+        found.add("note", "heading.unknown",
+                  f"{counted(len(own), 'column')} of your own, kept as written and not read: {shown}",
+                  "correct a heading that is meant as one of logkit's", row=row.number, cell=own[0])  # fmt: skip
     return columns
 
 

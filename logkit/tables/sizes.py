@@ -134,9 +134,11 @@ def _length(
     unit = units.get(name)
     if unit is None and number(text)[0] is not None:
         unit = "cm" if name == "height_in_bed" else "m"
-        found.add("question", "sizes.unit", f"no unit is given for {name}; read in {unit}",
-                  "add the unit to the heading", row=row.number, column=name, cell=text,
-                  choices=tuple(dict.fromkeys((unit, "m", "cm"))))  # fmt: skip
+        asked = any(f.code == "sizes.unit" and f.column == name for f in found.found)
+        if not asked:
+            found.add("question", "sizes.unit", f"no unit is given for {name}; read in {unit}",
+                      "add the unit to the heading", row=row.number, column=name, cell=text,
+                      choices=tuple(dict.fromkeys((unit, "m", "cm"))))  # fmt: skip
     reading = read_length(text, unit)
     if reading.value is None:
         for remark in reading.remarks:

@@ -116,3 +116,15 @@ def test_set_thickness(text: str, expected: tuple[float | None, ...]) -> None:
     sets = read_sets(text, "cm").value
     assert sets is not None
     assert (sets.low_m, sets.high_m, sets.mean_m, sets.count) == pytest.approx(expected)
+
+
+@pytest.mark.parametrize(
+    ("text", "metres"), [("15±2", 0.15), ("15 +/- 2 cm", 0.15), ("1.2 m ± 0,1", 1.2), ("1.2±.1", None)]
+)
+def test_a_spread_is_left_to_the_text(text: str, metres: float | None) -> None:
+    """A thickness with its spread is the thickness, approximately, and that is said."""
+    reading = read_length(text, "cm")
+    assert (reading.value.metres if reading.value else None) == (pytest.approx(metres) if metres else None)
+    if reading.value:
+        assert reading.value.approximate
+        assert "length.spread" in [r.code for r in reading.remarks]

@@ -1,4 +1,4 @@
-"""Rows and marks that are no beds: totals, end marks, open quotation marks, formulas nobody calculated."""
+"""Rows and marks that are no beds: headings, totals, end marks, open quotation marks, formulas without results."""
 
 from __future__ import annotations
 
@@ -93,3 +93,18 @@ def test_formulas_without_results_are_asked_about(tmp_path: Path) -> None:
     finding = only(log, "cell.formula")
     assert finding.cell == "C3"
     assert "save" in finding.remedy
+
+
+def test_headings_in_two_rows_are_one(tmp_path: Path) -> None:
+    """`from` and `to` below a heading that spans them name the columns; the first bed stays a bed."""
+    log = read(tmp_path, "Bed,Thickness,,Lithology\n,from (m),to (m),\n1,0,0.5,sst\n2,0.5,1.1,mdst\n")
+    assert [(b.name, b.base_m, b.top_m) for b in log.beds] == [("1", 0, 0.5), ("2", 0.5, 1.1)]
+    assert not log.count("error")
+
+
+def test_columns_of_ones_own_are_named_once(tmp_path: Path) -> None:
+    """Many columns that nobody knows are one note, which names them."""
+    heads = ",".join(f"qq{i}" for i in range(40))
+    log = read(tmp_path, f"bed,thickness (cm),grain,{heads}\n1,40,mL\n")
+    assert only(log, "heading.unknown").message.startswith("40 columns of your own, kept as written")
+    assert "'qq11' …" in only(log, "heading.unknown").message

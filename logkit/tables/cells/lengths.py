@@ -45,6 +45,7 @@ _INCHES = re.compile(
 )
 _FRACTION = re.compile(r"^(?P<whole>\d+(?!\d*/))?\s*(?P<num>\d+)/(?P<den>\d+)\s*(?P<unit>[A-Za-zµ'\"]*)\.?$")
 _PLAIN = re.compile(rf"^(?P<number>{NUMBER})\s*(?P<unit>[A-Za-zµ]+|'+|\")?\.?$")
+_AROUND = re.compile(r"(?<=[\da-zµ])\s*(?:±|\+/-|\+-)\s*\d+(?:[.,]\d+)?(?=\s*(?:[a-zµ'\"]|$))", re.I)
 _METRES_CM = re.compile(r"^(?P<m>\d+)\s*m\s*(?P<cm>\d{1,2})(?:\s*cm)?$", re.I)
 _THOUSANDS = re.compile(r"^\d{1,3}(?:,\d{3})+\.\d+$|^\d{1,3}(?:\.\d{3})+,\d+$|^\d{1,3}(?:,\d{3}){2,}$")
 _SPLIT = re.compile(r"\s*(?:(?<=[\d'\"a-zµ.)])\s*-\s*|\.\.+|…|\bto\b)\s*", re.I)
@@ -167,6 +168,12 @@ def _length(plain: str, unit: str | None) -> Reading[Length]:
     approximate = body != plain or body.endswith("?") or body.endswith("+")
     body = body.rstrip("?+ ").strip()
     remarks: list[Remark] = []
+    around = _AROUND.search(body)
+    if around:
+        body, approximate = f"{body[: around.start()]}{body[around.end() :]}", True
+        remarks.append(
+            note("length.spread", f"{quoted(plain)} read as {body}; the spread is kept in the text only")
+        )
     if sign[:1] in (">", "<", "≥", "≤"):
         word = "at least" if sign[0] in ">≥" else "at most"
         remarks.append(note("length.limit", f"{quoted(plain)} read as {body}, {word}"))
