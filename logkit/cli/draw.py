@@ -10,6 +10,7 @@ import click
 from logkit.cli.console import say
 from logkit.cli.options import (
     check_ending,
+    complete_styles,
     flow_options,
     log_argument,
     output_option,
@@ -26,7 +27,12 @@ from logkit.words import counted
 @output_option(
     "Drawing to write: svg, pdf or png by ending. Several sheets: one pdf, or NAME-1.svg, NAME-2.svg …"
 )
-@click.option("--style", default="report", help="Style by name, or your own TOML file.")
+@click.option(
+    "--style",
+    default="report",
+    shell_complete=complete_styles,
+    help="Style by name, or your own TOML file.",
+)
 @click.option("--scale", default=None, metavar="1:N", help="Scale on paper, 1:50 by default.")
 @click.option("--page", default=None, metavar="SIZE", help="A5 … A0, Letter, Tabloid, roll; `A4 landscape`.")
 @click.option("--from", "from_m", type=float, default=None, metavar="M", help="Lowest height to draw (m).")

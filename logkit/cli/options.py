@@ -38,6 +38,13 @@ def _complete_codes(ctx: click.Context, param: click.Parameter, typed: str) -> l
     return [name for name in code_tables() if name.startswith(typed)]
 
 
+def complete_styles(ctx: click.Context, param: click.Parameter, typed: str) -> list[str]:
+    """Names of styles for the shell."""
+    from logkit.drawing.style import list_styles
+
+    return [name for name in list_styles() if name.startswith(typed)]
+
+
 def reading_options(command: C) -> C:
     """Options that say how a table is to be read."""
     for option in (

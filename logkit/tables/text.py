@@ -171,7 +171,7 @@ def _row_at(lines: list[str], at: int, separator: str, found: Collector) -> tupl
     line = lines[at]
     if '"' not in line:
         return _split(line, separator, at, found), 1
-    reader = csv.reader(lines[at:], delimiter=separator)
+    reader = csv.reader((lines[i] for i in range(at, len(lines))), delimiter=separator)
     try:
         cells: list[str] | None = next(reader)
     except (csv.Error, StopIteration) as problem:
@@ -186,13 +186,17 @@ def _row_at(lines: list[str], at: int, separator: str, found: Collector) -> tupl
         found.add("error", "row.open_quote", "a quotation mark is opened in this row and never closed",
                   "close it, or take it out", row=at + 1, cell=line.strip())  # fmt: skip
         return _split(line.replace('"', ""), separator, at, found), 1
-    width = max(line.count(separator), 1)
-    if count > 50 or any(part.count(separator) >= width for part in swallowed[:-1]):
+    width = max(_before_quote(line).count(separator), 1)
+    if count > 50 or any(_before_quote(part).count(separator) >= width for part in swallowed):
         found.add("question", "file.long_cell",
                   f"one cell runs over {count} lines; a quotation mark may be missing",
                   "close the quotation mark", row=at + 1, cell=line.strip(),
                   choices=("one long cell", "a missing quotation mark"))  # fmt: skip
     return cells, count
+
+
+def _before_quote(line: str) -> str:
+    return line.partition('"')[0]
 
 
 def _split(line: str, separator: str, at: int, found: Collector) -> list[str] | None:

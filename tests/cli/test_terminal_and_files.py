@@ -94,7 +94,8 @@ def test_json_holds_every_field_of_a_finding(capsys: pytest.CaptureFixture[str])
 @pytest.mark.parametrize(
     ("words", "expected"),
     [("logkit ch", "plain,check"), ("logkit check --s", "plain,--strict"), ("logkit check ex", "file,ex"),
-     ("logkit draw x -o ou", "file,ou"), ("logkit check --setting ri", "plain,river")],
+     ("logkit draw x -o ou", "file,ou"), ("logkit check --setting ri", "plain,river"),
+     ("logkit draw --style re", "plain,report")],
 )  # fmt: skip
 def test_the_shell_completes(words: str, expected: str) -> None:
     """Verbs, options, files and words with a fixed list are completed in bash."""

@@ -71,6 +71,8 @@ def test_a_cell_that_swallows_rows_is_asked_about(tmp_path: Path) -> None:
     """Two open marks make one long cell with whole rows in it; a note of two lines is ordinary."""
     text = 'bed,thickness (cm),grain,notes\n1,40,mL,"open\n2,30,fU,\n3,20,fU,open"\n4,20,fU,\n'
     assert only(read(tmp_path, text), "file.long_cell").row == 2
+    pairs = 'bed,thickness (cm),grain,notes\n1,40,mL,"open\n2,30,fU,"open\n3,20,fU,\n'
+    assert only(read(tmp_path, pairs), "file.long_cell").row == 2
     two_lines = read(tmp_path, 'bed,thickness (cm),grain,notes\n1,40,mL,"one\ntwo, three"\n2,30,fU,\n')
     assert not two_lines.findings
     assert two_lines.beds[0].notes == "one\ntwo, three"
