@@ -187,7 +187,8 @@ class _Column:
 
     def _below(self) -> float:
         """Room kept below the section for axes, scale bar, caution and margin, mm."""
-        reserve = titles.closing_height(self.scene, ["", "", "", ""])
+        lines = titles.closing_lines(self.scene, titles.crowded_tally(self.scene), self.width)
+        reserve = titles.closing_height(self.scene, lines)
         return frame.LOWER_AXIS_MM + 3.0 + reserve + self.scene.style.page.margin
 
     def _body(self, view: View) -> _Body:

@@ -198,6 +198,20 @@ def left_out_words(tally: Tally) -> str:
     return f"Not on the column for want of room: {', '.join(counted)}." if counted else ""
 
 
+def crowded_tally(scene: Scene) -> Tally:
+    """What a crowded sheet leaves out: room for these words is kept before anything is drawn."""
+    usual = {
+        "names": "bed names",
+        "glyphs": "glyphs",
+        "velocity": "state letters",
+        "texture": "structures drawn inside a bed",
+        "notes": "notes moved to the note table",
+    }
+    tally = Tally(structures={"": 1})
+    tally.left_out.update({words: 999 for track, words in usual.items() if track in scene.columns})
+    return tally
+
+
 def closing_height(scene: Scene, lines: list[str]) -> float:
     """Height of the caution block with its rule, mm."""
     return 4.2 + len(lines) * 1.25 * scene.style.fonts.caution * MM_PER_POINT

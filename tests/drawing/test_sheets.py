@@ -8,13 +8,24 @@ from xml.etree import ElementTree
 
 import pytest
 from checks import bed_ids, inked_texts, outside, overlaps, texts_of
-from random_logs import quantiles, random_log
+from random_logs import Results, quantiles, random_log
 
 from logkit.drawing import Drawing, draw_column
 from logkit.drawing.shapes import Group, Path, walk
 from logkit.drawing.style import load_style
 from logkit.errors import ArgumentError
-from logkit.model import Bed, Clash, Contact, GrainState, Header, Log, Phase, PhaseEstimate, SizeInterval
+from logkit.model import (
+    Bed,
+    Clash,
+    Contact,
+    GrainState,
+    Header,
+    Log,
+    Phase,
+    PhaseEstimate,
+    SizeInterval,
+    Structure,
+)
 
 SCALES = (20, 50, 100, 200, 500)
 PLAIN = load_style("report", {"texture": {"dots": False, "least_segment": 1e6}})
@@ -276,6 +287,22 @@ def test_a_very_long_title_takes_a_second_line() -> None:
     assert len(bold) == 2
     assert set(" ".join(reversed(bold)).split()) == set(title.split())
     check_sheets(drawing, Log(Header(title=title), (sand("1", 0, 1),)))
+
+
+@pytest.mark.parametrize("style", ["journal-single", "journal-double", "report"])
+def test_the_caution_keeps_clear_of_the_axes(style: str) -> None:
+    """A bed that fills its sheets to the edge leaves room for all lines of the caution, more on a narrow page."""
+    trough = (Structure("trough_cross_bedding"),)
+    thin = [sand(f"{n + 1}", 0.02 * n, 0.02 * n + 0.02, structures=trough) for n in range(50)]
+    phase = Phase("", "51", 0, 1, 60, "bed", "river", bed_index=50)
+    estimate = PhaseEstimate(
+        phase, "estimated", bound="range", velocity=quantiles(0.6, 0.3), bed_state="dune"
+    )
+    log, results = (
+        Log(Header(), (*thin, sand("51", 1, 60, structures=trough))),
+        Results((estimate,), (), (), ()),
+    )
+    check_sheets(draw_column(log, results, results, style, scale=100), log)
 
 
 def test_beds_carry_what_a_page_filters_by() -> None:

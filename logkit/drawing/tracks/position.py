@@ -5,7 +5,7 @@ from __future__ import annotations
 import math
 from dataclasses import dataclass
 
-from logkit.drawing.metrics import MM_PER_POINT, shorten
+from logkit.drawing.metrics import MM_PER_POINT, shorten, width_mm
 from logkit.drawing.placement import spread, thin
 from logkit.drawing.scene import Scene, Tally, View, position_unit
 from logkit.drawing.shapes import Group, Paint, Path, Segment, Shape, Text, polyline
@@ -91,7 +91,9 @@ def _ends(scene: Scene, view: View, x: float, taken: list[float]) -> list[Shape]
         if all(abs(y - other) > 2.8 for other in taken):
             taken.append(y)
             text = f"{shown_position(scene, edge):.2f}"
-            made.append(Text((x - 3.0, y), text, style.fonts.label, style.colours.ink2, anchor="end"))
+            # where the scale is the first track of a narrow page, the label comes nearer to it
+            right = max(x - 3.0, width_mm(text, style.fonts.label) + 0.2)
+            made.append(Text((right, y), text, style.fonts.label, style.colours.ink2, anchor="end"))
     return made
 
 
