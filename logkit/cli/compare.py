@@ -19,6 +19,7 @@ from logkit.cli.options import (
     run_logs,
 )
 from logkit.errors import LogkitError
+from logkit.words import counted
 
 
 @click.command("compare")
@@ -85,7 +86,10 @@ def command(
     for source, problem in outcome.failures:
         say(f"logkit: {source}: {problem}")
     if len(outcome.runs) < 2:
-        raise LogkitError(f"{len(outcome.runs)} log could be used; a comparison takes two or more.")
+        raise LogkitError(
+            f"{counted(len(outcome.runs), 'log')} could be used, but a comparison takes two or more.",
+            "Name more tables, or a folder of them.",
+        )
     comparison = compare_logs(
         outcome.logs,
         datum=datum,

@@ -15,7 +15,7 @@ from logkit.compare.proportion import proportion_curve
 from logkit.compare.suggestions import SuggestedTie
 from logkit.compare.suggestions import suggest_ties as find_suggestions
 from logkit.compare.ties import Tie, find_ties
-from logkit.errors import ArgumentError
+from logkit.errors import ArgumentError, LogkitError
 
 if TYPE_CHECKING:
     import pandas as pd
@@ -146,9 +146,9 @@ def compare_logs(
 
     Raises
     ------
-    ArgumentError : fewer than two logs, two with the same name, or lists of unlike length
+    ArgumentError : fewer than two logs, or lists of unlike length
     UnknownNameError : no log has the marker
-    LogkitError : a companion file cannot be used, or a well cannot be placed
+    LogkitError : two logs have the same name, a companion file cannot be used, or a well cannot be placed
 
     Examples
     --------
@@ -192,8 +192,8 @@ def _check(logs: tuple[Log, ...], **lists: Sequence[Any] | None) -> None:
         raise ArgumentError("logs", f"{len(logs)} log", "two logs or more")
     doubled = [name for name, count in Counter(log.name for log in logs).items() if count > 1]
     if doubled:
-        raise ArgumentError(
-            "logs", doubled[0], "logs with different names: give each a section in its header"
+        raise LogkitError(
+            f"Two logs are called {doubled[0]!r}.", "Give each a name of its own in the header line `section`."
         )
     for name, values in lists.items():
         if values is not None and len(values) != len(logs):

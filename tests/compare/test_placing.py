@@ -10,7 +10,7 @@ from synthetic_wells import bed, section
 
 from logkit.compare import Companions, ShiftTable, Survey, compare_logs
 from logkit.compare.placing import place_logs
-from logkit.errors import ArgumentError, LogkitError, UnknownNameError
+from logkit.errors import ArgumentError, LogkitError, LogkitError, UnknownNameError
 from logkit.model import Bed, Header, Log
 
 NONE = Companions()
@@ -176,7 +176,7 @@ def test_one_log_or_two_of_a_name_cannot_be_compared() -> None:
     log = section(1, 10)
     with pytest.raises(ArgumentError, match="two logs or more"):
         compare_logs([log])
-    with pytest.raises(ArgumentError, match="logs with different names"):
+    with pytest.raises(LogkitError, match="Two logs are called"):
         compare_logs([log, log])
     with pytest.raises(ArgumentError, match="histories is '1 items'"):
         compare_logs([log, replace(log, header=Header(section="B"))], histories=[None])
