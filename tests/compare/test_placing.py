@@ -10,7 +10,7 @@ from synthetic_wells import bed, section
 
 from logkit.compare import Companions, ShiftTable, Survey, compare_logs
 from logkit.compare.placing import place_logs
-from logkit.errors import ArgumentError, LogkitError, LogkitError, UnknownNameError
+from logkit.errors import ArgumentError, LogkitError, UnknownNameError
 from logkit.model import Bed, Header, Log
 
 NONE = Companions()
