@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from dataclasses import replace
 from typing import Any
 
 from logkit.drawing.axes import LogAxis, PhiAxis, round_ends
@@ -28,6 +29,9 @@ GROWING = ("texture", "velocity", "depth")
 MOST_GROWTH = 1.4
 MOST_NAMES_MM = 12.0
 """Widest column of bed names."""
+
+WIND_TITLE = "Wind 10 m up"
+"""Heading of the velocity track where all of it is wind."""
 
 
 def lay_out(
@@ -73,6 +77,8 @@ def lay_out(
     velocity = flow_depth = None
     if "velocity" in columns:
         column = columns["velocity"]
+        if all(e.is_wind for e in estimates if e.status == "estimated"):
+            columns["velocity"] = replace(column, title=WIND_TITLE)
         ends = velocity_range or velocity_ends(estimates, style)
         velocity = LogAxis(column.x0, column.x1, *ends)
     if "depth" in columns:

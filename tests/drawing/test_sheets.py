@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import re
+from dataclasses import replace
 from pathlib import Path as FilePath
 from xml.etree import ElementTree
 
@@ -14,6 +15,7 @@ from logkit.drawing import Drawing, draw_column
 from logkit.drawing.shapes import Group, Path, walk
 from logkit.drawing.style import load_style
 from logkit.errors import ArgumentError
+from logkit.flow import infer_flow
 from logkit.model import (
     Bed,
     Clash,
@@ -330,3 +332,27 @@ def test_saving_by_ending(tmp_path: FilePath) -> None:
     assert drawing._repr_svg_() == drawing.svg(1)
     with pytest.raises(ArgumentError, match="from 1 to 2"):
         drawing.svg(3)
+
+
+def test_no_thread_joins_two_turbidites() -> None:
+    """Two turbidites are two currents: the same estimates lose the link that a river's beds have."""
+    ripples = (Structure("current_ripples"),)
+    log = Log(
+        Header(section="S", setting="river"),
+        tuple(sand(str(i), i, i + 1.0, structures=ripples) for i in (0, 1)),
+    )
+    found = infer_flow(log).estimates
+    apart = tuple(replace(e, phase=replace(e.phase, setting="turbidity")) for e in found)
+    river, turbidites = (
+        draw_column(log, Results(estimates, (), (), ())).svg() for estimates in (found, apart)
+    )
+    assert turbidites.count("<path") == river.count("<path") - 1
+
+
+def test_wind_is_called_wind() -> None:
+    """A track of wind speeds does not say flow velocity."""
+    dunes = (Structure("aeolian_cross_bedding"),)
+    log = Log(Header(section="S", setting="wind"), (sand("1", 0.0, 1.0, structures=dunes),))
+    svg = draw_column(log, infer_flow(log)).svg()
+    assert ">Wind 10 m up<" in svg
+    assert ">Flow velocity<" not in svg

@@ -72,6 +72,8 @@ def draw(scene: Scene, view: View, tally: Tally) -> list[Shape]:
         contact = item.bed.contact
         if contact is not None and contact.kind in ("erosive", "faulted"):
             broken = True
+        if estimates[0].phase.setting == "turbidity":
+            last = None  # each bed is a current of its own: no thread joins two of them
         for estimate in estimates:
             span = view.span(estimate.phase.base_m, estimate.phase.top_m)
             if span is None:
