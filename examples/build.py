@@ -99,20 +99,26 @@ def sheet_paths(path: Path, sheets: int) -> list[Path]:
 
 
 def check(only: str) -> int:
-    """Draw every svg again; the number that differ from those on disk."""
-    different = 0
+    """Draw every svg again; the number that differ from those on disk, are missing there or left over."""
+    wrong: list[str] = []
+    drawn: set[Path] = set()
     for picture in pictures(only):
         drawing = picture.draw()
         for number, path in enumerate(sheet_paths(picture.path, len(drawing.sheets)), start=1):
-            drawn = drawing.svg(number)
+            drawn.add(path)
             if not path.exists():
-                print(f"missing    {path.relative_to(HERE)}")
-            elif path.read_text(encoding="utf-8") != drawn:
-                print(f"different  {path.relative_to(HERE)}")
-            else:
-                continue
-            different += 1
-    return different
+                wrong.append(f"missing    {path.relative_to(HERE)}")
+            elif path.read_text(encoding="utf-8") != drawing.svg(number):
+                wrong.append(f"different  {path.relative_to(HERE)}")
+    for folder in sorted({path.parent for path in drawn}):
+        wrong += [
+            f"left over  {path.relative_to(HERE)}"
+            for path in sorted(folder.glob("*.svg"))
+            if path not in drawn
+        ]
+    for line in wrong:
+        print(line)
+    return len(wrong)
 
 
 def tables(name: str, stem: str, source: Read) -> None:

@@ -47,3 +47,10 @@ def test_check_fails_on_a_changed_or_missing_drawing(
     said = capsys.readouterr().out
     assert "different  changed.svg" in said
     assert "missing    missing.svg" in said
+
+
+def test_the_committed_pictures_are_those_drawn_today(
+    build: ModuleType, capsys: pytest.CaptureFixture[str]
+) -> None:
+    """Every svg under examples/ is what the code draws now, none is missing and none left over."""
+    assert build.check("") == 0, capsys.readouterr().out
