@@ -193,7 +193,8 @@ def _check(logs: tuple[Log, ...], **lists: Sequence[Any] | None) -> None:
     doubled = [name for name, count in Counter(log.name for log in logs).items() if count > 1]
     if doubled:
         raise LogkitError(
-            f"Two logs are called {doubled[0]!r}.", "Give each a name of its own in the header line `section`."
+            f"Two logs are called {doubled[0]!r}.",
+            "Give each a name of its own in the header line `section`.",
         )
     for name, values in lists.items():
         if values is not None and len(values) != len(logs):
