@@ -34,7 +34,7 @@ def test_outside_values_are_from_outside() -> None:
 
 @pytest.mark.parametrize("case", printed.load(), ids=lambda c: f"{c.id}~{c.source}")
 def test_formula_gives_what_its_printed_equation_gives(case: printed.Printed) -> None:
-    """The code and a second, independent transcription of the printed equation agree."""
+    """The code agrees with the printed equation written out a second time, apart from it."""
     assert case.difference() <= case.rel_tol
 
 
