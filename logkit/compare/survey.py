@@ -47,11 +47,6 @@ class Survey:
         """A straight hole."""
         return cls((0.0,), (inclination_deg,), (azimuth_deg,))
 
-    @property
-    def is_vertical(self) -> bool:
-        """True when every station is vertical."""
-        return not any(self.inclination_deg)
-
     def positions(self, measured_depth_m: ArrayLike) -> NDArray[np.float64]:
         """Coordinates along the hole by minimum curvature.
 

@@ -68,11 +68,6 @@ def width_mm(text: str, size_pt: float, bold: bool = False) -> float:
     return sum(advances.get(letter, FALLBACK_EM) for letter in text) * size_pt * MM_PER_POINT
 
 
-def line_height_mm(size_pt: float) -> float:
-    """Distance of base lines in a paragraph, mm."""
-    return 1.2 * size_pt * MM_PER_POINT
-
-
 def text_box(at: tuple[float, float], text: str, size_pt: float, bold: bool, anchor: str, turn: float) -> Box:
     """The box a line of text covers on the page.
 
