@@ -25,6 +25,7 @@ from logkit.drawing.laminae import Folds, Laminae, Ripples
 from logkit.drawing.marks import Mark, Place, draw_mark, mark_outline, parse_step
 from logkit.drawing.noise import seed_of
 from logkit.drawing.objects import PLACINGS, Objects, Placed
+from logkit.drawing.packed import Polylines
 from logkit.drawing.shapes import Circle, Lines, Paint, Path, Point, Shape
 from logkit.drawing.strata import FORMS, ROLES, Box, Domes, Foresets, Troughs, Way
 from logkit.drawing.strips import Window, window
@@ -191,18 +192,19 @@ def _painted(found: Sequence[Runs], roles: Sequence[str], style: Style) -> list[
     widths = style.lines
     weight = {"set": widths.set, "crest": widths.crest, "drape": widths.drape}
     colour = {"set": style.colours.ink, "drape": style.colours.drape}
-    lines: list[tuple[Point, ...]] = []
-    for runs in found:
-        points = list(zip(runs.points[:, 0].tolist(), runs.points[:, 1].tolist(), strict=True))
-        bounds = [*runs.starts, len(points)]
-        lines += [tuple(points[start:stop]) for start, stop in itertools.pairwise(bounds) if stop > start]
-    by_role: dict[str, list[tuple[Point, ...]]] = {}
-    for role, line in zip(roles, lines, strict=True):
-        by_role.setdefault(role, []).append(line)
+    if not roles:
+        return []
+    points = np.concatenate([runs.points for runs in found])
+    sizes = np.concatenate([np.diff(runs.starts, append=len(runs.points)) for runs in found if runs.starts])
+    names = np.array(roles)
     shapes: list[Shape] = []
-    for role, own in sorted(by_role.items()):
+    for role in sorted(set(roles)):
+        mine = names == role
+        own = sizes[mine]
+        chosen = points if mine.all() else points[np.repeat(mine, sizes)]
+        packed = Polylines(chosen, np.cumsum(own) - own)
         ink, width = colour.get(role, style.colours.structure), weight.get(role, widths.lamina)
-        shapes.append(Lines(tuple(own), Paint(stroke=ink, width=width, cap="round")))
+        shapes.append(Lines(packed, Paint(stroke=ink, width=width, cap="round")))
     return shapes
 
 

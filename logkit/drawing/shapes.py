@@ -6,6 +6,8 @@ from collections.abc import Iterable, Iterator, Sequence
 from dataclasses import dataclass, field
 from typing import Literal
 
+from logkit.drawing.packed import Points, Polylines, Strokes
+
 Point = tuple[float, float]
 Segment = tuple[str, tuple[float, ...]]
 """A path step: ("M", (x, y)), ("L", (x, y)), ("C", (x1, y1, x2, y2, x, y)), ("Q", …) or ("Z", ())."""
@@ -31,7 +33,7 @@ class Paint:
 class Path:
     """An open or closed path."""
 
-    segments: tuple[Segment, ...]
+    segments: tuple[Segment, ...] | Strokes
     paint: Paint
 
 
@@ -39,7 +41,7 @@ class Path:
 class Lines:
     """Open polylines of one paint, each of two points or more."""
 
-    lines: tuple[tuple[Point, ...], ...]
+    lines: tuple[tuple[Point, ...], ...] | Polylines
     paint: Paint
 
 
@@ -47,7 +49,7 @@ class Lines:
 class Dots:
     """Round dots of one diameter and colour, written as a single path of zero-length strokes."""
 
-    points: tuple[Point, ...]
+    points: tuple[Point, ...] | Points
     diameter: float
     colour: str
 

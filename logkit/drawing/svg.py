@@ -9,14 +9,17 @@ from __future__ import annotations
 import re
 import zlib
 from collections import Counter
-from collections.abc import Iterable, Sequence
+from collections.abc import Callable, Iterable, Sequence
 from functools import lru_cache
+from typing import Any
 from xml.sax.saxutils import escape
 
 import svgwrite
 
 from logkit.drawing.metrics import MM_PER_POINT
+from logkit.drawing.packed import Packed, Strokes
 from logkit.drawing.shapes import Circle, Dots, Group, Lines, Paint, Path, Point, Segment, Shape, Sheet, Text
+from logkit.drawing.steps import packed_data
 from logkit.errors import LogkitError
 
 FONT = "DejaVu Sans"
@@ -107,7 +110,7 @@ def lines_data(lines: Iterable[Sequence[Point]]) -> str:
     return "".join(parts)
 
 
-def dots_data(points: tuple[Point, ...]) -> str:
+def dots_data(points: Iterable[Point]) -> str:
     """Zero-length strokes at points, as steps from dot to dot."""
     parts: list[str] = []
     x = y = 0
@@ -159,6 +162,7 @@ def sheet_svg(sheet: Sheet) -> str:
         writer.gradient(gradient.id, gradient.stops)
     writer.write_all(sheet.shapes, _PLAIN)
     definitions = f"<defs>{''.join(writer.definitions)}</defs>" if writer.definitions else ""
+    writer.fill_in()
     definitions += writer.style_sheet()
     body = f'<g id="{BODY}" fill="none" stroke-linejoin="round">{"".join(writer.parts)}</g>'
     return f'<?xml version="1.0" encoding="utf-8"?>\n{before}{definitions}{body}{after}\n'
@@ -172,16 +176,21 @@ class _Writer:
         self.definitions: list[str] = []
         self._clips = 0
         self._painted: list[int] = []
+        self._packed: list[tuple[int, Packed[Any]]] = []
 
     def write_all(self, shapes: tuple[Shape, ...], shared: _Look) -> None:
         """Append shapes; lines of one paint that follow each other become one path."""
         line: list[Segment] = []
         paint: Paint | None = None
-        for shape in shapes:
+        for place, shape in enumerate(shapes):
             if line and not (isinstance(shape, Path) and shape.paint == paint):
                 self._path(path_data(line), paint)
                 line = []
             if isinstance(shape, Path) and shape.paint.fill is None and shape.paint.opacity == 1.0:
+                after = shapes[place + 1] if place + 1 < len(shapes) else None
+                if isinstance(shape.segments, Strokes) and not line and not _continues(after, shape.paint):
+                    self._path(shape.segments, shape.paint)
+                    continue
                 paint = shape.paint
                 line.extend(shape.segments)
             else:
@@ -192,15 +201,15 @@ class _Writer:
     def write(self, shape: Shape, shared: _Look) -> None:
         """Append one shape; `shared` is what the groups around it say about texts."""
         if isinstance(shape, Path):
-            self._path(path_data(shape.segments), shape.paint)
+            self._path(_steps(shape.segments, path_data), shape.paint)
         elif isinstance(shape, Lines):
-            self._path(lines_data(shape.lines), shape.paint)
+            self._path(_steps(shape.lines, lines_data), shape.paint)
         elif isinstance(shape, Text):
             self._text(shape, shared)
         elif isinstance(shape, Dots):
-            if shape.points:
+            if len(shape.points):
                 paint = Paint(stroke=shape.colour, width=shape.diameter, cap="round")
-                self._path(dots_data(shape.points), paint)
+                self._path(_steps(shape.points, dots_data), paint)
         elif isinstance(shape, Circle):
             x, y = shape.centre
             place = f'cx="{units(x)}" cy="{units(y)}" r="{units(shape.radius)}"'
@@ -208,7 +217,18 @@ class _Writer:
         else:
             self._group(shape, shared)
 
-    def _path(self, steps: str, paint: Paint | None) -> None:
+    def fill_in(self) -> None:
+        """Put the steps of packed points into their paths, all in one pass."""
+        try:
+            texts = packed_data([packed for _, packed in self._packed])
+        except ValueError:
+            units(float("nan"))
+        for (place, _), steps in zip(self._packed, texts, strict=True):
+            self.parts[place] = f'<path d="{steps}"'
+
+    def _path(self, steps: str | Packed[Any], paint: Paint | None) -> None:
+        if isinstance(steps, Packed):
+            self._packed.append((len(self.parts), steps))
         look = _paint(paint) if paint else ""
         if len(look) > _LEAST_SHARED:
             self._painted.append(len(self.parts) + 1)
@@ -265,6 +285,16 @@ class _Writer:
         """A gradient from the top to the foot of the shape it fills."""
         marks = "".join(f'<stop offset="{share:.3g}" stop-color="{colour}"/>' for share, colour in stops)
         self.definitions.append(f'<linearGradient id="{name}" x2="0" y2="1">{marks}</linearGradient>')
+
+
+def _steps(points: Iterable[Any], write: Callable[[Any], str]) -> str | Packed[Any]:
+    """Packed points as they are, for later; text of all others."""
+    return points if isinstance(points, Packed) else write(points)
+
+
+def _continues(shape: Shape | None, paint: Paint) -> bool:
+    """True for a path that goes on in the same paint."""
+    return isinstance(shape, Path) and shape.paint == paint
 
 
 _Look = tuple[str, str, str, str, str]

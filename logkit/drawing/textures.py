@@ -14,6 +14,7 @@ import numpy as np
 
 from logkit.drawing.ground import Array, Ground, LineSegment
 from logkit.drawing.noise import FINEST_MM, seed_of
+from logkit.drawing.packed import Points, Strokes
 from logkit.drawing.palette import stipple
 from logkit.drawing.shapes import Dots, Paint, Path, Point, Segment, Shape
 from logkit.drawing.strips import Window
@@ -130,14 +131,14 @@ def _dots(ground: Ground, style: Style, ink: str, lithic: bool, density: float) 
     held = ground.holds(x, y, needed)
     x, y, diameter = x[held], y[held], diameter[held]
     shapes: list[Shape] = []
+    places = np.column_stack((x, y))
     if lithic:
         angular = (diameter > 0.26) & (ground.random.random(x.size) < texture.triangles)
         shapes += _triangles(ground, x[angular], y[angular], diameter[angular], ink)
-        x, y, diameter = x[~angular], y[~angular], diameter[~angular]
+        places, diameter = places[~angular], diameter[~angular]
     for size in sorted(set(diameter.tolist())):
         own = diameter == size
-        points = tuple(zip(x[own].tolist(), y[own].tolist(), strict=True))
-        shapes.append(Dots(points, round(size, 2), ink))
+        shapes.append(Dots(Points(places[own]), round(size, 2), ink))
     return tuple(shapes)
 
 
@@ -167,12 +168,12 @@ def _strokes(ground: Ground, style: Style, ink: str, density: float) -> tuple[Sh
     across = x[:, None] + half[:, None] * np.array([-1.0, 0.0, 1.0])
     held = ground.holds_marks(across, np.repeat(y[:, None], 3, axis=1), texture.clear)
     x, y, half = x[held], y[held], half[held]
-    steps: list[Segment] = []
-    for left, right, level in zip((x - half).tolist(), (x + half).tolist(), y.tolist(), strict=True):
-        steps += [("M", (left, level)), ("L", (right, level))]
-    if not steps:
+    if not x.size:
         return ()
-    return (Path(tuple(steps), Paint(stroke=ink, width=style.lines.stroke, cap="round")),)
+    ends = np.empty((x.size, 2, 2))
+    ends[:, 0, 0], ends[:, 1, 0] = x - half, x + half
+    ends[:, :, 1] = y[:, None]
+    return (Path(Strokes(ends.reshape(-1, 2)), Paint(stroke=ink, width=style.lines.stroke, cap="round")),)
 
 
 def _clasts(ground: Ground, style: Style) -> tuple[Shape, ...]:
