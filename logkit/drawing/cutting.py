@@ -6,6 +6,7 @@ Geometry only. All lines of a bed are cut in one pass, since array code pays per
 from __future__ import annotations
 
 import math
+from collections.abc import Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -56,17 +57,31 @@ def cut(points: Array, owner: NDArray[np.int64], polygon: Array) -> Runs:
     -------
     the parts, in order along their lines; rests too short to see are left out
     """
+    found = cut_each(points, owner, np.zeros(len(points), dtype=np.int64), [polygon])
+    return Runs(found.points, found.starts.tolist(), found.owners.tolist())
+
+
+@dataclass(frozen=True, slots=True)
+class ManyRuns:
+    """Polylines of many beds one after the other, as `Runs` with arrays of numbers."""
+
+    points: Array
+    starts: NDArray[np.int64]
+    owners: NDArray[np.int64]
+
+
+def cut_each(
+    points: Array, owner: NDArray[np.int64], bed: NDArray[np.int64], polygons: Sequence[Array]
+) -> ManyRuns:
+    """As `cut`, with lines of many beds, each cut to the polygon of its own bed; `bed` is the number of each point's."""
     # places as complex numbers: one array to index where there would be two
     place = np.ascontiguousarray(points).view(np.complex128)[:, 0]
-    corners = np.ascontiguousarray(polygon).view(np.complex128)[:, 0]
-    piece = np.flatnonzero(owner[1:] == owner[:-1])
+    corners = _even(polygons)
+    piece = (owner[1:] == owner[:-1]).nonzero()[0]
     start = place[piece]
     step = place[piece + 1] - start
-    owner = owner[piece]
-    at_piece, along = _crossings(start, step, corners)
-    if not at_piece.size:
-        kept = np.flatnonzero(_inside(start + 0.5 * step, corners))
-        return _joined(owner, start, start + step, kept)
+    owner, bed = owner[piece], bed[piece]
+    at_piece, along = _crossings(start, step, corners, bed)
     # every piece is split at its crossings; a part is inside when its middle is
     which = np.concatenate((np.arange(piece.size), at_piece))
     share = np.concatenate((np.zeros(piece.size), along))
@@ -76,8 +91,23 @@ def cut(points: Array, owner: NDArray[np.int64], polygon: Array) -> Runs:
     stop[:-1] = np.where(which[1:] == which[:-1], share[1:], 1.0)
     origin, vector = start[which], step[which]
     first, last = origin + share * vector, origin + stop * vector
-    kept = np.flatnonzero((stop - share > 1e-9) & _inside(0.5 * (first + last), corners))
+    bed = bed[which]
+    crossed = np.zeros(len(polygons), dtype=bool)
+    crossed[bed[(share > 0).nonzero()[0]]] = True
+    middle = np.where(crossed[bed], 0.5 * (first + last), origin + 0.5 * vector)
+    kept = ((stop - share > 1e-9) & _inside(middle, corners, bed)).nonzero()[0]
     return _joined(owner[which], first, last, kept)
+
+
+def _even(polygons: Sequence[Array]) -> Places:
+    """Polygons as columns of equal length: the last corner again where one has fewer."""
+    longest = max(map(len, polygons))
+    corners = np.empty((len(polygons), longest), dtype=np.complex128)
+    for row, polygon in zip(corners, polygons, strict=True):
+        places = np.ascontiguousarray(polygon, dtype=float).view(np.complex128)[:, 0]
+        row[: places.size] = places
+        row[places.size :] = places[-1]
+    return np.ascontiguousarray(corners.T)
 
 
 def inside(points: Array, polygon: Array) -> NDArray[np.bool_]:
@@ -85,39 +115,42 @@ def inside(points: Array, polygon: Array) -> NDArray[np.bool_]:
     places, corners = (
         np.ascontiguousarray(a, dtype=float).view(np.complex128)[:, 0] for a in (points, polygon)
     )
-    return _inside(places, corners)
+    return _inside(places, corners[:, None], np.zeros(places.size, dtype=np.int64))
 
 
-def _inside(places: Places, corners: Places) -> NDArray[np.bool_]:
-    x, y = places.real[:, None], places.imag[:, None]
+def _inside(places: Places, corners: Places, bed: NDArray[np.int64]) -> NDArray[np.bool_]:
+    x, y = places.real, places.imag
     after = np.concatenate((corners[1:], corners[:1]))
     ax, ay, by = corners.real, corners.imag, after.imag
     with np.errstate(divide="ignore", invalid="ignore", over="ignore", under="ignore"):
         slope = (after.real - ax) / (by - ay)
-        crosses = x < ax + (y - ay) * slope
-    crosses &= (ay > y) != (by > y)
-    return np.logical_xor.reduce(crosses, axis=1)
+        ay = ay[:, bed]
+        crosses = x < ax[:, bed] + (y - ay) * slope[:, bed]
+    crosses &= (ay > y) != (by[:, bed] > y)
+    return np.logical_xor.reduce(crosses, axis=0)
 
 
-def _crossings(start: Places, step: Places, corners: Places) -> tuple[NDArray[np.int64], Array]:
+def _crossings(
+    start: Places, step: Places, corners: Places, bed: NDArray[np.int64]
+) -> tuple[NDArray[np.int64], Array]:
     """Pieces that cross an edge of the polygon, and the share of the piece at which they do."""
     edge = np.concatenate((corners[1:], corners[:1])) - corners
-    ex, ey = edge.real, edge.imag
-    sx, sy = step.real[:, None], step.imag[:, None]
-    gap = corners - start[:, None]
-    gx, gy = gap.real, gap.imag
+    ex, ey = edge.real[:, bed], edge.imag[:, bed]
+    sx, sy = step.real, step.imag
+    gx, gy = corners.real[:, bed] - start.real, corners.imag[:, bed] - start.imag
     with np.errstate(divide="ignore", invalid="ignore", over="ignore", under="ignore"):
         scale = 1.0 / (sx * ey - sy * ex)
         t = (gx * ey - gy * ex) * scale
         u = (gx * sy - gy * sx) * scale
-    pieces, edges = np.nonzero((t > 0) & (t < 1) & (u >= 0) & (u <= 1))
-    return pieces, t[pieces, edges]
+    edges, pieces = ((t > 0) & (t < 1) & (u >= 0) & (u <= 1)).nonzero()
+    return pieces, t[edges, pieces]
 
 
-def _joined(owner: NDArray[np.int64], first: Places, last: Places, kept: NDArray[np.int64]) -> Runs:
+def _joined(owner: NDArray[np.int64], first: Places, last: Places, kept: NDArray[np.int64]) -> ManyRuns:
     """Parts that are kept and follow each other, as polylines of their line."""
     if not kept.size:
-        return Runs(np.empty((0, 2)), [], [])
+        none = np.empty(0, dtype=np.int64)
+        return ManyRuns(np.empty((0, 2)), none, none)
     first, last, owner = first[kept], last[kept], owner[kept]
     fresh = np.ones(kept.size, dtype=bool)
     fresh[1:] = (kept[1:] != kept[:-1] + 1) | (owner[1:] != owner[:-1])
@@ -131,7 +164,7 @@ def _joined(owner: NDArray[np.int64], first: Places, last: Places, kept: NDArray
     place[np.arange(last.size) + np.cumsum(fresh)] = last
     starts = begins + np.arange(begins.size)
     place[starts] = first[begins]
-    return Runs(place.view(np.float64).reshape(-1, 2), starts.tolist(), owner[begins].tolist())
+    return ManyRuns(place.view(np.float64).reshape(-1, 2), starts, owner[begins])
 
 
 def simplified(line: Array) -> Array:

@@ -18,7 +18,7 @@ from typing import Any
 
 import numpy as np
 
-from logkit.drawing.cutting import Runs, inside
+from logkit.drawing.cutting import inside
 from logkit.drawing.data_file import DataText, Reader, field_types, read_data
 from logkit.drawing.ground import Array, LineSegment
 from logkit.drawing.laminae import Folds, Laminae, Ripples
@@ -28,7 +28,7 @@ from logkit.drawing.objects import PLACINGS, Objects, Placed
 from logkit.drawing.packed import Polylines
 from logkit.drawing.shapes import Circle, Lines, Paint, Path, Point, Shape
 from logkit.drawing.strata import FORMS, ROLES, Box, Domes, Foresets, Troughs, Way
-from logkit.drawing.strips import Window, window
+from logkit.drawing.strips import Window, window, window_lines
 from logkit.drawing.style import Style
 from logkit.errors import ArgumentError
 from logkit.vocabulary import vocabulary
@@ -165,21 +165,54 @@ def structure_lines(
     ------
     ArgumentError : the box has no area or is not finite
     """
-    if not np.isfinite(box).all() or box[2] <= box[0] or box[3] <= box[1]:
-        raise ArgumentError("box", box, "x0, y of the top, x1, y of the base with some area")
-    drawn = motif(term)
-    term_seed = seed_of(term)
-    x0, top, x1, base = box
-    polygon = np.asarray(outline or [(x0, top), (x1, top), (x1, base), (x0, base)], dtype=float)
+    return structures_lines([Filling(term, box, set_mm, seed, outline)], style)[0]
+
+
+@dataclass(frozen=True, slots=True)
+class Filling:
+    """A structure to draw in its bed; see `structure_lines`."""
+
+    term: str
+    box: Box
+    set_mm: float | None
+    seed: int
+    outline: Sequence[Point] | None = None
+
+
+def structures_lines(fillings: Sequence[Filling], style: Style) -> list[StructureLines]:
+    """Many structures, each drawn in its bed; the lines of all are cut together."""
     factor = style.texture.magnify
-    shapes: list[Shape] = []
-    piece: Window | None = None
-    if drawn.fill is not None:
-        piece = window(drawn.fill, box, set_mm, factor, seed, term_seed)
-        shapes += _painted(*piece.lines(polygon), style)
+    polygons: list[Array] = []
+    pieces: list[Window | None] = []
+    for filling in fillings:
+        x0, top, x1, base = box = filling.box
+        if not all(map(math.isfinite, box)) or x1 <= x0 or base <= top:
+            raise ArgumentError("box", box, "x0, y of the top, x1, y of the base with some area")
+        corners = filling.outline or [(x0, top), (x1, top), (x1, base), (x0, base)]
+        polygons.append(np.array(corners, dtype=float))
+        way = motif(filling.term).fill
+        pieces.append(
+            way and window(way, box, filling.set_mm, factor, filling.seed, seed_of(filling.term))
+        )
+    there = [number for number, piece in enumerate(pieces) if piece is not None]
+    found = window_lines([piece for piece in pieces if piece is not None], [polygons[n] for n in there])
+    lines = dict(zip(there, found, strict=True))
+    return [
+        _structure(filling, pieces[n], polygons[n], lines.get(n, {}), style)
+        for n, filling in enumerate(fillings)
+    ]
+
+
+def _structure(
+    filling: Filling, piece: Window | None, polygon: Array, lines: Mapping[str, Polylines], style: Style
+) -> StructureLines:
+    """One structure: its lines painted, then its objects."""
+    drawn, factor = motif(filling.term), style.texture.magnify
+    shapes = _painted(lines, style)
     clear: list[LineSegment] = []
     if drawn.objects is not None:
-        random = np.random.default_rng(seed ^ term_seed)
+        random = np.random.default_rng(filling.seed ^ seed_of(filling.term))
+        x0, top, x1, base = filling.box
         inner = (x0 / factor, top / factor, x1 / factor, base / factor)
         places = [placed.times(factor) for placed in drawn.objects.places(inner, random)]
         made, clear = _objects_in(drawn.mark or drawn.glyph, places, polygon, style)
@@ -187,25 +220,22 @@ def structure_lines(
     return StructureLines(tuple(shapes), tuple(clear), piece)
 
 
-def _painted(found: Sequence[Runs], roles: Sequence[str], style: Style) -> list[Shape]:
+def _painted(lines: Mapping[str, Polylines], style: Style) -> list[Shape]:
     """Lines of one role as one shape each."""
     widths = style.lines
     weight = {"set": widths.set, "crest": widths.crest, "drape": widths.drape}
     colour = {"set": style.colours.ink, "drape": style.colours.drape}
-    if not roles:
-        return []
-    points = np.concatenate([runs.points for runs in found])
-    sizes = np.concatenate([np.diff(runs.starts, append=len(runs.points)) for runs in found if runs.starts])
-    names = np.array(roles)
-    shapes: list[Shape] = []
-    for role in sorted(set(roles)):
-        mine = names == role
-        own = sizes[mine]
-        chosen = points if mine.all() else points[np.repeat(mine, sizes)]
-        packed = Polylines(chosen, np.cumsum(own) - own)
-        ink, width = colour.get(role, style.colours.structure), weight.get(role, widths.lamina)
-        shapes.append(Lines(packed, Paint(stroke=ink, width=width, cap="round")))
-    return shapes
+    return [
+        Lines(
+            own,
+            Paint(
+                stroke=colour.get(role, style.colours.structure),
+                width=weight.get(role, widths.lamina),
+                cap="round",
+            ),
+        )
+        for role, own in lines.items()
+    ]
 
 
 def _objects_in(

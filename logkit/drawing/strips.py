@@ -9,20 +9,25 @@ and `laminae`, cutting in `cutting`, painting in `motifs`.
 from __future__ import annotations
 
 import math
+from collections.abc import Sequence
 from dataclasses import dataclass
 from functools import cached_property, lru_cache
 
 import numpy as np
 from numpy.typing import NDArray
 
-from logkit.drawing.cutting import Runs, cut, simplified
+from logkit.drawing.cutting import ManyRuns, cut_each, simplified
 from logkit.drawing.ground import Array, Mask
-from logkit.drawing.strata import Box, Way
+from logkit.drawing.packed import Polylines
+from logkit.drawing.strata import ROLES, Box, Way
 
 HEIGHT_STEP = 1.2
 """Ratio of one class of heights to the next."""
 
 LEAST_HEIGHT_MM = 0.5
+
+_NAMES = tuple(sorted(ROLES))
+_RANKS = {role: rank for rank, role in enumerate(_NAMES)}
 
 WIDTH_STEP_MM = 24.0
 SPARE_MM = 24.0
@@ -51,6 +56,7 @@ class Strip:
         made = sorted((s for s in made if len(s.points) > 1), key=lambda stratum: stratum.role)
         lines = [simplified(stratum.points) for stratum in made]
         self.roles = [stratum.role for stratum in made]
+        self.ranks = np.array([_RANKS[role] for role in self.roles], dtype=np.int64)
         self.points = np.concatenate(lines) if lines else np.empty((0, 2))
         sizes = [len(line) for line in lines]
         self.owner = np.repeat(np.arange(len(lines)), sizes)
@@ -112,28 +118,13 @@ class Window:
     shift: float
     factor: float
 
-    def lines(self, polygon: Array) -> tuple[list[Runs], list[str]]:
-        """The window's lines on the page inside a polygon, and the role of each in order."""
-        strip, (x0, top, x1, base) = self.strip, self.box
+    def shown(self, polygon: Array) -> tuple[NDArray[np.bool_], NDArray[np.bool_]]:
+        """Which lines of the strip show in the window, and which of them need no cutting to the polygon."""
+        strip, (x0, _, x1, _) = self.strip, self.box
         stop = self.shift + (x1 - x0) / self.factor
         shown = (strip.last > self.shift) & (strip.first < stop)
         free = self.shift + (_free_right(polygon, self.box) - x0) / self.factor
-        whole = shown & strip.within & (strip.first >= self.shift) & (strip.last <= free)
-        found = []
-        for chosen, is_whole in ((whole, True), (shown & ~whole, False)):
-            index = np.flatnonzero(chosen[strip.owner])
-            if not index.size:
-                continue
-            points, owner = strip.points.take(index, axis=0), strip.owner[index]
-            points -= (self.shift, 0.0)
-            points *= (self.factor, (base - top) / strip.height)
-            points += (x0, top)
-            if is_whole:
-                starts = np.concatenate(([0], np.flatnonzero(owner[1:] != owner[:-1]) + 1))
-                found.append(Runs(points, starts.tolist(), owner[starts].tolist()))
-            else:
-                found.append(cut(points, owner, polygon))
-        return found, [strip.roles[owner] for runs in found for owner in runs.owners]
+        return shown, shown & strip.within & (strip.first >= self.shift) & (strip.last <= free)
 
     def near(self, x: Array, y: Array, margin: Array) -> Mask:
         """True for places of the page within `margin` mm of a line."""
@@ -157,6 +148,99 @@ def _free_right(polygon: Array, box: Box) -> float:
     right = float(x[x > x0 + 0.4 * (x1 - x0)].min(initial=x1))
     in_the_way = (x > x0 + 1e-6) & (x < right - 1e-6) & (y > top + 1e-6) & (y < base - 1e-6)
     return x0 if in_the_way.any() else right
+
+
+def window_lines(windows: Sequence[Window], polygons: Sequence[Array]) -> list[dict[str, Polylines]]:
+    """The lines of each window on the page inside its polygon, by role in order of the alphabet.
+
+    The windows of a sheet are taken together, since array code pays per call.
+    """
+    if not windows:
+        return []
+    parts = _Parts(windows, polygons)
+    runs = [parts.whole()]
+    for size in sorted(set(parts.size_classes)):
+        runs.append(parts.cut(size))
+    return _by_role(windows, runs)
+
+
+class _Parts:
+    """Points of the lines that windows show, whole ones and ones to cut apart."""
+
+    def __init__(self, windows: Sequence[Window], polygons: Sequence[Array]) -> None:
+        self.windows, self.polygons = windows, polygons
+        self.size_classes = [len(polygon).bit_length() for polygon in polygons]
+        self._whole: list[tuple[int, NDArray[np.int64]]] = []
+        self._cut: list[tuple[int, NDArray[np.int64]]] = []
+        for number, (piece, polygon) in enumerate(zip(windows, polygons, strict=True)):
+            shown, whole = piece.shown(polygon)
+            of_line = piece.strip.owner
+            self._whole.append((number, whole[of_line].nonzero()[0]))
+            self._cut.append((number, (shown & ~whole)[of_line].nonzero()[0]))
+
+    def _placed(
+        self, chosen: Sequence[tuple[int, NDArray[np.int64]]]
+    ) -> tuple[Array, NDArray[np.int64], NDArray[np.int64]]:
+        """Points on the page, the line of each (window and line in one number), and its window."""
+        pieces = [self.windows[number] for number, _ in chosen]
+        numbers = np.repeat([number for number, _ in chosen], [index.size for _, index in chosen])
+        rows = np.repeat(np.arange(len(chosen)), [index.size for _, index in chosen])
+        strips = [piece.strip for piece in pieces]
+        points = np.concatenate([s.points.take(i, axis=0) for s, (_, i) in zip(strips, chosen, strict=True)])
+        owner = np.concatenate([s.owner[i] for s, (_, i) in zip(strips, chosen, strict=True)])
+        points -= np.array([(piece.shift, 0.0) for piece in pieces])[rows]
+        points *= np.array([(p.factor, (p.box[3] - p.box[1]) / p.strip.height) for p in pieces])[rows]
+        points += np.array([piece.box[:2] for piece in pieces])[rows]
+        return points, owner + numbers * _MOST_LINES, numbers
+
+    def whole(self) -> ManyRuns:
+        """Lines that need no cutting."""
+        points, owner, _ = self._placed(self._whole)
+        fresh = np.ones(owner.size, dtype=bool)
+        fresh[1:] = owner[1:] != owner[:-1]
+        starts = fresh.nonzero()[0]
+        return ManyRuns(points, starts, owner[starts])
+
+    def cut(self, size: int) -> ManyRuns:
+        """The parts of the others, for the polygons of one class of size."""
+        chosen = [pair for pair in self._cut if self.size_classes[pair[0]] == size and pair[1].size]
+        if not chosen:
+            none = np.empty(0, dtype=np.int64)
+            return ManyRuns(np.empty((0, 2)), none, none)
+        points, owner, _ = self._placed(chosen)
+        rows = np.repeat(np.arange(len(chosen)), [index.size for _, index in chosen])
+        return cut_each(points, owner, rows, [self.polygons[number] for number, _ in chosen])
+
+
+_MOST_LINES = 1 << 32
+
+
+def _by_role(windows: Sequence[Window], found: Sequence[ManyRuns]) -> list[dict[str, Polylines]]:
+    """Runs sorted by window and role, in the order found within them."""
+    points = np.concatenate([runs.points for runs in found])
+    offsets = np.cumsum([0, *(len(runs.points) for runs in found)])
+    starts = np.concatenate([runs.starts + offset for runs, offset in zip(found, offsets[:-1], strict=True)])
+    owners = np.concatenate([runs.owners for runs in found])
+    made: list[dict[str, Polylines]] = [{} for _ in windows]
+    if not starts.size:
+        return made
+    bounds = np.concatenate(([0], np.cumsum([piece.strip.ranks.size for piece in windows])))
+    ranks = np.concatenate([piece.strip.ranks for piece in windows])
+    number = owners // _MOST_LINES
+    key = number * len(_NAMES) + ranks[bounds[number] + owners % _MOST_LINES]
+    order = np.argsort(key, kind="stable")
+    sizes = np.diff(starts, append=len(points))[order]
+    begins = np.cumsum(sizes) - sizes
+    points = points[np.repeat(starts[order] - begins, sizes) + np.arange(len(points))]
+    key = key[order]
+    heads = np.flatnonzero(np.diff(key, prepend=-1))
+    first_run = [*heads.tolist(), key.size]
+    first_point = [*begins[heads].tolist(), len(points)]
+    for place, label in enumerate(key[heads].tolist()):
+        first, last = first_point[place], first_point[place + 1]
+        own = begins[first_run[place] : first_run[place + 1]] - first
+        made[label // len(_NAMES)][_NAMES[label % len(_NAMES)]] = Polylines(points[first:last], own)
+    return made
 
 
 def window(way: Way, box: Box, set_mm: float | None, factor: float, seed: int, term_seed: int) -> Window:

@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Sequence
+from dataclasses import dataclass
 from math import isfinite
 
 import numpy as np
@@ -81,6 +82,26 @@ def bed_texture(
         return rock(ground, style, ink, _loose_grains)
     flecks = organic_flecks(ground, style, ink) if family == "organic_mud" else ()
     return flecks + _loose_grains(ground, style, ink, lithic=family == "lithic")
+
+
+@dataclass(frozen=True, slots=True)
+class BedGround:
+    """A bed to give marks to; see `bed_texture`."""
+
+    outline: Sequence[Point]
+    knots: Sequence[tuple[float, float]]
+    family: str
+    seed: int
+    clear: Sequence[LineSegment] = ()
+    windows: Sequence[Window] = ()
+
+
+def bed_textures(beds: Sequence[BedGround], style: Style) -> list[tuple[Shape, ...]]:
+    """The marks of many beds."""
+    return [
+        bed_texture(b.outline, b.knots, b.family, style, seed=b.seed, clear=b.clear, windows=b.windows)
+        for b in beds
+    ]
 
 
 def dot_diameter(phi: Array, texture: TextureStyle) -> Array:

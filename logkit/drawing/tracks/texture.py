@@ -6,16 +6,15 @@ The marks themselves come from `textures` and `motifs`; samples and markers besi
 from __future__ import annotations
 
 import zlib
+from collections.abc import Iterator
 
-from logkit.drawing.ground import LineSegment
 from logkit.drawing.metrics import shorten
-from logkit.drawing.motifs import structure_lines
+from logkit.drawing.motifs import Filling, structures_lines
 from logkit.drawing.outline import Outline, base_path
 from logkit.drawing.palette import fill
 from logkit.drawing.scene import MeasuredBed, Scene, Tally, View, position_unit, structure_label
-from logkit.drawing.shapes import Gradient, Group, Paint, Path, Segment, Shape, Text, polyline
-from logkit.drawing.strips import Window
-from logkit.drawing.textures import bed_texture
+from logkit.drawing.shapes import Gradient, Group, Paint, Path, Point, Segment, Shape, Text, polyline
+from logkit.drawing.textures import BedGround, bed_textures
 from logkit.vocabulary.terms import vocabulary
 
 DASH = (1.2, 0.8)
@@ -30,6 +29,7 @@ def draw(scene: Scene, view: View, tally: Tally) -> list[Shape]:
     """Beds from the lowest to the highest, so that a scoured base covers what it cut into."""
     style = scene.style
     outlines = view.outlines
+    insides = _insides(scene, view, tally)
     beds: list[Shape] = []
     breaks: list[Segment] = []
     for place, (item, span) in enumerate(view.items()):
@@ -38,7 +38,7 @@ def draw(scene: Scene, view: View, tally: Tally) -> list[Shape]:
             beds.append(_gap(scene, view, item, span, tally))
             continue
         below = outlines.get(view.beds[place - 1].index) if place else None
-        beds.append(_bed(scene, view, item, outline, below, tally))
+        beds.append(_bed(scene, view, item, outline, below, insides.get(item.index, []), tally))
         if outline.scoured:
             tally.marks.add("erosive")
             breaks.append(("M", (outline.profile[0][0] + 0.6, outline.y_base)))
@@ -74,7 +74,13 @@ def _right_end(scene: Scene) -> float:
 
 
 def _bed(
-    scene: Scene, view: View, item: MeasuredBed, outline: Outline, below: Outline | None, tally: Tally
+    scene: Scene,
+    view: View,
+    item: MeasuredBed,
+    outline: Outline,
+    below: Outline | None,
+    inside: list[Shape],
+    tally: Tally,
 ) -> Group:
     style = scene.style
     tall = outline.y_base - outline.y_top
@@ -82,8 +88,7 @@ def _bed(
     children: list[Shape] = [_flat(scene, item, outline, closed, tally)]
     if item.family:
         tally.families.add(item.family)
-        if tall >= style.texture.least_bed:
-            children.extend(_inside(scene, view, item, outline, tally))
+    children.extend(inside)
     if tall >= 0.4:
         dash = () if item.sized else (0.9, 0.6)
         if not item.sized:
@@ -129,39 +134,53 @@ def _flat(
     return Path(closed, Paint(fill=f"gradient:{name}"))
 
 
-def _inside(scene: Scene, view: View, item: MeasuredBed, outline: Outline, tally: Tally) -> list[Shape]:
-    """Structure lines, and the grains that keep clear of them."""
+def _insides(scene: Scene, view: View, tally: Tally) -> dict[int, list[Shape]]:
+    """Structure lines, and the grains that keep clear of them, of all beds of a sheet together."""
     style = scene.style
-    lines: list[Shape] = []
-    clear: list[LineSegment] = []
-    windows: list[Window] = []
-    polygon = outline.polygon()
+    beds: list[tuple[MeasuredBed, Outline, list[Point], int, int]] = []
+    fillings: list[Filling] = []
+    for item in view.beds:
+        outline = view.outlines.get(item.index)
+        if outline is None or not item.family:
+            continue
+        if outline.y_base - outline.y_top >= style.texture.least_bed:
+            polygon, first = outline.polygon(), len(fillings)
+            fillings.extend(_fillings(scene, view, item, outline, polygon, tally))
+            beds.append((item, outline, polygon, first, len(fillings)))
+    made = structures_lines(fillings, style)
+    insides: dict[int, list[Shape]] = {}
+    textures: list[BedGround] = []
+    for item, outline, polygon, first, last in beds:
+        own = made[first:last]
+        insides[item.index] = [line for one in own for line in one.lines]
+        clear = [segment for one in own for segment in one.clear]
+        windows = [one.window for one in own if one.window is not None]
+        textures.append(BedGround(polygon, outline.sizes, item.family, item.seed, clear, windows))
+    if style.texture.dots:
+        for (item, *_), marks in zip(beds, bed_textures(textures, style), strict=True):
+            insides[item.index] = [*marks, *insides[item.index]]
+    return insides
+
+
+def _fillings(
+    scene: Scene, view: View, item: MeasuredBed, outline: Outline, polygon: list[Point], tally: Tally
+) -> Iterator[Filling]:
+    """The structures of a bed that are tall enough to draw."""
     set_m = item.bed.set_thickness.central_m if item.bed.set_thickness else None
     set_mm = set_m * 1000 / scene.scale if set_m else None
     boxes = [(layer.term, layer.base_m, layer.top_m) for layer in item.layers if layer.term]
     boxes += [(term, item.bed.base_m, item.bed.top_m) for term in item.objects]
+    right = max(x for x, _ in outline.profile)
     for number, (term, base_m, top_m) in enumerate(boxes):
         span = view.span(base_m, top_m)
         if span is None:
             continue
         tally.structures[term] = tally.structures.get(term, 0) + 1
-        if span[0] - span[1] < style.texture.least_segment:
+        if span[0] - span[1] < scene.style.texture.least_segment:
             tally.left_out["structures drawn inside a bed"] += 1
             continue
-        right = max(x for x, _ in outline.profile)
         box = (outline.x0, span[1], right, span[0])
-        made = structure_lines(term, box, set_mm, item.seed + number, style, polygon)
-        lines.extend(made.lines)
-        clear.extend(made.clear)
-        if made.window is not None:
-            windows.append(made.window)
-    marks: list[Shape] = []
-    if style.texture.dots:
-        made_marks = bed_texture(
-            polygon, outline.sizes, item.family, style, seed=item.seed, clear=clear, windows=windows
-        )
-        marks.extend(made_marks)
-    return marks + lines
+        yield Filling(term, box, set_mm, item.seed + number, polygon)
 
 
 def _contact(
