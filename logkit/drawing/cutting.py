@@ -73,7 +73,7 @@ class ManyRuns:
 def cut_each(
     points: Array, owner: NDArray[np.int64], bed: NDArray[np.int64], polygons: Sequence[Array]
 ) -> ManyRuns:
-    """As `cut`, with lines of many beds, each cut to the polygon of its own bed; `bed` is the number of each point's."""
+    """As `cut`, with lines of many beds, each cut to the polygon of its own bed; `bed` is each point's."""
     # places as complex numbers: one array to index where there would be two
     place = np.ascontiguousarray(points).view(np.complex128)[:, 0]
     corners = _even(polygons)

@@ -59,6 +59,15 @@ class Ground:
         twice = sum(a[0] * b[1] - a[1] * b[0] for a, b in zip(points, turned, strict=True))
         self.area = 0.5 * abs(twice)
         self.phi_range = (min(phi for _, phi in ordered), max(phi for _, phi in ordered))
+        self.windows = windows
+        self._raster: Mask | None = None
+        self._cell = _CELL_MM
+        if len(clear):
+            self._mark(np.asarray(clear, dtype=float).reshape(-1, 4))
+
+    @cached_property
+    def edges(self) -> Array:
+        """Start, extent, y of the end, slope and inverse squared length of each edge that has a length: (7, edges)."""
         ax, ay = self.outline[:, 0], self.outline[:, 1]
         bx, by = np.concatenate((ax[1:], ax[:1])), np.concatenate((ay[1:], ay[:1]))
         long = (ax != bx) | (ay != by)
@@ -66,12 +75,17 @@ class Ground:
             ax, ay, bx, by = ax[long], ay[long], bx[long], by[long]
         ex, ey = bx - ax, by - ay
         with np.errstate(divide="ignore", invalid="ignore"):
-            self._edges = (ax, ay, ex, ey, by, ex / ey, 1.0 / (ex * ex + ey * ey))
-        self._windows = windows
-        self._raster: Mask | None = None
-        self._cell = _CELL_MM
-        if len(clear):
-            self._mark(np.asarray(clear, dtype=float).reshape(-1, 4))
+            return np.array((ax, ay, ex, ey, by, ex / ey, 1.0 / (ex * ex + ey * ey)))
+
+    @property
+    def has_raster(self) -> bool:
+        """True when lines or marks to keep off have been marked one by one."""
+        return self._raster is not None
+
+    @property
+    def has_lines(self) -> bool:
+        """True when there is anything to keep off inside the outline."""
+        return self.has_raster or bool(self.windows)
 
     @cached_property
     def random(self) -> Chance:
@@ -116,12 +130,12 @@ class Ground:
         if not x.size:
             return np.zeros(x.shape, dtype=bool)
         held = self._inside(x, y, margin)
-        if self._raster is not None or self._windows:
+        if self._raster is not None or self.windows:
             index = np.flatnonzero(held)
             margins = np.broadcast_to(np.asarray(margin, dtype=float), x.shape)[index]
-            near = [piece.near(x[index], y[index], margins) for piece in self._windows]
+            near = [piece.near(x[index], y[index], margins) for piece in self.windows]
             if self._raster is not None:
-                near.append(self._near(x[index], y[index], margins))
+                near.append(self.near_marks(x[index], y[index], margins))
             held[index] = ~np.logical_or.reduce(near)
         return held
 
@@ -132,7 +146,7 @@ class Ground:
 
     def _inside(self, x: Array, y: Array, margin: Array | float) -> Mask:
         """Even-odd test and distance from all edges at once; the edges are few."""
-        ax, ay, ex, ey, by, slope, shrink = self._edges
+        ax, ay, ex, ey, by, slope, shrink = self.edges
         y = y[:, None]
         dx, dy = x[:, None] - ax, y - ay
         with np.errstate(invalid="ignore"):
@@ -144,7 +158,8 @@ class Ground:
         near = (dx * dx + dy * dy).min(axis=1)
         return np.asarray(np.logical_xor.reduce(crosses, axis=1) & (near >= np.square(margin)))
 
-    def _near(self, x: Array, y: Array, margin: Array) -> Mask:
+    def near_marks(self, x: Array, y: Array, margin: Array) -> Mask:
+        """True for places within `margin` mm of lines and marks that were marked one by one."""
         raster = self._grid()
         column = ((x - self.box[0]) / self._cell).astype(int) + _PAD
         row = ((y - self.box[1]) / self._cell).astype(int) + _PAD

@@ -7,8 +7,11 @@ Which mark stands at a point is decided in `textures` and `motifs`.
 
 from __future__ import annotations
 
+import itertools
 import math
 import zlib
+from bisect import bisect_left
+from collections.abc import Sequence
 from functools import cache
 from pathlib import Path
 
@@ -43,11 +46,24 @@ class Chance:
     def random(self, shape: int | tuple[int, ...]) -> Array:
         """The next numbers, as an array of a shape."""
         count = shape if isinstance(shape, int) else math.prod(shape)
-        first, self._at = self._at, (self._at + count) % _TABLE_SIZE
+        first = self.skip(count)
         table = _table()
         if first + count <= _TABLE_SIZE:
             return table[first : first + count].reshape(shape)
         return table.take(np.arange(first, first + count), mode="wrap").reshape(shape)
+
+    def skip(self, count: int) -> int:
+        """Take the next numbers without looking at them; where they begin in the table."""
+        first, self._at = self._at, (self._at + count) % _TABLE_SIZE
+        return first
+
+
+def drawn_for_each(chances: Sequence[Chance], counts: NDArray[np.int64]) -> Array:
+    """So many numbers from each source, one after the other."""
+    ends = np.cumsum(counts)
+    first = [chance.skip(count) for chance, count in zip(chances, counts.tolist(), strict=True)]
+    places = np.repeat(np.array(first, dtype=np.int64) - (ends - counts), counts) + np.arange(counts.sum())
+    return _table().take(places, mode="wrap")
 
 
 @cache
@@ -88,18 +104,67 @@ def scatter(
     -------
     x, y (mm) and the spacing (mm) up to which each point belongs to the pattern
     """
+    x, y, rank, _ = scatter_each([box], [least_spacing], [seed])
+    return x, y, rank
+
+
+@cache
+def _shelf() -> tuple[Array, tuple[list[float], ...], tuple[int, ...]]:
+    """All levels of the tile as columns of one array, heights of each as a list, and where each begins."""
+    tiles = _tiles()
+    starts = np.cumsum([0, *(tile[1].size for tile in tiles[:-1])])
+    columns = np.concatenate([np.array(tile[1:]) for tile in tiles], axis=1)
+    return columns, tuple(tile[2].tolist() for tile in tiles), tuple(starts.tolist())
+
+
+def scatter_each(
+    boxes: Sequence[tuple[float, float, float, float]], spacings: Sequence[float], seeds: Sequence[int]
+) -> tuple[Array, Array, Array, NDArray[np.int64]]:
+    """As `scatter` for many boxes: x, y, rank of the points of all, and how many each box has."""
+    columns, heights, begins = _shelf()
+    firsts, sizes, moves = [], [], []
+    others: dict[int, tuple[Array, Array, Array]] = {}
+    for number, ((x0, y0, x1, y1), spacing, seed) in enumerate(zip(boxes, spacings, seeds, strict=True)):
+        level = max((place for place, least in enumerate(_LEVELS) if least <= spacing), default=0)
+        along, up = (seed * 0.754877666) % 1.0, (seed * 0.569840291) % 1.0
+        first = last = 0
+        dx = dy = 0.0
+        if x1 - x0 <= TILE_MM and y1 - y0 <= TILE_MM:
+            # a box that the tile can hold is laid inside it: no seam, one look
+            dx, dy = x0 - along * (TILE_MM - x1 + x0), y0 - up * (TILE_MM - y1 + y0)
+            first, last = bisect_left(heights[level], y0 - dy), bisect_left(heights[level], y1 - dy)
+        else:
+            others[number] = _tiled((x0, y0, x1, y1), level, along, up)
+        firsts.append(first + begins[level])
+        sizes.append(last - first)
+        moves.append((dx, dy, x0, x1))
+    size = np.array(sizes)
+    ends = np.cumsum(size)
+    of = np.repeat(np.arange(size.size), size)
+    index = np.repeat(np.array(firsts) - (ends - size), size) + np.arange(of.size)
+    dx, dy, x0, x1 = np.array(moves).T
+    x = columns[0].take(index) + dx[of]
+    held = ((x >= x0[of]) & (x <= x1[of])).nonzero()[0]
+    of, index = of[held], index[held]
+    x, y, rank = x[held], columns[1].take(index) + dy[of], columns[2].take(index) / _RANK_FACTOR
+    counts = np.bincount(of, minlength=size.size)
+    if not others:
+        return x, y, rank, counts
+    bounds = [0, *np.cumsum(counts).tolist()]
+    parts = [
+        others.get(number) or (x[first:last], y[first:last], rank[first:last])
+        for number, (first, last) in enumerate(itertools.pairwise(bounds))
+    ]
+    x, y, rank = (np.concatenate(column) for column in zip(*parts, strict=True))
+    return x, y, rank, np.array([part[0].size for part in parts])
+
+
+def _tiled(
+    box: tuple[float, float, float, float], level: int, along: float, up: float
+) -> tuple[Array, Array, Array]:
+    """Points in a box larger than the tile, which is laid again and again."""
     x0, y0, x1, y1 = box
-    _, tile_x, tile_y, tile_rank = next(
-        (level for level in reversed(_tiles()) if level[0] <= least_spacing), _tiles()[0]
-    )
-    along, up = (seed * 0.754877666) % 1.0, (seed * 0.569840291) % 1.0
-    if x1 - x0 <= TILE_MM and y1 - y0 <= TILE_MM:
-        # a box that the tile can hold is laid inside it: no seam, one look
-        dx, dy = x0 - along * (TILE_MM - x1 + x0), y0 - up * (TILE_MM - y1 + y0)
-        first, last = np.searchsorted(tile_y, (y0 - dy, y1 - dy))
-        x = tile_x[first:last] + dx
-        held = np.flatnonzero((x >= x0) & (x <= x1))
-        return x[held], tile_y[first:last][held] + dy, tile_rank[first:last][held] / _RANK_FACTOR
+    _, tile_x, tile_y, tile_rank = _tiles()[level]
     shift_x, shift_y = along * TILE_MM, up * TILE_MM
     parts = []
     for row in range(int((y0 - shift_y) // TILE_MM), int((y1 - shift_y) // TILE_MM) + 1):

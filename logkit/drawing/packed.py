@@ -6,6 +6,7 @@ A tuple a point costs more than everything that is done with it, and a texture h
 
 from __future__ import annotations
 
+import itertools
 from abc import abstractmethod
 from collections.abc import Iterator, Sequence
 from typing import Any, TypeVar
@@ -80,4 +81,4 @@ class Polylines(Packed[tuple[tuple[float, float], ...]]):
         """As tuples of (x, y)."""
         points = [(x, y) for x, y in self.points.tolist()]
         bounds = [*self.starts.tolist(), len(points)]
-        return [tuple(points[a:b]) for a, b in zip(bounds[:-1], bounds[1:], strict=True)]
+        return [tuple(points[a:b]) for a, b in itertools.pairwise(bounds)]

@@ -77,7 +77,9 @@ def packed_data(shapes: Sequence[Packed]) -> list[str]:  # type: ignore[type-arg
     long = np.flatnonzero((np.abs(flat_steps) > REACH) & (flat_places != _NOTHING))
     flat_places[long] = _NOTHING
     words = _table().take(flat_places).tolist()
-    for place, kind, step in zip(long.tolist(), flat_kinds[long].tolist(), flat_steps[long].tolist(), strict=True):
+    for place, kind, step in zip(
+        long.tolist(), flat_kinds[long].tolist(), flat_steps[long].tolist(), strict=True
+    ):
         words[place] = _words(kind, step)
     made = []
     for shape, first, last in zip(shapes, heads.tolist(), bounds[1:].tolist(), strict=True):

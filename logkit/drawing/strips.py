@@ -93,6 +93,11 @@ class Strip:
             np.minimum(nearest[:, :-shift], sideways[:, shift:], out=nearest[:, :-shift])
         return nearest
 
+    @cached_property
+    def flat_distances(self) -> NDArray[np.uint8]:
+        """The same row after row, and one cell more that is far from every line."""
+        return np.append(self.distances.ravel(), np.uint8(255))
+
 
 @lru_cache(maxsize=96)
 def _strip(way: Way, height_class: int, width_class: int, rows: int, seed: int) -> Strip:
@@ -125,6 +130,13 @@ class Window:
         shown = (strip.last > self.shift) & (strip.first < stop)
         free = self.shift + (_free_right(polygon, self.box) - x0) / self.factor
         return shown, shown & strip.within & (strip.first >= self.shift) & (strip.last <= free)
+
+    @property
+    def measures(self) -> tuple[float, ...]:
+        """x0, factor, shift, top, stretch from page to strip, and rows and columns of the table of distances."""
+        strip, (x0, top, _, base) = self.strip, self.box
+        stretch = strip.height / (base - top)
+        return (x0, self.factor, self.shift, top, stretch, *strip.distances.shape)
 
     def near(self, x: Array, y: Array, margin: Array) -> Mask:
         """True for places of the page within `margin` mm of a line."""

@@ -14,7 +14,8 @@ from math import isfinite
 import numpy as np
 
 from logkit.drawing.ground import Array, Ground, LineSegment
-from logkit.drawing.noise import FINEST_MM, seed_of
+from logkit.drawing.grounds import Grounds
+from logkit.drawing.noise import seed_of
 from logkit.drawing.packed import Points, Strokes
 from logkit.drawing.palette import stipple
 from logkit.drawing.shapes import Dots, Paint, Path, Point, Segment, Shape
@@ -32,6 +33,7 @@ MUD_ONLY = 6.0
 UNKNOWN_PHI = {"mud": 6.5, "organic_mud": 6.5, "marl": 6.5, "gravel": -3.0}
 """Grain size that the marks assume where the log has none; other families get 2."""
 
+_MOST_STEPS = 1 << 16  # of 0.05 mm in a diameter
 _STROKE_STRETCH = (1.55, 0.80)
 _CLAST_TILT = math.radians(-18)
 _CLAST_RATIO = 0.64
@@ -67,21 +69,7 @@ def bed_texture(
     ------
     ArgumentError : an outline of fewer than three points, or numbers that are not finite
     """
-    if len(outline) < 3:
-        raise ArgumentError("outline", len(outline), "a polygon of at least three points")
-    if not all(isfinite(x) and isfinite(y) for x, y in (*outline, *knots)):
-        raise ArgumentError("outline", "not finite", "finite numbers in outline and knots")
-    ys = [y for _, y in outline]
-    if not style.texture.dots or max(ys) - min(ys) < style.texture.least_bed:
-        return ()
-    sizes = knots or [(ys[0], UNKNOWN_PHI.get(family, 2.0))]
-    ground = Ground(outline, sizes, seed, clear, windows)
-    ink = stipple(family, style)
-    rock = ROCK_MARKS.get(family)
-    if rock is not None:
-        return rock(ground, style, ink, _loose_grains)
-    flecks = organic_flecks(ground, style, ink) if family == "organic_mud" else ()
-    return flecks + _loose_grains(ground, style, ink, lithic=family == "lithic")
+    return bed_textures([BedGround(outline, knots, family, seed, clear, windows)], style)[0]
 
 
 @dataclass(frozen=True, slots=True)
@@ -97,11 +85,40 @@ class BedGround:
 
 
 def bed_textures(beds: Sequence[BedGround], style: Style) -> list[tuple[Shape, ...]]:
-    """The marks of many beds."""
-    return [
-        bed_texture(b.outline, b.knots, b.family, style, seed=b.seed, clear=b.clear, windows=b.windows)
-        for b in beds
-    ]
+    """The marks of many beds; the loose grains of all are made together."""
+    made: list[tuple[Shape, ...]] = []
+    loose: list[tuple[int, Ground, str]] = []
+    for bed in beds:
+        ground = _ground(bed, style)
+        rock = ROCK_MARKS.get(bed.family)
+        marks: tuple[Shape, ...] = ()
+        if ground is not None and rock is not None:
+            marks = rock(ground, style, stipple(bed.family, style), _loose_grains)
+        elif ground is not None:
+            if bed.family == "organic_mud":
+                marks = organic_flecks(ground, style, stipple(bed.family, style))
+            loose.append((len(made), ground, bed.family))
+        made.append(marks)
+    inks = [stipple(family, style) for _, _, family in loose]
+    lithic = [family == "lithic" for _, _, family in loose]
+    grains = _grains_of_each([ground for _, ground, _ in loose], style, inks, lithic)
+    for (place, _, _), own in zip(loose, grains, strict=True):
+        made[place] += own
+    return made
+
+
+def _ground(bed: BedGround, style: Style) -> Ground | None:
+    """The ground of a bed, None when it is too thin for marks."""
+    outline, knots = bed.outline, bed.knots
+    if len(outline) < 3:
+        raise ArgumentError("outline", len(outline), "a polygon of at least three points")
+    if not all(isfinite(x) and isfinite(y) for x, y in (*outline, *knots)):
+        raise ArgumentError("outline", "not finite", "finite numbers in outline and knots")
+    ys = [y for _, y in outline]
+    if not style.texture.dots or max(ys) - min(ys) < style.texture.least_bed:
+        return None
+    sizes = knots or [(ys[0], UNKNOWN_PHI.get(bed.family, 2.0))]
+    return Ground(outline, sizes, bed.seed, bed.clear, bed.windows)
 
 
 def dot_diameter(phi: Array, texture: TextureStyle) -> Array:
@@ -121,46 +138,88 @@ def _loose_grains(
     ground: Ground, style: Style, ink: str, *, lithic: bool = False, density: float = 1.0
 ) -> tuple[Shape, ...]:
     """Clasts, dots and strokes, each where the grain size asks for it; `density` below 1 spreads dots and strokes."""
-    coarsest, finest = ground.phi_range
-    shapes: tuple[Shape, ...] = ()
-    if finest > SAND_FINEST:
-        shapes += _strokes(ground, style, ink, density)
-    if coarsest < MUD_ONLY and finest > SAND_COARSEST:
-        shapes += _dots(ground, style, ink, lithic, density)
-    if coarsest < SAND_COARSEST:
-        shapes += _clasts(ground, style)
+    return _grains_of_each([ground], style, [ink], [lithic], density)[0]
+
+
+def _grains_of_each(
+    grounds: Sequence[Ground], style: Style, inks: Sequence[str], lithic: Sequence[bool], density: float = 1.0
+) -> list[tuple[Shape, ...]]:
+    """Loose grains of many grounds: strokes, then dots, then clasts."""
+    shapes: list[tuple[Shape, ...]] = [() for _ in grounds]
+    ranges = [ground.phi_range for ground in grounds]
+    muddy = [n for n, (_, finest) in enumerate(ranges) if finest > SAND_FINEST]
+    if muddy:
+        strokes = _strokes(Grounds([grounds[n] for n in muddy]), style, [inks[n] for n in muddy], density)
+        for n, own in zip(muddy, strokes, strict=True):
+            shapes[n] += own
+    sandy = [n for n, (c, f) in enumerate(ranges) if c < MUD_ONLY and f > SAND_COARSEST]
+    if sandy:
+        chosen = Grounds([grounds[n] for n in sandy])
+        dots = _dots(chosen, style, [inks[n] for n in sandy], [lithic[n] for n in sandy], density)
+        for n, own in zip(sandy, dots, strict=True):
+            shapes[n] += own
+    for n, (coarsest, _) in enumerate(ranges):
+        if coarsest < SAND_COARSEST:
+            shapes[n] += _clasts(grounds[n], style)
     return shapes
 
 
-def _dots(ground: Ground, style: Style, ink: str, lithic: bool, density: float) -> tuple[Shape, ...]:
+def _dots(
+    beds: Grounds, style: Style, inks: Sequence[str], lithic: Sequence[bool], density: float
+) -> list[tuple[Shape, ...]]:
     texture = style.texture
-    coarsest, finest = ground.phi_range
-    loosened = 1 / math.sqrt(density)
-    closest = float(dot_spacing(min(finest, MUD_ONLY), texture)) * loosened
-    expected = 0.7 * ground.area / closest**2
-    loosened *= max(1.0, math.sqrt(expected / texture.most_dots))
-    x, y, reach = ground.points(max(closest * loosened, FINEST_MM))
-    phi = ground.phi_at(y) if finest > coarsest else np.full(y.size, finest)
-    kept = (reach >= dot_spacing(phi, texture) * loosened) & (phi > SAND_COARSEST) & (phi < MUD_ONLY)
-    if finest > SAND_FINEST:
-        mixing = np.where(phi <= SAND_FINEST, 1.0, 0.55 * (MUD_ONLY - phi) / 2)
-        kept &= ground.random.random(x.size) < mixing
-    x, y, diameter = x[kept], y[kept], dot_diameter(phi[kept], texture)
+    least, loosened = [], []
+    for ground in beds.grounds:
+        loose = 1 / math.sqrt(density)
+        closest = float(dot_spacing(min(ground.phi_range[1], MUD_ONLY), texture)) * loose
+        expected = 0.7 * ground.area / closest**2
+        loose *= max(1.0, math.sqrt(expected / texture.most_dots))
+        least.append(closest * loose)
+        loosened.append(loose)
+    x, y, reach, counts = beds.points(least)
+    phi = beds.phi_at(y, counts)
+    of = np.repeat(np.arange(counts.size), counts)
+    wide = dot_spacing(phi, texture) * np.array(loosened)[of]
+    kept = (reach >= wide) & (phi > SAND_COARSEST) & (phi < MUD_ONLY)
+    mixed = np.array([ground.phi_range[1] > SAND_FINEST for ground in beds.grounds])
+    if mixed.any():
+        some = mixed[of]
+        own = phi[some]
+        mixing = np.where(own <= SAND_FINEST, 1.0, 0.55 * (MUD_ONLY - own) / 2)
+        kept[some] &= beds.random(np.where(mixed, counts, 0)) < mixing
+    x, y, of, diameter = x[kept], y[kept], of[kept], dot_diameter(phi[kept], texture)
     needed = texture.clear + diameter / 2
-    if lithic:
-        needed = np.maximum(needed, 1.1 * diameter)
-    held = ground.holds(x, y, needed)
-    x, y, diameter = x[held], y[held], diameter[held]
-    shapes: list[Shape] = []
-    places = np.column_stack((x, y))
-    if lithic:
-        angular = (diameter > 0.26) & (ground.random.random(x.size) < texture.triangles)
-        shapes += _triangles(ground, x[angular], y[angular], diameter[angular], ink)
-        places, diameter = places[~angular], diameter[~angular]
-    for size in sorted(set(diameter.tolist())):
-        own = diameter == size
-        shapes.append(Dots(Points(places[own]), round(size, 2), ink))
-    return tuple(shapes)
+    angular_beds = np.array(lithic)
+    if angular_beds.any():
+        needed = np.where(angular_beds[of], np.maximum(needed, 1.1 * diameter), needed)
+    held = beds.holds(x, y, needed, of)
+    places, diameter, of = np.column_stack((x[held], y[held])), diameter[held], of[held]
+    # by bed and diameter, in the order found within them
+    shapes: list[list[Shape]] = [[] for _ in inks]
+    if angular_beds.any():
+        left = np.ones(of.size, dtype=bool)
+        bounds = np.searchsorted(of, np.arange(len(inks) + 1)).tolist()
+        for n in np.flatnonzero(angular_beds).tolist():
+            own = slice(bounds[n], bounds[n + 1])
+            ground, size = beds.grounds[n], diameter[own]
+            angular = (size > 0.26) & (ground.random.random(size.size) < texture.triangles)
+            shapes[n] += _triangles(
+                ground, places[own][angular, 0], places[own][angular, 1], size[angular], inks[n]
+            )
+            left[own] = ~angular
+        places, diameter, of = places[left], diameter[left], of[left]
+    if not of.size:
+        return [tuple(own) for own in shapes]
+    key = of * _MOST_STEPS + np.rint(diameter * 20).astype(np.int64)
+    order = np.argsort(key, kind="stable")
+    places, diameter, of, key = places[order], diameter[order], of[order], key[order]
+    heads = np.flatnonzero(np.diff(key, prepend=-1))
+    ends = [*heads[1:].tolist(), key.size]
+    for n, size, first, last in zip(
+        of[heads].tolist(), diameter[heads].tolist(), heads.tolist(), ends, strict=True
+    ):
+        shapes[n].append(Dots(Points(places[first:last]), round(size, 2), inks[n]))
+    return [tuple(own) for own in shapes]
 
 
 def _triangles(ground: Ground, x: Array, y: Array, diameter: Array, ink: str) -> list[Shape]:
@@ -175,26 +234,34 @@ def _triangles(ground: Ground, x: Array, y: Array, diameter: Array, ink: str) ->
     return [Path(tuple(steps), Paint(fill=ink))]
 
 
-def _strokes(ground: Ground, style: Style, ink: str, density: float) -> tuple[Shape, ...]:
+def _strokes(beds: Grounds, style: Style, inks: Sequence[str], density: float) -> list[tuple[Shape, ...]]:
     texture = style.texture
-    spacing = 1.05 / math.sqrt(density)
-    expected = 0.7 * ground.area / (spacing**2 * _STROKE_STRETCH[0] * _STROKE_STRETCH[1])
-    spacing *= max(1.0, math.sqrt(expected / texture.most_dots))
-    x, y, reach = ground.points(spacing, _STROKE_STRETCH, salt=101)
-    phi = ground.phi_at(y)
-    length = 0.55 + 0.16 * (np.minimum(phi, 8) - SAND_FINEST) + 0.35 * ground.random.random(x.size)
+    spacings = []
+    for ground in beds.grounds:
+        spacing = 1.05 / math.sqrt(density)
+        expected = 0.7 * ground.area / (spacing**2 * _STROKE_STRETCH[0] * _STROKE_STRETCH[1])
+        spacings.append(spacing * max(1.0, math.sqrt(expected / texture.most_dots)))
+    x, y, reach, counts = beds.points(spacings, _STROKE_STRETCH, salt=101)
+    phi = beds.phi_at(y, counts)
+    of = np.repeat(np.arange(counts.size), counts)
+    length = 0.55 + 0.16 * (np.minimum(phi, 8) - SAND_FINEST) + 0.35 * beds.random(counts)
     share = np.where(phi < MUD_ONLY, 1 - 0.55 * (MUD_ONLY - phi) / 2, 1.0)
-    kept = (reach >= spacing) & (phi > SAND_FINEST) & (ground.random.random(x.size) < share)
-    x, y, half = x[kept], y[kept], length[kept] / 2
+    kept = (reach >= np.array(spacings)[of]) & (phi > SAND_FINEST) & (beds.random(counts) < share)
+    x, y, half, of = x[kept], y[kept], length[kept] / 2, of[kept]
     across = x[:, None] + half[:, None] * np.array([-1.0, 0.0, 1.0])
-    held = ground.holds_marks(across, np.repeat(y[:, None], 3, axis=1), texture.clear)
-    x, y, half = x[held], y[held], half[held]
-    if not x.size:
-        return ()
+    margin = np.full(3 * x.size, texture.clear)
+    held = beds.holds(across.ravel(), np.repeat(y, 3), margin, np.repeat(of, 3)).reshape(-1, 3).all(axis=1)
+    x, y, half, of = x[held], y[held], half[held], of[held]
     ends = np.empty((x.size, 2, 2))
     ends[:, 0, 0], ends[:, 1, 0] = x - half, x + half
     ends[:, :, 1] = y[:, None]
-    return (Path(Strokes(ends.reshape(-1, 2)), Paint(stroke=ink, width=style.lines.stroke, cap="round")),)
+    bounds = np.searchsorted(of, np.arange(len(inks) + 1)).tolist()
+    shapes: list[tuple[Shape, ...]] = []
+    for ink, first, last in zip(inks, bounds[:-1], bounds[1:], strict=True):
+        paint = Paint(stroke=ink, width=style.lines.stroke, cap="round")
+        own = Path(Strokes(ends[first:last].reshape(-1, 2)), paint)
+        shapes.append((own,) if last > first else ())
+    return shapes
 
 
 def _clasts(ground: Ground, style: Style) -> tuple[Shape, ...]:
