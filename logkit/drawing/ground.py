@@ -27,6 +27,25 @@ _CELL_MM = 0.1  # of the raster that remembers lines; larger only on very large 
 _MOST_CELLS = 4_000_000
 
 
+def edges_of(outlines: Sequence[Sequence[Point]]) -> tuple[Array, NDArray[np.int64]]:
+    """Edges of polygons that have a length, polygon after polygon, and how many each polygon has.
+
+    Rows: x and y of the start, extent in x and y, y of the end, slope, inverse squared length.
+    """
+    sizes = np.array([len(outline) for outline in outlines])
+    start = np.array([point for outline in outlines for point in outline])
+    lasts = np.cumsum(sizes) - 1
+    end = np.empty_like(start)
+    end[:-1] = start[1:]
+    end[lasts] = start[lasts - sizes + 1]
+    long = (start != end).any(axis=1)
+    counts = np.add.reduceat(long.astype(np.int64), lasts - sizes + 1)
+    (ax, ay), (bx, by) = start[long].T, end[long].T
+    ex, ey = bx - ax, by - ay
+    with np.errstate(divide="ignore", invalid="ignore"):
+        return np.array((ax, ay, ex, ey, by, ex / ey, 1.0 / (ex * ex + ey * ey))), counts
+
+
 class Ground:
     """One bed's area on the page.
 
@@ -48,7 +67,7 @@ class Ground:
         windows: Sequence[Window] = (),
     ) -> None:
         points = [(float(x), float(y)) for x, y in outline]
-        self.outline = np.array(points)
+        self.outline = points
         ordered = sorted(knots)
         self._knot_y = np.array([y for y, _ in ordered])
         self._knot_phi = np.array([phi for _, phi in ordered])
@@ -67,15 +86,8 @@ class Ground:
 
     @cached_property
     def edges(self) -> Array:
-        """Start, extent, y of the end, slope and inverse squared length of each edge that has a length: (7, edges)."""
-        ax, ay = self.outline[:, 0], self.outline[:, 1]
-        bx, by = np.concatenate((ax[1:], ax[:1])), np.concatenate((ay[1:], ay[:1]))
-        long = (ax != bx) | (ay != by)
-        if not long.all():
-            ax, ay, bx, by = ax[long], ay[long], bx[long], by[long]
-        ex, ey = bx - ax, by - ay
-        with np.errstate(divide="ignore", invalid="ignore"):
-            return np.array((ax, ay, ex, ey, by, ex / ey, 1.0 / (ex * ex + ey * ey)))
+        """The outline's edges; see `edges_of`."""
+        return edges_of([self.outline])[0]
 
     @property
     def has_raster(self) -> bool:

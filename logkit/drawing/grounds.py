@@ -11,7 +11,7 @@ from collections.abc import Sequence
 import numpy as np
 from numpy.typing import NDArray
 
-from logkit.drawing.ground import Array, Ground, Mask
+from logkit.drawing.ground import Array, Ground, Mask, edges_of
 from logkit.drawing.noise import FINEST_MM, drawn_for_each, scatter_each
 from logkit.drawing.strips import CELL_MM, REACH_CELLS, Window
 
@@ -116,24 +116,23 @@ def _near_cells(
 
 def _edge_tables(grounds: Sequence[Ground]) -> list[tuple[Array, Numbers]]:
     """Edges of the outlines, those with about as many edges in one table; and the column of each ground in it."""
-    edges = [ground.edges for ground in grounds]
+    if not grounds:
+        return []
+    edges, counts = edges_of([ground.outline for ground in grounds])
+    starts = np.cumsum(counts) - counts
     classes: dict[int, list[int]] = {}
-    for number, own in enumerate(edges):
-        classes.setdefault(own.shape[1].bit_length(), []).append(number)
+    for number, count in enumerate(counts.tolist()):
+        classes.setdefault(count.bit_length(), []).append(number)
     tables = []
     for members in classes.values():
-        longest = max(edges[number].shape[1] for number in members)
-        table = np.empty((7, longest, len(members)))
+        own = counts[members]
+        place = np.arange(own.max())[:, None]
+        spare = place >= own
+        table = edges[:, starts[members] + np.where(spare, 0, place)]
+        # the first edge once more changes no distance; without a slope it is never crossed
+        table[5][spare] = np.nan
         row = np.full(len(grounds), -1)
-        for place, number in enumerate(members):
-            own = edges[number]
-            count = own.shape[1]
-            table[:, :count, place] = own
-            if count < longest:
-                # an edge once more changes no distance; without a slope it is never crossed
-                table[:, count:, place] = own[:, :1]
-                table[5, count:, place] = np.nan
-            row[number] = place
+        row[members] = np.arange(len(members))
         tables.append((table, row))
     return tables
 

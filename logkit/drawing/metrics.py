@@ -91,8 +91,10 @@ def text_box(at: tuple[float, float], text: str, size_pt: float, bold: bool, anc
 
 def clean(text: str) -> str:
     """Text a page can carry: control characters and runs of white space become single spaces."""
-    visible = "".join(letter if letter.isprintable() or letter in "\u00a0\u202f" else " " for letter in text)
-    return " ".join(part for part in visible.split(" ") if part)
+    visible = text
+    if not text.isprintable():
+        visible = "".join(c if c.isprintable() or c in "\u00a0\u202f" else " " for c in text)
+    return " ".join(filter(None, visible.split(" ")))
 
 
 def wrap(text: str, width: float, size_pt: float, bold: bool = False) -> tuple[str, ...]:

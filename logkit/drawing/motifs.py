@@ -191,7 +191,10 @@ def structures_lines(fillings: Sequence[Filling], style: Style) -> list[Structur
         corners = filling.outline or [(x0, top), (x1, top), (x1, base), (x0, base)]
         polygons.append(np.array(corners, dtype=float))
         way = motif(filling.term).fill
-        pieces.append(way and window(way, box, filling.set_mm, factor, filling.seed, seed_of(filling.term)))
+        piece = None
+        if way is not None:
+            piece = window(way, box, filling.set_mm, factor, filling.seed, seed_of(filling.term))
+        pieces.append(piece)
     there = [number for number, piece in enumerate(pieces) if piece is not None]
     found = window_lines([piece for piece in pieces if piece is not None], [polygons[n] for n in there])
     lines = dict(zip(there, found, strict=True))

@@ -8,6 +8,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from functools import cache
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -19,7 +20,10 @@ REACH = 2000
 
 _WIDTH = 2 * REACH + 1
 _MOVE, _LINE, _NEXT, _LEVEL, _DOT = range(5)
-_NOTHING = 5 * _WIDTH
+_EMPTY = 5
+_NOTHING = _EMPTY * _WIDTH
+_STROKE = 6
+_KINDS = {Points: (_MOVE, _DOT), Polylines: (_NEXT, _NEXT), Strokes: (_MOVE, _STROKE)}
 
 
 def _words(kind: int, value: int) -> str:
@@ -41,7 +45,7 @@ def _table() -> NDArray[np.object_]:
     return np.array([*words, ""], dtype=object)
 
 
-def packed_data(shapes: Sequence[Packed]) -> list[str]:  # type: ignore[type-arg]
+def packed_data(shapes: Sequence[Packed[Any]]) -> list[str]:
     """The `d` attribute of each, from the points in mm; a position is a whole number of 0.01 mm.
 
     Raises
@@ -53,26 +57,15 @@ def packed_data(shapes: Sequence[Packed]) -> list[str]:  # type: ignore[type-arg
     points = np.rint(np.concatenate([shape.points for shape in shapes]) * 100)
     if not np.isfinite(points).all():
         raise ValueError("a coordinate is not finite")
-    sizes = [len(shape.points) for shape in shapes]
-    bounds = np.cumsum([0, *sizes])
+    sizes = np.array([len(shape.points) for shape in shapes])
+    bounds = np.concatenate(([0], np.cumsum(sizes)))
+    heads = bounds[:-1]
     steps = points.astype(np.int64)
     steps[1:] -= steps[:-1].copy()
-    heads = bounds[:-1]
     steps[heads] = points[heads].astype(np.int64)
-    kinds = np.full(steps.shape, _NEXT)
-    for shape, first, last in zip(shapes, heads.tolist(), bounds[1:].tolist(), strict=True):
-        if isinstance(shape, Points):
-            kinds[first:last] = (_MOVE, _DOT)
-        elif isinstance(shape, Polylines):
-            starts = shape.starts + first
-            kinds[starts + 1, 0] = _LINE
-            kinds[starts, 0] = _MOVE
-        elif isinstance(shape, Strokes):
-            kinds[first:last:2, 0] = _MOVE
-            kinds[first + 1 : last : 2, 0] = _LEVEL
-            kinds[first + 1 : last : 2, 1] = _NOTHING // _WIDTH
+    kinds = _kinds(shapes, sizes, heads)
     places = kinds * _WIDTH + (steps + REACH)
-    places[kinds == _NOTHING // _WIDTH] = _NOTHING
+    places[kinds == _EMPTY] = _NOTHING
     flat_places, flat_steps, flat_kinds = places.ravel(), steps.ravel(), kinds.ravel()
     long = np.flatnonzero((np.abs(flat_steps) > REACH) & (flat_places != _NOTHING))
     flat_places[long] = _NOTHING
@@ -82,7 +75,28 @@ def packed_data(shapes: Sequence[Packed]) -> list[str]:  # type: ignore[type-arg
     ):
         words[place] = _words(kind, step)
     made = []
-    for shape, first, last in zip(shapes, heads.tolist(), bounds[1:].tolist(), strict=True):
-        text = "".join(words[2 * first : 2 * last])
+    ends = (2 * bounds).tolist()
+    for shape, first, last in zip(shapes, ends[:-1], ends[1:], strict=True):
+        text = "".join(words[first:last])
         made.append(text if isinstance(shape, Points) else "M" + text[1:])
     return made
+
+
+def _kinds(
+    shapes: Sequence[Packed[Any]], sizes: NDArray[np.int64], heads: NDArray[np.int64]
+) -> NDArray[np.int64]:
+    """How each coordinate is put into words, (points, 2)."""
+    pairs = [_KINDS[type(shape)] for shape in shapes]
+    kinds = np.repeat(pairs, sizes, axis=0)
+    starts = [shape.starts + head for shape, head in zip(shapes, heads.tolist(), strict=True)
+              if isinstance(shape, Polylines)]  # fmt: skip
+    if starts:
+        begins = np.concatenate(starts)
+        kinds[begins + 1, 0] = _LINE
+        kinds[begins, 0] = _MOVE
+    ends = (kinds[:, 1] == _STROKE).nonzero()[0]
+    if ends.size:
+        # strokes have two points, so that every other one of theirs is an end
+        kinds[ends, 1] = _NEXT
+        kinds[ends[1::2]] = (_LEVEL, _EMPTY)
+    return kinds
