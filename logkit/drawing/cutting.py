@@ -124,9 +124,9 @@ def _inside(places: Places, corners: Places, bed: NDArray[np.int64]) -> NDArray[
     ax, ay, by = corners.real, corners.imag, after.imag
     with np.errstate(divide="ignore", invalid="ignore", over="ignore", under="ignore"):
         slope = (after.real - ax) / (by - ay)
-        ay = ay[:, bed]
-        crosses = x < ax[:, bed] + (y - ay) * slope[:, bed]
-    crosses &= (ay > y) != (by[:, bed] > y)
+        ay = ay.take(bed, axis=1)
+        crosses = x < ax.take(bed, axis=1) + (y - ay) * slope.take(bed, axis=1)
+    crosses &= (ay > y) != (by.take(bed, axis=1) > y)
     return np.logical_xor.reduce(crosses, axis=0)
 
 
@@ -135,9 +135,9 @@ def _crossings(
 ) -> tuple[NDArray[np.int64], Array]:
     """Pieces that cross an edge of the polygon, and the share of the piece at which they do."""
     edge = np.concatenate((corners[1:], corners[:1])) - corners
-    ex, ey = edge.real[:, bed], edge.imag[:, bed]
+    ex, ey = edge.real.take(bed, axis=1), edge.imag.take(bed, axis=1)
     sx, sy = step.real, step.imag
-    gx, gy = corners.real[:, bed] - start.real, corners.imag[:, bed] - start.imag
+    gx, gy = corners.real.take(bed, axis=1) - start.real, corners.imag.take(bed, axis=1) - start.imag
     with np.errstate(divide="ignore", invalid="ignore", over="ignore", under="ignore"):
         scale = 1.0 / (sx * ey - sy * ex)
         t = (gx * ey - gy * ex) * scale

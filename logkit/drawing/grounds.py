@@ -55,7 +55,7 @@ class Grounds:
             rows = row[of]
             own = (rows >= 0).nonzero()[0]
             if own.size:
-                held[own] = _inside(table[:, :, rows[own]], x[own], y[own], margin[own])
+                held[own] = _inside(table.take(rows[own], axis=2), x[own], y[own], margin[own])
         index = held.nonzero()[0]
         if index.size and any(ground.has_lines for ground in self.grounds):
             held[index] = ~self._near(x[index], y[index], margin[index], of[index])
