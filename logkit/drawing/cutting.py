@@ -36,43 +36,17 @@ class Runs:
     """
 
     points: Array
-    starts: list[int]
-    owners: list[int]
+    starts: NDArray[np.int64]
+    owners: NDArray[np.int64]
 
     def lines(self) -> list[Array]:
         """The polylines one by one."""
-        return np.split(self.points, self.starts[1:]) if self.starts else []
-
-
-def cut(points: Array, owner: NDArray[np.int64], polygon: Array) -> Runs:
-    """The parts of polylines that lie inside a polygon.
-
-    Parameters
-    ----------
-    points : points of all lines, one line after the other, (n, 2), mm
-    owner : number of the line of each point, increasing
-    polygon : (m, 2), mm
-
-    Returns
-    -------
-    the parts, in order along their lines; rests too short to see are left out
-    """
-    found = cut_each(points, owner, np.zeros(len(points), dtype=np.int64), [polygon])
-    return Runs(found.points, found.starts.tolist(), found.owners.tolist())
-
-
-@dataclass(frozen=True, slots=True)
-class ManyRuns:
-    """Polylines of many beds one after the other, as `Runs` with arrays of numbers."""
-
-    points: Array
-    starts: NDArray[np.int64]
-    owners: NDArray[np.int64]
+        return np.split(self.points, self.starts[1:]) if len(self.starts) else []
 
 
 def cut_each(
     points: Array, owner: NDArray[np.int64], bed: NDArray[np.int64], polygons: Sequence[Array]
-) -> ManyRuns:
+) -> Runs:
     """As `cut`, with lines of many beds, each cut to the polygon of its own bed; `bed` is each point's."""
     # places as complex numbers: one array to index where there would be two
     place = np.ascontiguousarray(points).view(np.complex128)[:, 0]
@@ -146,11 +120,11 @@ def _crossings(
     return pieces, t[edges, pieces]
 
 
-def _joined(owner: NDArray[np.int64], first: Places, last: Places, kept: NDArray[np.int64]) -> ManyRuns:
+def _joined(owner: NDArray[np.int64], first: Places, last: Places, kept: NDArray[np.int64]) -> Runs:
     """Parts that are kept and follow each other, as polylines of their line."""
     if not kept.size:
         none = np.empty(0, dtype=np.int64)
-        return ManyRuns(np.empty((0, 2)), none, none)
+        return Runs(np.empty((0, 2)), none, none)
     first, last, owner = first[kept], last[kept], owner[kept]
     fresh = np.ones(kept.size, dtype=bool)
     fresh[1:] = (kept[1:] != kept[:-1] + 1) | (owner[1:] != owner[:-1])
@@ -164,7 +138,7 @@ def _joined(owner: NDArray[np.int64], first: Places, last: Places, kept: NDArray
     place[np.arange(last.size) + np.cumsum(fresh)] = last
     starts = begins + np.arange(begins.size)
     place[starts] = first[begins]
-    return ManyRuns(place.view(np.float64).reshape(-1, 2), starts, owner[begins])
+    return Runs(place.view(np.float64).reshape(-1, 2), starts, owner[begins])
 
 
 def simplified(line: Array) -> Array:

@@ -16,7 +16,7 @@ from functools import cached_property, lru_cache
 import numpy as np
 from numpy.typing import NDArray
 
-from logkit.drawing.cutting import ManyRuns, cut_each, simplified
+from logkit.drawing.cutting import Runs, cut_each, simplified
 from logkit.drawing.ground import Array, Mask
 from logkit.drawing.packed import Polylines
 from logkit.drawing.strata import ROLES, Box, Way
@@ -205,20 +205,20 @@ class _Parts:
         points += np.array([piece.box[:2] for piece in pieces])[rows]
         return points, owner + numbers * _MOST_LINES, numbers
 
-    def whole(self) -> ManyRuns:
+    def whole(self) -> Runs:
         """Lines that need no cutting."""
         points, owner, _ = self._placed(self._whole)
         fresh = np.ones(owner.size, dtype=bool)
         fresh[1:] = owner[1:] != owner[:-1]
         starts = fresh.nonzero()[0]
-        return ManyRuns(points, starts, owner[starts])
+        return Runs(points, starts, owner[starts])
 
-    def cut(self, size: int) -> ManyRuns:
+    def cut(self, size: int) -> Runs:
         """The parts of the others, for the polygons of one class of size."""
         chosen = [pair for pair in self._cut if self.size_classes[pair[0]] == size and pair[1].size]
         if not chosen:
             none = np.empty(0, dtype=np.int64)
-            return ManyRuns(np.empty((0, 2)), none, none)
+            return Runs(np.empty((0, 2)), none, none)
         points, owner, _ = self._placed(chosen)
         rows = np.repeat(np.arange(len(chosen)), [index.size for _, index in chosen])
         return cut_each(points, owner, rows, [self.polygons[number] for number, _ in chosen])
@@ -227,7 +227,7 @@ class _Parts:
 _MOST_LINES = 1 << 32
 
 
-def _by_role(windows: Sequence[Window], found: Sequence[ManyRuns]) -> list[dict[str, Polylines]]:
+def _by_role(windows: Sequence[Window], found: Sequence[Runs]) -> list[dict[str, Polylines]]:
     """Runs sorted by window and role, in the order found within them."""
     points = np.concatenate([runs.points for runs in found])
     offsets = np.cumsum([0, *(len(runs.points) for runs in found)])

@@ -12,6 +12,7 @@ from dataclasses import dataclass
 from math import isfinite
 
 import numpy as np
+from numpy.typing import NDArray
 
 from logkit.drawing.ground import Array, Ground, LineSegment
 from logkit.drawing.grounds import Grounds
@@ -194,7 +195,6 @@ def _dots(
         needed = np.where(angular_beds[of], np.maximum(needed, 1.1 * diameter), needed)
     held = beds.holds(x, y, needed, of)
     places, diameter, of = np.column_stack((x[held], y[held])), diameter[held], of[held]
-    # by bed and diameter, in the order found within them
     shapes: list[list[Shape]] = [[] for _ in inks]
     if angular_beds.any():
         left = np.ones(of.size, dtype=bool)
@@ -208,8 +208,16 @@ def _dots(
             )
             left[own] = ~angular
         places, diameter, of = places[left], diameter[left], of[left]
+    _add_dots(shapes, places, diameter, of, inks)
+    return [tuple(own) for own in shapes]
+
+
+def _add_dots(
+    shapes: list[list[Shape]], places: Array, diameter: Array, of: NDArray[np.int64], inks: Sequence[str]
+) -> None:
+    """One shape a bed and diameter, the dots in the order found; `of` is the bed of each dot."""
     if not of.size:
-        return [tuple(own) for own in shapes]
+        return
     key = of * _MOST_STEPS + np.rint(diameter * 20).astype(np.int64)
     order = np.argsort(key, kind="stable")
     places, diameter, of, key = places[order], diameter[order], of[order], key[order]
@@ -219,7 +227,6 @@ def _dots(
         of[heads].tolist(), diameter[heads].tolist(), heads.tolist(), ends, strict=True
     ):
         shapes[n].append(Dots(Points(places[first:last]), round(size, 2), inks[n]))
-    return [tuple(own) for own in shapes]
 
 
 def _triangles(ground: Ground, x: Array, y: Array, diameter: Array, ink: str) -> list[Shape]:
