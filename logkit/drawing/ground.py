@@ -141,7 +141,7 @@ class Ground:
         """True for points inside the outline and at least `margin` mm from its edge and every line."""
         if not x.size:
             return np.zeros(x.shape, dtype=bool)
-        held = self._inside(x, y, margin)
+        held = inside_edges(self.edges[:, :, None], x, y, margin)
         if self._raster is not None or self.windows:
             index = np.flatnonzero(held)
             margins = np.broadcast_to(np.asarray(margin, dtype=float), x.shape)[index]
@@ -155,20 +155,6 @@ class Ground:
         """True for marks all of whose points (last axis) are held."""
         held = self.holds(x.ravel(), y.ravel(), margin).reshape(x.shape)
         return np.asarray(held.all(axis=-1))
-
-    def _inside(self, x: Array, y: Array, margin: Array | float) -> Mask:
-        """Even-odd test and distance from all edges at once; the edges are few."""
-        ax, ay, ex, ey, by, slope, shrink = self.edges
-        y = y[:, None]
-        dx, dy = x[:, None] - ax, y - ay
-        with np.errstate(invalid="ignore"):
-            crosses = dx < dy * slope
-        crosses &= (dy < 0) != (y < by)
-        along = np.minimum(np.maximum((dx * ex + dy * ey) * shrink, 0.0), 1.0)
-        dx -= along * ex
-        dy -= along * ey
-        near = (dx * dx + dy * dy).min(axis=1)
-        return np.asarray(np.logical_xor.reduce(crosses, axis=1) & (near >= np.square(margin)))
 
     def near_marks(self, x: Array, y: Array, margin: Array) -> Mask:
         """True for places within `margin` mm of lines and marks that were marked one by one."""
@@ -218,3 +204,17 @@ def _disc(reach: int) -> tuple[NDArray[np.int64], NDArray[np.int64]]:
     rows, columns = np.meshgrid(span, span, indexing="ij")
     round_ = rows**2 + columns**2 <= (reach + 0.3) ** 2
     return rows[round_], columns[round_]
+
+
+def inside_edges(edges: Array, x: Array, y: Array, margin: Array | float) -> Mask:
+    """Even-odd test and distance from all edges at once; edges downward, candidates across."""
+    ax, ay, ex, ey, by, slope, shrink = edges
+    dx, dy = x - ax, y - ay
+    with np.errstate(invalid="ignore"):
+        crosses = dx < dy * slope
+    crosses &= (dy < 0) != (y < by)
+    along = np.minimum(np.maximum((dx * ex + dy * ey) * shrink, 0.0), 1.0)
+    dx -= along * ex
+    dy -= along * ey
+    near = (dx * dx + dy * dy).min(axis=0)
+    return np.asarray(np.logical_xor.reduce(crosses, axis=0) & (near >= np.square(margin)))

@@ -11,7 +11,7 @@ from collections.abc import Sequence
 import numpy as np
 from numpy.typing import NDArray
 
-from logkit.drawing.ground import Array, Ground, Mask, edges_of
+from logkit.drawing.ground import Array, Ground, Mask, edges_of, inside_edges
 from logkit.drawing.noise import FINEST_MM, drawn_for_each, scatter_each
 from logkit.drawing.strips import CELL_MM, REACH_CELLS, Window
 
@@ -55,7 +55,7 @@ class Grounds:
             rows = row[of]
             own = (rows >= 0).nonzero()[0]
             if own.size:
-                held[own] = _inside(table.take(rows[own], axis=2), x[own], y[own], margin[own])
+                held[own] = inside_edges(table.take(rows[own], axis=2), x[own], y[own], margin[own])
         index = held.nonzero()[0]
         if index.size and any(ground.has_lines for ground in self.grounds):
             held[index] = ~self._near(x[index], y[index], margin[index], of[index])
@@ -135,17 +135,3 @@ def _edge_tables(grounds: Sequence[Ground]) -> list[tuple[Array, Numbers]]:
         row[members] = np.arange(len(members))
         tables.append((table, row))
     return tables
-
-
-def _inside(edges: Array, x: Array, y: Array, margin: Array) -> Mask:
-    """Even-odd test and distance from all edges at once; edges downward, candidates across."""
-    ax, ay, ex, ey, by, slope, shrink = edges
-    dx, dy = x - ax, y - ay
-    with np.errstate(invalid="ignore"):
-        crosses = dx < dy * slope
-    crosses &= (dy < 0) != (y < by)
-    along = np.minimum(np.maximum((dx * ex + dy * ey) * shrink, 0.0), 1.0)
-    dx -= along * ex
-    dy -= along * ey
-    near = (dx * dx + dy * dy).min(axis=0)
-    return np.asarray(np.logical_xor.reduce(crosses, axis=0) & (near >= np.square(margin)))

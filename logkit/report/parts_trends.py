@@ -7,7 +7,7 @@ from collections.abc import Iterator
 
 from logkit.report.document import Block, Column, Figure, Heading, Paragraph, Table
 from logkit.report.wells import Well
-from logkit.report.wording import Units, chance
+from logkit.report.wording import Units, chance, frame_cell
 from logkit.words import joined
 
 
@@ -68,7 +68,7 @@ def grading(well: Well, units: Units) -> Iterator[Block]:
                     Column(str(c).replace("_", " "), align="left" if frame[c].dtype == object else "right")
                     for c in frame.columns
                 ),
-                tuple(tuple(_cell(v) for v in row) for row in frame.itertuples(index=False, name=None)),
+                tuple(tuple(frame_cell(v) for v in row) for row in frame.itertuples(index=False, name=None)),
             )
 
 
@@ -125,9 +125,3 @@ def currents(well: Well) -> Iterator[Block]:
             for s in summaries
         ),
     )
-
-
-def _cell(value: object) -> str:
-    if value is None or value != value:
-        return ""
-    return f"{value:.3g}" if isinstance(value, float) else str(value)

@@ -9,8 +9,8 @@ from logkit.compare import Comparison, compare_logs, draw_panel
 from logkit.report.document import Block, Column, Figure, Paragraph, Table
 from logkit.report.settings import ReportSettings
 from logkit.report.wells import Well
-from logkit.report.wording import Units
-from logkit.words import counted, digits, joined
+from logkit.report.wording import Units, frame_cell
+from logkit.words import counted, joined
 
 WIDEST_MM = 390.0
 
@@ -55,7 +55,7 @@ def comparison(wells: list[Well], settings: ReportSettings) -> Iterator[Block]:
                 Column(c.replace("_", " "), align="left" if frame[c].dtype.kind in "OUT" else "right")
                 for c in columns
             ),
-            tuple(tuple(_cell(v) for v in row) for row in frame.itertuples(index=False, name=None)),
+            tuple(tuple(frame_cell(v) for v in row) for row in frame.itertuples(index=False, name=None)),
         )
 
 
@@ -68,11 +68,3 @@ def compare(wells: tuple[Well, ...], datum: str) -> Comparison:
         histories=[well.history for well in wells],
         trends=[well.trends for well in wells],
     )
-
-
-def _cell(value: object) -> str:
-    if value is None or value != value:
-        return ""
-    if isinstance(value, bool):
-        return "yes" if value else "no"
-    return digits(value, 3) if isinstance(value, float) else str(value)

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import re
 from dataclasses import dataclass
+from typing import Any
 
 from logkit.model import PhaseEstimate, Quantiles, SizeInterval
 from logkit.words import NO_BREAK, digits
@@ -103,3 +104,13 @@ def size_cell(size: SizeInterval | None) -> str:
         if size.label and "mm" not in size.label
         else f"{span}{NO_BREAK}mm"
     )
+
+
+def frame_cell(value: Any) -> str:
+    """A value of a table of statistics: three digits, `yes` and `no`, nothing where there is none."""
+    plain = value.item() if hasattr(value, "item") else value
+    if plain is None or plain != plain:
+        return ""
+    if isinstance(plain, bool):
+        return "yes" if plain else "no"
+    return digits(plain, 3) if isinstance(plain, float) else str(plain)
